@@ -6,4 +6,13 @@ export default defineNuxtConfig({
   devtools: { enabled: false },
   ignore: ['tests/**', 'migrations/**', 'seeds/**', 'scripts/**', '.data/**', 'docs/**'],
   components: [{ path: '~/components', pathPrefix: false }],
+  tailwindcss: { cssPath: '~/assets/css/main.css', viewer: false },
+  hooks: {
+    // The living sheet of parts is for development only.
+    'pages:extend'(pages) {
+      if (process.env.NODE_ENV === 'development') return
+      const sheet = pages.findIndex(page => page.path === '/parts')
+      if (sheet >= 0) pages.splice(sheet, 1)
+    },
+  },
 })

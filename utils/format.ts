@@ -1,0 +1,157 @@
+import Decimal from 'decimal.js'
+
+/**
+ * Grams, minutes and dates for the eye. Everything here makes text; nothing here decides.
+ * Quantities come as decimal strings and are never turned into floats. Instants are epoch milliseconds.
+ */
+const MINUS = '\u2212'
+const THIN = '\u2009'
+const MINUTE = 60_000
+const WEEKDAYS = ['Sun', 'Mon', 'Tue', 'Wed', 'Thu', 'Fri', 'Sat'] as const
+const MONTHS = ['Jan', 'Feb', 'Mar', 'Apr', 'May', 'Jun', 'Jul', 'Aug', 'Sep', 'Oct', 'Nov', 'Dec'] as const
+
+/** A number in printable parts, so that a template can set the thin space as its own element. */
+export interface NumberParts {
+  sign: '' | '\u2212' | '+'
+  /** Groups of up to three digits, most significant first. */
+  groups: string[]
+  /** Digits after the point, '' where there are none. */
+  fraction: string
+}
+
+/**
+ * Splits a decimal string into sign, thousands groups and decimals.
+ *
+ * @param value decimal string with a point; anything else throws
+ * @param decimals digits after the point, rounded half away from zero; left out, the digits stand as they are
+ * @param signed also a plus for values above zero
+ */
+export function numberParts(value: string, decimals?: number, signed = false): NumberParts {
+  const exact = new Decimal(value)
+  if (!exact.isFinite()) throw new RangeError(`not a finite decimal: ${value}`)
+  const stands = /\.(\d+)$/.exec(value)?.[1]?.length ?? exact.decimalPlaces()
+  const text = exact.abs().toFixed(decimals ?? stands, Decimal.ROUND_HALF_UP)
+  const [whole = '0', fraction = ''] = text.split('.')
+  const isZero = /^0*$/.test(whole + fraction)
+  const sign = isZero ? '' : exact.isNegative() ? MINUS : signed ? '+' : ''
+  return { sign, groups: whole.replace(/\B(?=(\d{3})+$)/g, ' ').split(' '), fraction }
+}
+
+/**
+ * Grams, or any quantity, with thin spaces between thousands: `1 490.0`.
+ *
+ * @param value decimal string
+ * @param decimals those of the scale's division, zeros kept
+ */
+export function grams(value: string, decimals?: number): string {
+  const { sign, groups, fraction } = numberParts(value, decimals)
+  return `${sign}${groups.join(THIN)}${fraction && `.${fraction}`}`
+}
+
+/** Decimals of a scale's division: '0.1' → 1, '5' → 0. */
+export function decimalsOf(division: string): number {
+  return new Decimal(division).decimalPlaces()
+}
+
+/** Per cent for the eye: `65 %`, with `signed` `+5.0 %`. The space does not break. */
+export function percent(value: string, options: { decimals?: number, signed?: boolean } = {}): string {
+  const { sign, groups, fraction } = numberParts(value, options.decimals, options.signed)
+  return `${sign}${groups.join(THIN)}${fraction && `.${fraction}`}\u00A0%`
+}
+
+/** Area in m², two decimals: `21.60`. */
+export function area(valueM2: string, decimals = 2): string {
+  return grams(valueM2, decimals)
+}
+
+/** Parts of a mix: `100 : 50 : 20`; a thinner range stands as `20–30`. */
+export function ratio(parts: readonly (string | readonly [string, string])[]): string {
+  const plain = (part: string): string => grams(new Decimal(part).toFixed())
+  return parts.map(part => typeof part === 'string' ? plain(part) : `${plain(part[0])}–${plain(part[1])}`).join(' : ')
+}
+
+const two = (count: number): string => String(count).padStart(2, '0')
+
+/**
+ * A span of time, never as a bare 0:18: `4 min 30` under ten minutes, `18 min`, `2 h 06`, from 48 hours `3 d 4 h`.
+ * Cut, never rounded up: it shows no more time than there is.
+ *
+ * @param ms milliseconds; below zero counts as zero
+ */
+export function duration(ms: number): string {
+  const seconds = Math.floor(Math.max(0, ms) / 1000)
+  const minutes = Math.floor(seconds / 60)
+  const hours = Math.floor(minutes / 60)
+  if (minutes < 10) return seconds % 60 ? `${minutes} min ${two(seconds % 60)}` : `${minutes} min`
+  if (minutes < 60) return `${minutes} min`
+  if (hours < 48) return minutes % 60 ? `${hours} h ${two(minutes % 60)}` : `${hours} h`
+  return hours % 24 ? `${Math.floor(hours / 24)} d ${hours % 24} h` : `${Math.floor(hours / 24)} d`
+}
+
+/** Time past an end, counted up in whole minutes: `+9 min`, `+1 h 12`. */
+export function over(ms: number): string {
+  return `+${duration(Math.floor(Math.max(0, ms) / MINUTE) * MINUTE)}`
+}
+
+interface ZonedParts { year: number, month: number, day: number, hour: string, minute: string, second: string }
+
+const formats = new Map<string, Intl.DateTimeFormat>()
+
+/** Building a formatter is dear; a list of batches would build hundreds. */
+function formatIn(zone: string): Intl.DateTimeFormat {
+  const known = formats.get(zone)
+  if (known) return known
+  const made = new Intl.DateTimeFormat('en-GB', {
+    timeZone: zone, hourCycle: 'h23', year: 'numeric', month: '2-digit', day: '2-digit', hour: '2-digit', minute: '2-digit', second: '2-digit',
+  })
+  formats.set(zone, made)
+  return made
+}
+
+function zoned(ms: number, zone: string): ZonedParts {
+  const found: Record<string, string> = {}
+  for (const part of formatIn(zone).formatToParts(ms)) found[part.type] = part.value
+  const { year = '', month = '', day = '', hour = '', minute = '', second = '' } = found
+  return { year: Number(year), month: Number(month), day: Number(day), hour, minute, second }
+}
+
+function dayText(year: number, month: number, day: number, withYear: boolean): string {
+  const weekday = WEEKDAYS[new Date(Date.UTC(year, month - 1, day)).getUTCDay()]
+  return `${weekday} ${day} ${MONTHS[month - 1]}${withYear ? ` ${year}` : ''}`
+}
+
+/** Clock time of the shop, 24 hours: `07:54`. `zone` is an IANA name. */
+export function clock(ms: number, zone: string): string {
+  const { hour, minute } = zoned(ms, zone)
+  return `${hour}:${minute}`
+}
+
+/** Clock time with seconds, for a last good reading: `07:54:20`. */
+export function clockSeconds(ms: number, zone: string): string {
+  const { hour, minute, second } = zoned(ms, zone)
+  return `${hour}:${minute}:${second}`
+}
+
+/** A day in the shop's zone: `Tue 17 Nov`, with the year only when it is not the year of `nowMs`. */
+export function day(ms: number, zone: string, nowMs: number): string {
+  const at = zoned(ms, zone)
+  return dayText(at.year, at.month, at.day, at.year !== zoned(nowMs, zone).year)
+}
+
+/** Day and clock time: `Tue 17 Nov 07:54`. */
+export function dayClock(ms: number, zone: string, nowMs: number): string {
+  return `${day(ms, zone, nowMs)} ${clock(ms, zone)}`
+}
+
+/** The shop's calendar day of an instant as `YYYY-MM-DD`, for grouping and date fields. */
+export function isoDay(ms: number, zone: string): string {
+  const at = zoned(ms, zone)
+  return `${at.year}-${two(at.month)}-${two(at.day)}`
+}
+
+/** A calendar day without a time, such as a use-by date, always with its year: '2027-03-31' → `Wed 31 Mar 2027`. */
+export function calendarDay(iso: string): string {
+  const match = /^(\d{4})-(\d{2})-(\d{2})/.exec(iso)
+  if (!match) throw new RangeError(`not a calendar day: ${iso}`)
+  return dayText(Number(match[1]), Number(match[2]), Number(match[3]), true)
+}
