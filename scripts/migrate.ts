@@ -1,0 +1,51 @@
+import { createKnex } from '../server/database/connection'
+import { applyGrants } from '../server/database/grants'
+import { readMigrationEnvironment } from '../server/utils/config'
+import knexConfig from '../knexfile'
+
+/**
+ * `latest` brings the tables and then the grants up to date; `rollback` takes everything back. The last line printed
+ * tells what is there: { applied, users, demoUsers }.
+ */
+async function main(direction: string | undefined): Promise<void> {
+  if (direction !== 'latest' && direction !== 'rollback') throw new Error('Usage: migrate.ts latest|rollback')
+  const { databaseUrl, databaseAdminUrl } = readMigrationEnvironment(process.env)
+  const knex = createKnex(databaseAdminUrl, { poolMax: 2 })
+  try {
+    if (direction === 'rollback') {
+      const [, names] = await knex.migrate.rollback(knexConfig.migrations, true) as [number, string[]]
+      process.stdout.write(`${JSON.stringify({ rolledBack: names })}\n`)
+      return
+    }
+    await checkDurability(knex)
+    const [, applied] = await knex.migrate.latest(knexConfig.migrations) as [number, string[]]
+    await applyGrants(knex, decodeURIComponent(new URL(databaseUrl).username))
+    process.stdout.write(`${JSON.stringify({ applied, ...await countPeople(knex) })}\n`)
+  }
+  finally {
+    await knex.destroy()
+  }
+}
+
+/** What is acknowledged must be on disk: a database set otherwise could lose batches in a power cut. */
+async function checkDurability(knex: ReturnType<typeof createKnex>): Promise<void> {
+  const row: { flush: unknown } | undefined = await knex.first(knex.raw('@@innodb_flush_log_at_trx_commit AS flush'))
+  if (String(row?.flush) !== '1') {
+    throw new Error('The database runs with innodb_flush_log_at_trx_commit other than 1 and could lose batches that were acknowledged: set it to 1.')
+  }
+}
+
+/** Demo users are those whose public demo password still stands. */
+async function countPeople(knex: ReturnType<typeof createKnex>): Promise<{ users: number, demoUsers: number }> {
+  const row: { users: unknown, demoUsers: unknown } | undefined = await knex('users')
+    .select(knex.raw('COUNT(*) AS users'), knex.raw('COALESCE(SUM(demo_password), 0) AS demoUsers')).first()
+  return { users: Number(row?.users ?? 0), demoUsers: Number(row?.demoUsers ?? 0) }
+}
+
+try {
+  await main(process.argv[2])
+}
+catch (error) {
+  process.stderr.write(`${error instanceof Error ? error.message : String(error)}\n`)
+  process.exitCode = 1
+}
