@@ -1,0 +1,4 @@
+import { randomUUID } from 'node:crypto'
+
+/** A fresh UUID for a row made by the server. */
+export const newId = (): string => randomUUID()

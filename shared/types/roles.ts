@@ -1,0 +1,7 @@
+/** What a person may be in the shop. */
+export const roles = ['sprayer', 'foreman', 'manager'] as const
+
+export type Role = (typeof roles)[number]
+
+/** Everybody who can ask for something: people, enrolled screens and tablets, and the server itself. */
+export type Asker = Role | 'bench' | 'screen' | 'system'
