@@ -1,0 +1,35 @@
+/** Lets only so many through at once; the others wait in the order in which they came. */
+export class Gate {
+  #free: number
+  readonly #waiting: (() => void)[] = []
+
+  /** @param width how many may run at once, at least 1 */
+  constructor(width: number) {
+    if (!Number.isSafeInteger(width) || width < 1) throw new RangeError('a gate needs a width of at least 1')
+    this.#free = width
+  }
+
+  /** Runs `work` when there is room, and makes room again whether it succeeds or fails. */
+  async run<T>(work: () => Promise<T>): Promise<T> {
+    await this.#enter()
+    try {
+      return await work()
+    } finally {
+      this.#leave()
+    }
+  }
+
+  #enter(): Promise<void> {
+    if (this.#free > 0) {
+      this.#free--
+      return Promise.resolve()
+    }
+    return new Promise((resolve) => this.#waiting.push(resolve))
+  }
+
+  #leave(): void {
+    const next = this.#waiting.shift()
+    if (next) next()
+    else this.#free++
+  }
+}
