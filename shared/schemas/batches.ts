@@ -1,0 +1,224 @@
+import * as z from 'zod/mini'
+import { DraftCorrection, DraftPlan, PotLife, pourSources } from './drafts'
+import { Cursor, DateText, DecimalText, Flag, GramsText, InstantText, Limit, Uuid, words } from './fields'
+
+/** Of a sealed batch. `no-pot-life`: nothing in it reacts, so nothing runs. */
+export const batchStates = ['fresh', 'closing', 'life-up', 'emptied', 'stopped', 'no-pot-life'] as const
+
+/** Why a foreman should look at a batch: what is in the cup is kept as a fact. */
+export const reviewCodes = [
+  'out-of-tolerance', 'cannot-tell', 'not-complete', 'expired-lot', 'blocked-lot', 'late-entry',
+  'not-mixed-in-order', 'clock-ahead', 'over-fill', 'stock-short',
+] as const
+export type ReviewCode = (typeof reviewCodes)[number]
+
+const roles = ['base', 'hardener', 'thinner', 'additive', 'accelerator', 'peroxide'] as const
+const verdicts = ['short', 'in-tolerance', 'too-much', 'cannot-tell'] as const
+
+/** Body of `POST /api/batches`: seals the draft of that id into the record. */
+export const BatchCreateBody = z.strictObject({ draftId: Uuid })
+export type BatchCreateBody = z.infer<typeof BatchCreateBody>
+
+export const BatchParams = z.strictObject({ id: Uuid })
+
+/** Filters of `GET /api/batches`; they combine. Days are the shop's. */
+export const BatchListQuery = z.strictObject({
+  jobId: z.optional(Uuid),
+  /** Any component's material. */
+  materialId: z.optional(Uuid),
+  lotId: z.optional(Uuid),
+  state: z.optional(z.enum(batchStates)),
+  mixedBy: z.optional(Uuid),
+  boothId: z.optional(Uuid),
+  from: z.optional(DateText),
+  /** The last day that counts. */
+  to: z.optional(DateText),
+  /** Only out of tolerance, corrected, stopped or used late. */
+  deviations: z.optional(Flag),
+  /** Only what waits for a foreman (`true`), or what does not. */
+  review: z.optional(Flag),
+  cursor: z.optional(Cursor),
+  limit: Limit,
+})
+export type BatchListQuery = z.infer<typeof BatchListQuery>
+
+const named = {
+  id: Uuid,
+  code: z.string(),
+  outcome: z.enum(['mixed', 'stopped']),
+  state: z.enum(batchStates),
+  potNumber: z.int(),
+  potCount: z.int(),
+  mixCode: z.string(),
+  mixName: z.string(),
+  mixRevisionNumber: z.int(),
+  jobId: z.nullable(Uuid),
+  jobCode: z.nullable(z.string()),
+  jobTitle: z.nullable(z.string()),
+  stepTitle: z.nullable(z.string()),
+  purpose: z.nullable(z.string()),
+  boothId: z.nullable(Uuid),
+  boothName: z.nullable(z.string()),
+  gunId: z.nullable(Uuid),
+  gunName: z.nullable(z.string()),
+  mixedByUserId: Uuid,
+  mixedByName: z.string(),
+  mixedByInitials: z.string(),
+  mixedAt: InstantText,
+  sealedAt: InstantText,
+  targetTotalG: GramsText,
+  pouredTotalG: GramsText,
+  reactiveAt: z.nullable(InstantText),
+  lateAt: z.nullable(InstantText),
+  endsAt: z.nullable(InstantText),
+  firstSprayAt: z.nullable(InstantText),
+  lastSprayAt: z.nullable(InstantText),
+  closedAt: z.nullable(InstantText),
+  leftoverG: z.nullable(GramsText),
+  /** False: emptied, but the leftover was not weighed. Null: not emptied yet. */
+  leftoverWeighed: z.nullable(z.boolean()),
+  disposal: z.nullable(z.string()),
+  /** By the last spray: `in-time`, `late` (after the late limit) or `past-life`. Null: not sprayed, or no pot life. */
+  used: z.nullable(z.enum(['in-time', 'late', 'past-life'])),
+  worstDeviationPct: z.nullable(DecimalText),
+  outOfTolerance: z.boolean(),
+  corrected: z.boolean(),
+  reviewOpen: z.boolean(),
+  amended: z.boolean(),
+}
+
+/** One line of the log. */
+export const BatchListItem = z.strictObject({
+  ...named,
+  /** Code of the base's material. */
+  baseCode: z.string(),
+  /** The component whose ratio is furthest off. */
+  worstRole: z.nullable(z.enum(roles)),
+})
+export type BatchListItem = z.infer<typeof BatchListItem>
+
+export const BatchList = z.strictObject({ items: z.array(BatchListItem), nextCursor: z.nullable(z.string()) })
+export type BatchList = z.infer<typeof BatchList>
+
+export const BatchPour = z.strictObject({
+  lotId: Uuid,
+  lotNumber: z.string(),
+  grams: GramsText,
+  at: InstantText,
+  source: z.enum(pourSources),
+  round: z.int(),
+})
+
+/** One component as meant and as poured. */
+export const BatchComponent = z.strictObject({
+  index: z.int(),
+  role: z.enum(roles),
+  materialId: Uuid,
+  materialCode: z.string(),
+  materialName: z.string(),
+  parts: DecimalText,
+  /** As planned, before the base was in. */
+  plannedG: GramsText,
+  /** Follows the base as poured. */
+  targetG: GramsText,
+  pouredG: GramsText,
+  deviationPct: z.nullable(DecimalText),
+  verdict: z.nullable(z.enum(verdicts)),
+  pours: z.array(BatchPour),
+})
+export type BatchComponent = z.infer<typeof BatchComponent>
+
+export const WorkingLines = z.array(z.strictObject({
+  what: z.string(), formula: z.string(), value: z.string(), unit: z.string(),
+}))
+
+export const batchEventKinds = ['first-spray', 'last-spray', 'emptied', 'review-settled', 'note'] as const
+
+export const BatchEvent = z.strictObject({
+  id: Uuid,
+  kind: z.enum(batchEventKinds),
+  at: InstantText,
+  userName: z.nullable(z.string()),
+  deviceName: z.nullable(z.string()),
+  gunName: z.nullable(z.string()),
+  boothName: z.nullable(z.string()),
+  details: z.record(z.string(), z.unknown()),
+})
+export type BatchEvent = z.infer<typeof BatchEvent>
+
+export const BatchAmendment = z.strictObject({
+  id: Uuid,
+  field: z.string(),
+  from: z.nullable(z.string()),
+  to: z.nullable(z.string()),
+  reason: z.string(),
+  userName: z.string(),
+  at: InstantText,
+})
+
+/** Answer of `POST /api/batches`, `GET /api/batches/:id` and of everything done to a batch. */
+export const Batch = z.strictObject({
+  ...named,
+  /** Grows with each change of what the batch is now. */
+  version: z.int(),
+  planId: Uuid,
+  mixId: Uuid,
+  mixRevisionId: Uuid,
+  jobStepId: z.nullable(Uuid),
+  scaleId: z.nullable(Uuid),
+  scaleName: z.nullable(z.string()),
+  deviceName: z.nullable(z.string()),
+  review: z.array(z.string()),
+  areaM2: z.nullable(DecimalText),
+  filmWeightGsm: z.nullable(DecimalText),
+  filmWeightIs: z.nullable(z.enum(['deposited', 'sprayed'])),
+  coats: z.nullable(z.int()),
+  transferEfficiencyPct: z.nullable(DecimalText),
+  components: z.array(BatchComponent),
+  potLife: PotLife,
+  containsIsocyanates: z.boolean(),
+  chemistry: z.nullable(z.string()),
+  climate: z.nullable(z.strictObject({
+    airC: DecimalText, rhPct: z.nullable(DecimalText), surfaceC: z.nullable(DecimalText),
+  })),
+  viscosity: z.nullable(z.strictObject({
+    cup: z.string(), seconds: DecimalText, materialC: z.nullable(DecimalText),
+  })),
+  plan: DraftPlan,
+  corrections: z.array(DraftCorrection),
+  stopped: z.nullable(z.strictObject({ at: InstantText, reason: z.string(), disposal: z.string() })),
+  /** Every sum behind the figures, as reckoned when the batch was sealed. */
+  working: WorkingLines,
+  engineVersion: z.string(),
+  pieces: z.array(z.strictObject({
+    id: Uuid, position: z.int(), label: z.string(), quantity: z.int(), areaM2: DecimalText, rack: z.nullable(z.string()),
+  })),
+  events: z.array(BatchEvent),
+  amendments: z.array(BatchAmendment),
+  /** Coats that this batch was sprayed for, with the windows they opened. */
+  applications: z.array(z.strictObject({
+    id: Uuid,
+    firstAt: InstantText,
+    lastAt: InstantText,
+    opensAt: z.nullable(InstantText),
+    closingAt: z.nullable(InstantText),
+    closesAt: z.nullable(InstantText),
+  })),
+})
+export type Batch = z.infer<typeof Batch>
+
+/** Body of `POST /api/batches/:id/events`. Without `at` it happened now. */
+export const BatchEventBody = z.strictObject({
+  kind: z.enum(['first-spray', 'last-spray']),
+  gunId: z._default(z.nullable(Uuid), null),
+  at: z._default(z.nullable(InstantText), null),
+})
+export type BatchEventBody = z.infer<typeof BatchEventBody>
+
+/** Body of `POST /api/batches/:id/close`. `leftoverG` null: there is some, but nobody weighed it. */
+export const BatchCloseBody = z.strictObject({
+  leftoverG: z.nullable(GramsText),
+  at: z._default(z.nullable(InstantText), null),
+  disposal: z.optional(words(60)),
+})
+export type BatchCloseBody = z.infer<typeof BatchCloseBody>

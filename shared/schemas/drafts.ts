@@ -1,0 +1,188 @@
+import * as z from 'zod/mini'
+import { CelsiusText, DecimalText, GramsText, InstantText, PercentText, SignedGramsText, Uuid, words } from './fields'
+
+/** How a weight reached the log. */
+export const pourSources = ['typed', 'scale', 'simulated', 'bridge'] as const
+
+/** One weighing out of one tin. */
+export const DraftPour = z.strictObject({
+  lotId: Uuid,
+  /** Grams poured; the rule refuses what is below nothing. */
+  grams: SignedGramsText,
+  at: InstantText,
+  source: z.enum(pourSources),
+  /** 0: the pour as planned; 1 and on: what a correction added. */
+  round: z.int().check(z.minimum(0), z.maximum(50)),
+})
+
+/** What is in the cup of one component of the mix; `index` is its place in the mix revision, from 0. */
+export const DraftComponent = z.strictObject({
+  index: z.int().check(z.minimum(0), z.maximum(7)),
+  pours: z.array(DraftPour).check(z.maxLength(40)),
+})
+
+/** A correction that was offered and what became of it. */
+export const DraftCorrection = z.strictObject({
+  at: InstantText,
+  /** The engine's cause, for example `reactive-too-much`. */
+  cause: z.string().check(z.regex(/^[a-z][a-z-]{0,39}$/, 'Name the cause.')),
+  accepted: z.boolean(),
+  /** Grams a component in the mix's order. */
+  newTargets: z.array(GramsText).check(z.maxLength(8)),
+  reason: z._default(z.nullable(words(400)), null),
+  approvalId: z._default(z.nullable(Uuid), null),
+})
+
+const DraftPlanComponent = z.strictObject({
+  name: words(120),
+  parts: DecimalText,
+  partsMax: z.optional(DecimalText),
+  sheetMaxParts: z.optional(DecimalText),
+  densityGPerMl: z.optional(DecimalText),
+  role: z.optional(z.enum(['base', 'hardener', 'thinner', 'additive', 'accelerator', 'peroxide'])),
+  tolerancePct: z.optional(DecimalText),
+  reactive: z.optional(z.boolean()),
+})
+
+/**
+ * What was asked of the arithmetic: the inputs of `POST /api/calculations/batch`.
+ * The mix may be left out: the revision's own counts. Where it is given, each component's parts must lie in the
+ * revision's range, so that a thinner set by viscosity keeps its figure.
+ */
+export const DraftPlan = z.strictObject({
+  mix: z.optional(z.strictObject({
+    basis: z.enum(['weight', 'volume']),
+    components: z.array(DraftPlanComponent).check(z.minLength(1), z.maxLength(8)),
+  })),
+  areaM2: z.optional(DecimalText),
+  totalG: z.optional(DecimalText),
+  available: z.optional(z.strictObject({ index: z.int().check(z.minimum(0), z.maximum(7)), grams: DecimalText })),
+  filmWeightGsm: z.optional(DecimalText),
+  filmWeightIs: z.optional(z.enum(['deposited', 'sprayed'])),
+  coats: z.optional(z.int().check(z.minimum(1), z.maximum(50))),
+  transferEfficiencyPct: z.optional(DecimalText),
+  reserveG: z.optional(DecimalText),
+  reservePct: z.optional(DecimalText),
+  scaleDivisionG: DecimalText,
+  scaleMpeG: z.optional(DecimalText),
+})
+
+/** Body of `PUT /api/batch-drafts/:id`: a batch being made. The id is the batch's own, made by the client. */
+export const DraftBody = z.strictObject({
+  /** Counts the client's steps; a lower or equal number than the stored one changes nothing. */
+  seq: z.int().check(z.minimum(1), z.maximum(1_000_000_000)),
+  planId: Uuid,
+  potNumber: z.int().check(z.minimum(1), z.maximum(999)),
+  potCount: z.int().check(z.minimum(1), z.maximum(999)),
+  mixRevisionId: Uuid,
+  jobStepId: z._default(z.nullable(Uuid), null),
+  /** What a loose mix is for; needed where there is no job step. */
+  purpose: z._default(z.nullable(words(200)), null),
+  pieceIds: z._default(z.array(Uuid).check(z.maxLength(500)), []),
+  boothId: z._default(z.nullable(Uuid), null),
+  gunId: z._default(z.nullable(Uuid), null),
+  scaleId: z._default(z.nullable(Uuid), null),
+  mixedByUserId: Uuid,
+  plan: DraftPlan,
+  components: z._default(z.array(DraftComponent).check(z.maxLength(8)), []),
+  corrections: z._default(z.array(DraftCorrection).check(z.maxLength(40)), []),
+  /** First stable gram at which a reactive component and another are together; starts the pot's timers. */
+  reactiveAt: z._default(z.nullable(InstantText), null),
+  /** The tablet's own reading of that moment and its clock against the server's (server − tablet). */
+  device: z._default(z.nullable(z.strictObject({
+    reactiveAt: z.nullable(InstantText),
+    sentAt: InstantText,
+    offsetMs: z.nullable(z.int().check(z.minimum(-4_000_000_000_000), z.maximum(4_000_000_000_000))),
+  })), null),
+  climate: z._default(z.nullable(z.strictObject({
+    airC: CelsiusText,
+    rhPct: PercentText,
+    surfaceC: z._default(z.nullable(CelsiusText), null),
+  })), null),
+  viscosity: z._default(z.nullable(z.strictObject({
+    cup: z.string().check(z.trim(), z.minLength(1), z.maxLength(12)),
+    seconds: z.string().check(z.regex(/^\d{1,4}(?:\.\d{1,2})?$/, 'Give seconds with at most two decimals.')),
+    materialC: z._default(z.nullable(CelsiusText), null),
+  })), null),
+  approvals: z._default(z.array(Uuid).check(z.maxLength(20)), []),
+  /** The mix was stopped: sealing records it as stopped and what is in the cup as waste. */
+  stopped: z._default(z.nullable(z.strictObject({
+    at: InstantText,
+    reason: words(400),
+    disposal: z._default(z.string().check(z.trim(), z.minLength(1), z.maxLength(60)), 'reactive waste'),
+  })), null),
+}).check(
+  z.refine(({ potNumber, potCount }) => potNumber <= potCount, { path: ['potNumber'], error: 'There are not so many pots.' }),
+  z.refine(({ jobStepId, purpose }) => jobStepId !== null || purpose !== null, {
+    path: ['purpose'], error: 'Say what the loose mix is for.',
+  }),
+  z.refine(({ components }) => new Set(components.map(({ index }) => index)).size === components.length, {
+    path: ['components'], error: 'Give each component once.',
+  }),
+  z.refine(({ pieceIds }) => new Set(pieceIds).size === pieceIds.length, { path: ['pieceIds'], error: 'Give each piece once.' }),
+)
+export type DraftBody = z.infer<typeof DraftBody>
+/** As it is written: what has a default may be left out. */
+export type DraftInput = z.input<typeof DraftBody>
+
+export const DraftParams = z.strictObject({ id: Uuid })
+
+export const potLifeBases = ['sheet', 'table', 'held', 'rule'] as const
+
+/** The instants of a pot's life, or null where nothing in the cup reacts (yet). */
+export const PotLife = z.nullable(z.strictObject({
+  startsAt: InstantText,
+  lateAt: InstantText,
+  endsAt: InstantText,
+  basis: z.enum(potLifeBases),
+  potLifeMin: DecimalText,
+}))
+export type PotLife = z.infer<typeof PotLife>
+
+export const draftStates = ['open', 'sealed', 'stopped', 'discarded'] as const
+
+/** Something the server changed or saw, in one word: `clock-ahead` or `late-entry`. */
+export const draftNotes = ['clock-ahead', 'late-entry', 'taken-over'] as const
+
+/** Answer of `PUT` and `GET /api/batch-drafts/:id`: the body as stored, with what the server knows of it. */
+export const Draft = z.strictObject({
+  ...DraftBody.shape,
+  id: Uuid,
+  code: z.string(),
+  state: z.enum(draftStates),
+  /** By the server's clock; `device` keeps the tablet's. */
+  reactiveAt: z.nullable(InstantText),
+  potLife: PotLife,
+  notes: z.array(z.enum(draftNotes)),
+  createdAt: InstantText,
+  updatedAt: InstantText,
+})
+export type Draft = z.infer<typeof Draft>
+
+export const DraftListQuery = z.strictObject({
+  state: z._default(z.enum(['open']), 'open'),
+  boothId: z.optional(Uuid),
+})
+
+/** One line of what is being mixed, for taking over at another tablet. */
+export const DraftSummary = z.strictObject({
+  id: Uuid,
+  code: z.string(),
+  seq: z.int(),
+  potNumber: z.int(),
+  potCount: z.int(),
+  mixCode: z.string(),
+  mixName: z.string(),
+  jobCode: z.nullable(z.string()),
+  jobTitle: z.nullable(z.string()),
+  stepTitle: z.nullable(z.string()),
+  purpose: z.nullable(z.string()),
+  boothId: z.nullable(Uuid),
+  mixedByUserId: Uuid,
+  mixedByName: z.string(),
+  reactiveAt: z.nullable(InstantText),
+  updatedAt: InstantText,
+})
+export type DraftSummary = z.infer<typeof DraftSummary>
+
+export const DraftList = z.strictObject({ items: z.array(DraftSummary), nextCursor: z.nullable(z.string()) })
