@@ -1,0 +1,72 @@
+import * as z from 'zod/mini'
+
+export const timerKinds = [
+  'pot-late', 'pot-up', 'window-opens', 'window-closing', 'window-closes', 'clearance', 'dry-sand', 'dry-stack', 'dry-pack', 'free',
+] as const
+export const timerStates = ['waiting', 'fired', 'acknowledged', 'done', 'cancelled'] as const
+
+export type TimerKind = (typeof timerKinds)[number]
+export type TimerState = (typeof timerStates)[number]
+
+/** One instant that the shop waits for. Instants are ISO 8601 UTC with milliseconds. */
+export const Timer = z.object({
+  id: z.uuid(),
+  kind: z.enum(timerKinds),
+  subjectType: z.enum(['batch', 'application', 'booth', 'free']),
+  subjectId: z.uuid(),
+  boothId: z.nullable(z.uuid()),
+  boothName: z.nullable(z.string()),
+  label: z.string(),
+  dueAt: z.string(),
+  state: z.enum(timerStates),
+  firedAt: z.nullable(z.string()),
+  /** When it was last called out; moves on by a minute until somebody acknowledges. */
+  announcedAt: z.nullable(z.string()),
+  silencedUntil: z.nullable(z.string()),
+  silencedBy: z.nullable(z.string()),
+  acknowledgedAt: z.nullable(z.string()),
+  acknowledgedBy: z.nullable(z.string()),
+  createdAt: z.string(),
+  version: z.number(),
+})
+export type Timer = z.infer<typeof Timer>
+
+export const TimerList = z.object({ items: z.array(Timer), nextCursor: z.nullable(z.string()) })
+export type TimerList = z.infer<typeof TimerList>
+
+export const TimerListQuery = z.object({
+  boothId: z.optional(z.uuid('That is not an id.')),
+  kind: z.optional(z.enum(timerKinds, 'That is no kind of timer.')),
+  /** `running` is everything that waits, rings or was acknowledged. */
+  state: z.optional(z.enum([...timerStates, 'running'], 'That is no state of a timer.')),
+  cursor: z.optional(z.string().check(z.maxLength(400, 'That cursor is too long.'))),
+  limit: z.optional(z.string().check(z.regex(/^([1-9]|[1-9]\d|1\d\d|200)$/, 'From 1 to 200.'))),
+})
+export type TimerListQuery = z.infer<typeof TimerListQuery>
+
+const minutes = (least: number, most: number) =>
+  z.int(`Give whole minutes, ${least} to ${most}.`).check(
+    z.minimum(least, `At least ${least} minute${least === 1 ? '' : 's'}.`),
+    z.maximum(most, `At most ${most} minutes.`),
+  )
+
+/** A timer of one's own: a name and whole minutes from now. A week is the longest. */
+export const TimerCreateBody = z.strictObject({
+  name: z.string('Give it a name.').check(z.trim(), z.minLength(1, 'Give it a name.'), z.maxLength(80, 'Keep the name under 80 characters.')),
+  minutes: minutes(1, 10_080),
+  boothId: z.optional(z.nullable(z.uuid('Choose a booth.'))),
+})
+export type TimerCreateBody = z.infer<typeof TimerCreateBody>
+
+export const TimerParams = z.object({ id: z.uuid('That is not an id.') })
+
+/** Ten minutes of quiet. A reason is welcome and not required. */
+export const TimerSilenceBody = z.strictObject({
+  reason: z.optional(z.string().check(z.trim(), z.maxLength(400, 'Keep it under 400 characters.'))),
+})
+export type TimerSilenceBody = z.infer<typeof TimerSilenceBody>
+
+export const TimerExtendBody = z.strictObject({ minutes: minutes(1, 1440) })
+export type TimerExtendBody = z.infer<typeof TimerExtendBody>
+
+export const TimerActionBody = z.strictObject({})
