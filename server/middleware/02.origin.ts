@@ -13,7 +13,7 @@ export default defineEventHandler((event) => {
     secFetchSite: getRequestHeader(event, 'sec-fetch-site'),
     hasCookie: getRequestHeader(event, 'cookie') !== undefined,
     hasBearer: getRequestHeader(event, 'authorization')?.startsWith('Bearer ') ?? false,
-    publicUrl: useApp().config.PUBLIC_URL,
+    publicUrl: useApp().config.publicUrl ?? undefined,
   })
   if (!same) return refuse(event, 403, 'cross-site', 'This request did not come from a page of this shop.')
 })

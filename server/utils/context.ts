@@ -27,6 +27,7 @@ export interface UserPrincipal {
 export type Principal =
   | { kind: 'user'; user: UserPrincipal; device: DevicePrincipal | null }
   | { kind: 'device'; user: null; device: DevicePrincipal }
+  | { kind: 'nobody'; user: null; device: null }
   | { kind: 'system'; user: null; device: null }
 
 /** Tells the process's event pump that something was committed. */
@@ -56,7 +57,7 @@ export interface Context {
 export function principalName(principal: Principal): string {
   if (principal.kind === 'user') return `user:${principal.user.id}`
   if (principal.kind === 'device') return `device:${principal.device.id}`
-  return 'system'
+  return principal.kind
 }
 
 /** The id of the person who asks, or null for a device or the system. */
@@ -71,5 +72,5 @@ export function requirePermission(principal: Principal, action: Action): void {
 export function roleOf(principal: Principal) {
   if (principal.kind === 'user') return principal.user.role
   if (principal.kind === 'device') return principal.device.kind
-  return 'system' as const
+  return principal.kind
 }

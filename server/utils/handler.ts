@@ -7,9 +7,10 @@ import { contextFor, useApp } from './app'
 import { readJsonBody } from './body'
 import { canonicalJson, type Canonical } from './canonical'
 import type { Context, Idempotency, Principal } from './context'
-import { requirePermission } from './context'
+import { principalName, requirePermission } from './context'
 import { fromEngine, invalid, Refusal } from './errors'
 import { sha256 } from './hash'
+import { countRequest } from './limits'
 
 type Schema = z.ZodMiniType
 
@@ -47,6 +48,7 @@ export function defineRoute<B extends Schema, Q extends Schema, P extends Schema
   return defineEventHandler(async (event) => {
     try {
       const principal = admit(event, route.permission)
+      if (principal.kind !== 'nobody') await countRequest(principalName(principal))
       const params = parse(route.params, getRouterParams(event, { decode: true }), 'params')
       const query = parse(route.query, getQuery(event), 'query')
       const sent = event.method === 'GET' || event.method === 'HEAD' ? undefined : await readJsonBody(event.node.req)
@@ -63,8 +65,7 @@ export function defineRoute<B extends Schema, Q extends Schema, P extends Schema
   })
 }
 
-/** The system principal stands for nobody: it is only ever used by routes that anyone may ask. */
-const nobody: Principal = { kind: 'system', user: null, device: null }
+const nobody: Principal = { kind: 'nobody', user: null, device: null }
 
 function admit(event: H3Event, permission: Action | 'public'): Principal {
   const principal = event.context.principal

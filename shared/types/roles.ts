@@ -3,5 +3,5 @@ export const roles = ['sprayer', 'foreman', 'manager'] as const
 
 export type Role = (typeof roles)[number]
 
-/** Everybody who can ask for something: people, enrolled screens and tablets, and the server itself. */
-export type Asker = Role | 'bench' | 'screen' | 'system'
+/** Everybody who can ask for something: people, enrolled screens and tablets, the server itself, and who is not known. */
+export type Asker = Role | 'bench' | 'screen' | 'system' | 'nobody'

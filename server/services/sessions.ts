@@ -1,0 +1,96 @@
+import type { Approval, ApprovalBody, Session, SignInBody } from '#shared/schemas/session'
+import { may } from '#shared/utils/permissions'
+import { insertApproval } from '../repositories/approvals'
+import { endSession, findSignInUser, insertSession, sessionHours } from '../repositories/sessions'
+import { readShop } from '../repositories/settings'
+import type { Context, UserPrincipal } from '../utils/context'
+import { forbidden, Refusal } from '../utils/errors'
+import { sha256 } from '../utils/hash'
+import { newId } from '../utils/ids'
+import { signInLimit } from '../utils/limits'
+import { verifyNobody, verifyPassword } from '../utils/password'
+import { isoOf, toInstant } from '../utils/rows'
+import { mutate } from '../utils/transactions'
+
+const hourMs = 3_600_000
+const approvalMs = 5 * 60_000
+
+/** The same words for an unknown address and a wrong password. */
+const wrong = () =>
+  new Refusal(401, 'wrong-sign-in', 'This e-mail address and password do not go together.', [
+    { path: 'password', message: 'This e-mail address and password do not go together.' },
+  ])
+
+/**
+ * Checks a person's password and opens a session.
+ *
+ * @param token random value that goes into the cookie; only its hash is stored
+ * @throws Refusal 401 for wrong words, 429 after too many of them
+ */
+export async function signIn(ctx: Context, body: SignInBody, token: string): Promise<Session> {
+  const user = await checkPassword(ctx, body)
+  const sessionId = sha256(token)
+  const deviceId = ctx.principal.device?.id ?? null
+  const principal: UserPrincipal = {
+    id: user.id, name: user.name, initials: user.initials, email: user.email, role: user.role, sessionId,
+  }
+  const asUser: Context = { ...ctx, principal: { kind: 'user', user: principal, device: ctx.principal.device } }
+  await mutate(asUser, async ({ trx, now, audit }) => {
+    const expiresAt = now + sessionHours * hourMs
+    await insertSession({ id: sessionId, userId: user.id, deviceId, now, expiresAt }, trx)
+    audit({ action: 'session.started', subject: `user:${user.id}`, facts: { deviceId } })
+    return null
+  })
+  return describeSession(asUser)
+}
+
+/** Ends the session of the asking browser at once, in every process; its streams close. */
+export async function signOut(ctx: Context): Promise<void> {
+  const user = ctx.principal.user
+  if (!user) return
+  await mutate(ctx, async ({ trx, now, audit, publish }) => {
+    await endSession(user.sessionId, 'signed-out', now, trx)
+    audit({ action: 'session.ended', subject: `user:${user.id}`, facts: { reason: 'signed-out' } })
+    publish({ type: 'session-ended', subject: `session:${user.sessionId}`, boothId: null, payload: {} })
+    return null
+  })
+}
+
+/** Who this browser is. */
+export async function describeSession(ctx: Pick<Context, 'db' | 'principal'>): Promise<Session> {
+  const { user, device } = ctx.principal
+  return {
+    user: user && { id: user.id, name: user.name, initials: user.initials, email: user.email, role: user.role },
+    device,
+    shop: await readShop(ctx.db),
+  }
+}
+
+/**
+ * A foreman or manager says yes to one thing that a rule forbids, on someone else's screen. The session of that
+ * screen stays as it is.
+ *
+ * @throws Refusal 401 for wrong words, 403 when the person may not approve
+ */
+export async function approve(ctx: Context, body: ApprovalBody): Promise<Approval> {
+  const user = await checkPassword(ctx, body)
+  if (!may(user.role, 'approvals:give')) throw forbidden('A foreman or manager has to approve this.')
+  return mutate(ctx, async ({ trx, now, audit }) => {
+    const id = newId()
+    const expiresAt = now + approvalMs
+    const { action, subject, reason } = body
+    await insertApproval({ id, action, subject, reason, approvedByUserId: user.id, now, expiresAt }, trx)
+    audit({ action: 'approval.given', subject: `approval:${id}`, facts: { action, about: subject, reason, approvedByUserId: user.id } })
+    return { id, action, subject, approvedByUserId: user.id, expiresAt: isoOf(toInstant(expiresAt)) }
+  })
+}
+
+async function checkPassword(ctx: Context, { email, password }: SignInBody) {
+  const limit = signInLimit(ctx.db, email, ctx.principal.device?.id ?? null)
+  await limit.consume()
+  const user = await findSignInUser(email, ctx.db)
+  const right = user?.password_hash ? await verifyPassword(user.password_hash, password) : await verifyNobody(password)
+  if (!user || !right) throw wrong()
+  await limit.clear()
+  return user
+}
