@@ -1,0 +1,121 @@
+import * as z from 'zod/mini'
+import { DecimalText, InstantText, Uuid, WorkingLine, flag, pageOf, pageQuery, searchText } from './common'
+import { ComponentRole, chemistryText } from './materials'
+
+export const MixListQuery = z.strictObject({
+  materialId: z.optional(Uuid),
+  chemistry: z.optional(chemistryText),
+  q: searchText,
+  archived: flag,
+  ...pageQuery,
+})
+export type MixListQuery = z.infer<typeof MixListQuery>
+
+/** Parts of one component; `partsMax` where viscosity decides how much. */
+export const MixPart = z.object({ parts: DecimalText, partsMax: z.nullable(DecimalText) })
+export type MixPart = z.infer<typeof MixPart>
+
+const head = {
+  id: Uuid,
+  code: z.string(),
+  name: z.string(),
+  archived: z.boolean(),
+  version: z.number(),
+}
+
+export const MixItem = z.object({
+  ...head,
+  currentRevisionId: z.nullable(Uuid),
+  revisionNumber: z.nullable(z.number()),
+  basis: z.nullable(z.enum(['weight', 'volume'])),
+  parts: z.array(MixPart),
+  baseCode: z.nullable(z.string()),
+  baseName: z.nullable(z.string()),
+  chemistry: z.nullable(z.string()),
+  containsIsocyanates: z.boolean(),
+  potLifeMin: z.nullable(DecimalText),
+  potLifeReferenceC: z.nullable(DecimalText),
+})
+export type MixItem = z.infer<typeof MixItem>
+export const MixList = pageOf(MixItem)
+export type MixList = z.infer<typeof MixList>
+
+export const MixComponent = z.object({
+  index: z.number(),
+  materialId: Uuid,
+  materialCode: z.string(),
+  materialName: z.string(),
+  role: ComponentRole,
+  parts: DecimalText,
+  partsMax: z.nullable(DecimalText),
+  /** Allowed deviation in per cent of the target; the one in force, given or default. */
+  tolerancePct: DecimalText,
+  toleranceGiven: z.boolean(),
+  reactive: z.boolean(),
+  densityGPerMl: z.nullable(DecimalText),
+  chemistry: z.string(),
+  containsIsocyanates: z.boolean(),
+  /** Share of the mixed material by weight. */
+  sharePct: DecimalText,
+})
+export type MixComponent = z.infer<typeof MixComponent>
+
+export const PotLifePoint = z.object({ c: DecimalText, min: DecimalText })
+
+/** A revision never changes; a change makes the next one. */
+export const MixRevision = z.object({
+  id: Uuid,
+  mixId: Uuid,
+  number: z.number(),
+  basis: z.enum(['weight', 'volume']),
+  potLifeMin: z.nullable(DecimalText),
+  potLifeReferenceC: z.nullable(DecimalText),
+  potLifeTable: z.nullable(z.array(PotLifePoint)),
+  halvesPerC: z.nullable(DecimalText),
+  potLifeSource: z.nullable(z.string()),
+  lateFromPct: DecimalText,
+  /** Minutes after which a pot counts as late at the sheet's temperature; null where there is no pot life. */
+  lateAfterMin: z.nullable(DecimalText),
+  inductionMin: DecimalText,
+  viscosity: z.nullable(z.object({
+    cup: z.string(),
+    secondsMin: z.nullable(DecimalText),
+    secondsMax: z.nullable(DecimalText),
+    atC: z.nullable(DecimalText),
+  })),
+  /** Of the mixed material: from the sheet, else by adding volumes; null where a density is missing. */
+  densityGPerMl: z.nullable(DecimalText),
+  densityIs: z.nullable(z.enum(['given', 'worked-out'])),
+  volumeSolidsPct: z.nullable(DecimalText),
+  leftoverSharePct: z.nullable(DecimalText),
+  notes: z.nullable(z.string()),
+  createdAt: InstantText,
+  createdByName: z.nullable(z.string()),
+  components: z.array(MixComponent),
+  /** Shares, density and the late limit, line by line. */
+  working: z.array(WorkingLine),
+})
+export type MixRevision = z.infer<typeof MixRevision>
+
+export const MixRevisionLine = z.object({
+  id: Uuid,
+  number: z.number(),
+  basis: z.enum(['weight', 'volume']),
+  parts: z.array(MixPart),
+  potLifeMin: z.nullable(DecimalText),
+  notes: z.nullable(z.string()),
+  createdAt: InstantText,
+  createdByName: z.nullable(z.string()),
+  batchCount: z.number(),
+})
+export type MixRevisionLine = z.infer<typeof MixRevisionLine>
+
+export const Mix = z.object({
+  ...head,
+  current: z.nullable(MixRevision),
+  revisions: z.array(MixRevisionLine),
+  schedules: z.array(z.object({ id: Uuid, code: z.string(), name: z.string() })),
+  createdAt: InstantText,
+  updatedAt: InstantText,
+})
+export type Mix = z.infer<typeof Mix>

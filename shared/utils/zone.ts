@@ -1,0 +1,73 @@
+const formats = new Map<string, Intl.DateTimeFormat>()
+
+function formatOf(zone: string): Intl.DateTimeFormat {
+  const known = formats.get(zone)
+  if (known) return known
+  const made = new Intl.DateTimeFormat('en-GB', {
+    timeZone: zone, hourCycle: 'h23', year: 'numeric', month: '2-digit', day: '2-digit', hour: '2-digit', minute: '2-digit', second: '2-digit',
+  })
+  formats.set(zone, made)
+  return made
+}
+
+const dayMs = 86_400_000
+
+/** Milliseconds by which the zone's wall clock is ahead of UTC at an instant. */
+function offsetMs(ms: number, zone: string): number {
+  const part: Record<string, number> = {}
+  for (const { type, value } of formatOf(zone).formatToParts(ms)) part[type] = Number(value)
+  const { year = 0, month = 1, day = 1, hour = 0, minute = 0, second = 0 } = part
+  return Date.UTC(year, month - 1, day, hour, minute, second) - Math.floor(ms / 1000) * 1000
+}
+
+/** True for an IANA name that this machine knows. */
+export function isZone(zone: string): boolean {
+  try {
+    formatOf(zone)
+    return true
+  } catch (error) {
+    if (error instanceof RangeError) return false
+    throw error
+  }
+}
+
+/**
+ * The shop's calendar day of an instant, `YYYY-MM-DD`.
+ * @param ms epoch milliseconds
+ * @param zone IANA name
+ * @throws RangeError for an unknown zone
+ */
+export function shopDate(ms: number, zone: string): string {
+  return new Date(ms + offsetMs(ms, zone)).toISOString().slice(0, 10)
+}
+
+/**
+ * The first instant of a calendar day in the shop's zone, epoch milliseconds. Where the clock jumps over
+ * midnight, that is the first instant that the day has.
+ * @param day `YYYY-MM-DD`
+ */
+export function startOfShopDay(day: string, zone: string): number {
+  const wall = dayNumber(day) * dayMs
+  const guess = wall - offsetMs(wall, zone)
+  const start = wall - offsetMs(guess, zone)
+  const earlier = wall - offsetMs(guess - dayMs / 2, zone)
+  if (earlier < start && shopDate(earlier, zone) === day) return earlier
+  return shopDate(start, zone) === day ? start : earlier
+}
+
+/** Calendar days from one day to another, below 0 when it lies before: `daysBetween('2026-12-01', '2026-12-15')` is 14. */
+export function daysBetween(from: string, to: string): number {
+  return dayNumber(to) - dayNumber(from)
+}
+
+/** The calendar day so many days later. */
+export function addDays(day: string, days: number): string {
+  return new Date((dayNumber(day) + days) * dayMs).toISOString().slice(0, 10)
+}
+
+/** Days since 1970-01-01; a calendar day has no zone. */
+function dayNumber(day: string): number {
+  const at = Date.parse(`${day}T00:00:00.000Z`)
+  if (Number.isNaN(at)) throw new RangeError(`not a calendar day: ${day}`)
+  return at / dayMs
+}
