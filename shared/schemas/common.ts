@@ -1,45 +1,26 @@
 import * as z from 'zod/mini'
-
-/** Identity of a row: a UUID in lower case, as the database stores it. */
-export const Uuid = z.uuid('That is not an id.').check(z.toLowerCase())
+import { Cursor, Limit, Uuid } from './fields'
 
 /** The path parameter of every page of one thing. */
 export const IdParams = z.object({ id: Uuid })
-
-/** A quantity as it travels: a plain decimal with a point and no exponent. */
-export const DecimalText = z.string().check(z.regex(/^-?\d+(\.\d+)?$/))
-
-/** An instant: ISO 8601 in UTC with milliseconds. */
-export const InstantText = z.iso.datetime({ precision: 3 })
-
-/** A day of the shop's calendar: `2027-03-31`. */
-export const DayText = z.iso.date()
 
 /** One line of a sum as it is shown when a figure is opened. */
 export const WorkingLine = z.object({ what: z.string(), formula: z.string(), value: z.string(), unit: z.string() })
 export type WorkingLine = z.infer<typeof WorkingLine>
 
-/** Most rows of one page of a list. */
-export const maxPageSize = 200
-
-const pageLimit = 'Ask for 1 to 200 rows.'
-
 /** What every list takes beside its filters. */
-export const pageQuery = {
-  cursor: z.optional(z.string('That cursor is not ours.').check(z.maxLength(600, 'That cursor is not ours.'), z.regex(/^[\w-]+$/, 'That cursor is not ours.'))),
-  limit: z._default(
-    z.coerce.number(pageLimit).check(z.multipleOf(1, pageLimit), z.minimum(1, pageLimit), z.maximum(maxPageSize, pageLimit)),
-    50,
-  ),
-}
+export const pageQuery = { cursor: z.optional(Cursor), limit: Limit }
 
 /** Words to search for, in code and name. */
 export const searchText = z.optional(
   z.string('Search for words.').check(z.trim(), z.minLength(1, 'Search for at least one letter.'), z.maxLength(80, 'Search for at most 80 letters.')),
 )
 
-/** A yes or no in an address: `true` or `false`. */
-export const flag = z.optional(z.pipe(z.enum(['true', 'false'], 'Say true or false.'), z.transform((text: string) => text === 'true')))
+/** A whole number in an address, such as days. */
+export const wholeNumber = (most: number) => z.pipe(
+  z.string().check(z.regex(/^\d{1,6}$/, `Give a whole number from 0 to ${most}.`)),
+  z.pipe(z.transform((text: string) => parseInt(text, 10)), z.int().check(z.maximum(most, `Give a whole number from 0 to ${most}.`))),
+)
 
 /** A page of a list. `nextCursor` is null on the last one. */
 export const pageOf = <Item extends z.ZodMiniType>(item: Item) =>

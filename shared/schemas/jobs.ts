@@ -1,5 +1,6 @@
 import * as z from 'zod/mini'
-import { DayText, DecimalText, InstantText, Uuid, WorkingLine, pageOf, pageQuery, searchText } from './common'
+import { WorkingLine, pageOf, pageQuery, searchText } from './common'
+import { DateText, DecimalText, InstantText, Uuid } from './fields'
 import { ComponentRole } from './materials'
 import { Faces, ScheduleStep } from './schedules'
 
@@ -20,7 +21,7 @@ const head = {
   title: z.string(),
   customer: z.nullable(z.string()),
   state: JobState,
-  dueOn: z.nullable(DayText),
+  dueOn: z.nullable(DateText),
   /** Days from the shop's today; below 0 when the day is past. */
   dueInDays: z.nullable(z.number()),
   scheduleId: Uuid,
@@ -86,7 +87,7 @@ export const JobStep = z.object({
   boothName: z.nullable(z.string()),
   gunId: z.nullable(Uuid),
   gunName: z.nullable(z.string()),
-  benchListOn: z.nullable(DayText),
+  benchListOn: z.nullable(DateText),
   /** Pieces (by their quantities) on which the step is done. */
   donePieceCount: z.number(),
   lastAt: z.nullable(InstantText),

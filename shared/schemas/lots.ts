@@ -1,5 +1,6 @@
 import * as z from 'zod/mini'
-import { DayText, DecimalText, InstantText, Uuid, WorkingLine, flag, pageOf, pageQuery, searchText } from './common'
+import { WorkingLine, pageOf, pageQuery, searchText, wholeNumber } from './common'
+import { DateText, DecimalText, Flag, InstantText, Uuid } from './fields'
 
 /** A lot runs out soon from this many days before its use-by date on. */
 export const runsOutWithinDays = 14
@@ -15,17 +16,15 @@ export const lotConditions = ['blocked', 'used-up', 'out-of-date', 'runs-out', '
 export const LotCondition = z.enum(lotConditions, 'Choose a state.')
 export type LotCondition = z.infer<typeof LotCondition>
 
-const days = 'Give whole days, 0 to 3650.'
-
 export const LotListQuery = z.strictObject({
   materialId: z.optional(Uuid),
   state: z.optional(LotCondition),
   /** Lots with a use-by date at most so many days from today, those past it included. */
-  expiresWithinDays: z.optional(z.coerce.number(days).check(z.multipleOf(1, days), z.minimum(0, days), z.maximum(3650, days))),
+  expiresWithinDays: z.optional(wholeNumber(3650)),
   /** Lots with a tenth or less of what was received, but not used up. */
-  low: flag,
+  low: z.optional(Flag),
   /** Lots that may be poured today. */
-  usable: flag,
+  usable: z.optional(Flag),
   q: searchText,
   order: z._default(z.enum(['newest', 'first-expiring'], 'Choose an order.'), 'newest'),
   ...pageQuery,
@@ -46,8 +45,8 @@ const head = {
   state: z.enum(lotStates),
   condition: LotCondition,
   blockedReason: z.nullable(z.string()),
-  receivedOn: DayText,
-  expiresOn: z.nullable(DayText),
+  receivedOn: DateText,
+  expiresOn: z.nullable(DateText),
   /** Days from the shop's today to the use-by date; below 0 once it is past. */
   expiresInDays: z.nullable(z.number()),
   openedAt: z.nullable(InstantText),

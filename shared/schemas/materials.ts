@@ -1,5 +1,6 @@
 import * as z from 'zod/mini'
-import { DayText, DecimalText, InstantText, Uuid, flag, pageOf, pageQuery, searchText } from './common'
+import { pageOf, pageQuery, searchText } from './common'
+import { DateText, DecimalText, Flag, InstantText, Uuid } from './fields'
 import { LotItem } from './lots'
 
 /** What a material is bought as. */
@@ -19,7 +20,7 @@ export const MaterialListQuery = z.strictObject({
   role: z.optional(MaterialRole),
   chemistry: z.optional(chemistryText),
   q: searchText,
-  archived: flag,
+  archived: z.optional(Flag),
   ...pageQuery,
 })
 export type MaterialListQuery = z.infer<typeof MaterialListQuery>
@@ -40,7 +41,7 @@ const head = {
   /** Grams in lots that may not be used. */
   lockedStockG: DecimalText,
   usableLotCount: z.number(),
-  nearestExpiresOn: z.nullable(DayText),
+  nearestExpiresOn: z.nullable(DateText),
   nearestExpiresInDays: z.nullable(z.number()),
   /** The usable stock is at or below the reorder point. */
   reorder: z.boolean(),

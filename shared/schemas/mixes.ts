@@ -1,12 +1,13 @@
 import * as z from 'zod/mini'
-import { DecimalText, InstantText, Uuid, WorkingLine, flag, pageOf, pageQuery, searchText } from './common'
+import { WorkingLine, pageOf, pageQuery, searchText } from './common'
+import { DecimalText, Flag, InstantText, Uuid } from './fields'
 import { ComponentRole, chemistryText } from './materials'
 
 export const MixListQuery = z.strictObject({
   materialId: z.optional(Uuid),
   chemistry: z.optional(chemistryText),
   q: searchText,
-  archived: flag,
+  archived: z.optional(Flag),
   ...pageQuery,
 })
 export type MixListQuery = z.infer<typeof MixListQuery>

@@ -1,5 +1,6 @@
 import * as z from 'zod/mini'
-import { DecimalText, InstantText, Uuid, WorkingLine, flag, pageOf, pageQuery, searchText } from './common'
+import { WorkingLine, pageOf, pageQuery, searchText } from './common'
+import { DecimalText, Flag, InstantText, Uuid } from './fields'
 import { MixPart } from './mixes'
 
 export const stepKinds = ['prepare', 'coat', 'sand', 'wait', 'inspect'] as const
@@ -13,7 +14,7 @@ export type Faces = z.infer<typeof Faces>
 export const ScheduleListQuery = z.strictObject({
   mixId: z.optional(Uuid),
   q: searchText,
-  archived: flag,
+  archived: z.optional(Flag),
   ...pageQuery,
 })
 export type ScheduleListQuery = z.infer<typeof ScheduleListQuery>

@@ -1,17 +1,10 @@
 import * as z from 'zod/mini'
-import { DayText, DecimalText, Uuid, flag, pageOf, pageQuery } from './common'
+import { pageOf, pageQuery } from './common'
+import { DateText, DecimalText, Flag, Uuid } from './fields'
 import { roles } from '../types/roles'
 
-/** The setting `shop`: what the whole shop shares. `zone` is an IANA name, `currency` an ISO 4217 code. */
-export const ShopSetting = z.object({
-  name: z._default(z.string(), 'Shop'),
-  zone: z._default(z.string(), 'UTC'),
-  currency: z._default(z.string(), 'EUR'),
-})
-export type ShopSetting = z.infer<typeof ShopSetting>
-
 /** Lists of the shop's own things: all active ones, or with `inactive=true` those taken out of use. */
-export const ShopListQuery = z.strictObject({ inactive: flag, ...pageQuery })
+export const ShopListQuery = z.strictObject({ inactive: z.optional(Flag), ...pageQuery })
 export type ShopListQuery = z.infer<typeof ShopListQuery>
 
 const head = { id: Uuid, name: z.string(), active: z.boolean(), version: z.number() }
@@ -55,7 +48,7 @@ export const Scale = z.object({
   mpeG: z.nullable(DecimalText),
   accuracyClass: z.nullable(z.enum(['I', 'II', 'III', 'IIII'])),
   verificationIntervalG: z.nullable(DecimalText),
-  nextCheckOn: z.nullable(DayText),
+  nextCheckOn: z.nullable(DateText),
   nextCheckInDays: z.nullable(z.number()),
 })
 export type Scale = z.infer<typeof Scale>
@@ -73,7 +66,7 @@ export const User = z.object({
   email: z.string(),
   initials: z.string(),
   role: z.enum(roles),
-  isocyanateTrainingUntil: z.nullable(DayText),
+  isocyanateTrainingUntil: z.nullable(DateText),
   /** By the shop's today; null where no training is recorded. */
   isocyanateTraining: z.nullable(z.enum(['valid', 'ends-soon', 'over'])),
 })
