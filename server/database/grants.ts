@@ -1,4 +1,5 @@
 import type { Knex } from 'knex'
+import { firstRow } from '../utils/raw'
 import { privileges, tables, type TableKind } from './tables'
 
 /**
@@ -12,7 +13,7 @@ import { privileges, tables, type TableKind } from './tables'
 export async function applyGrants(admin: Knex, user: string): Promise<void> {
   const rows = await admin('mysql.user').select<{ Host: string }[]>('Host').where('User', user)
   if (rows.length === 0) throw new Error(`database user ${user} does not exist`)
-  const database = (await admin.raw<[{ name: string }[]]>('SELECT DATABASE() AS name'))[0][0]?.name
+  const { name: database } = await firstRow<{ name: string | null }>(admin, 'SELECT DATABASE() AS name')
   if (!database) throw new Error('no database is selected')
   for (const { Host: host } of rows) {
     await revokeTables(admin, database, user, host)

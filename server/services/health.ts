@@ -1,4 +1,5 @@
 import type { Knex } from 'knex'
+import { firstRow } from '../utils/raw'
 
 /** What the health routes tell. */
 export interface Health {
@@ -27,8 +28,8 @@ export async function checkDatabase(db: Knex, lastMigration: string): Promise<He
  * @throws when the database does not flush its log at each commit
  */
 export async function demandDurableCommits(db: Knex): Promise<void> {
-  const [rows] = await db.raw<[{ value: number | string }[]]>('SELECT @@innodb_flush_log_at_trx_commit AS value')
-  if (String(rows[0]?.value) !== '1') {
+  const { value } = await firstRow<{ value: number | string }>(db, 'SELECT @@innodb_flush_log_at_trx_commit AS value')
+  if (String(value) !== '1') {
     throw new Error('the database must run with innodb_flush_log_at_trx_commit=1, or batches are lost when it dies')
   }
 }

@@ -1,4 +1,5 @@
 import type { Knex } from 'knex'
+import { firstRow } from './raw'
 
 /** The one source of the present instant, in epoch milliseconds. */
 export interface Clock {
@@ -32,8 +33,6 @@ export function toldClock(read: () => number): Clock {
 }
 
 async function readInstant(db: Knex | Knex.Transaction, sql: string, bindings: string[] = []): Promise<number> {
-  const [rows] = await db.raw<[{ now: Date }[]]>(sql, bindings)
-  const row = rows[0]
-  if (!row) throw new Error('the database told no time')
-  return row.now.getTime()
+  const { now } = await firstRow<{ now: Date }>(db, sql, bindings)
+  return now.getTime()
 }
