@@ -1,7 +1,7 @@
 import * as z from 'zod/mini'
 import { WorkingLine, pageOf, pageQuery, searchText } from './common'
 import { DateText, DecimalText, InstantText, Uuid } from './fields'
-import { ComponentRole } from './materials'
+import { ComponentRole } from './material-roles'
 import { Faces, ScheduleStep } from './schedules'
 
 export const jobStates = ['planned', 'running', 'done', 'held'] as const

@@ -1,6 +1,7 @@
 import * as z from 'zod/mini'
 import { WorkingLine, pageOf, pageQuery, searchText, wholeNumber } from './common'
 import { DateText, DecimalText, Flag, InstantText, Uuid } from './fields'
+import { MaterialRole } from './material-roles'
 
 /** A lot runs out soon from this many days before its use-by date on. */
 export const runsOutWithinDays = 14
@@ -31,9 +32,6 @@ export const LotListQuery = z.strictObject({
 })
 export type LotListQuery = z.infer<typeof LotListQuery>
 
-/** The roles of a material, spelled here so that materials can name their lots. */
-const materialRole = z.enum(['base', 'hardener', 'thinner', 'additive', 'accelerator', 'peroxide', 'ready-to-use'])
-
 const head = {
   id: Uuid,
   /** The maker's batch number on the tin. */
@@ -41,7 +39,7 @@ const head = {
   materialId: Uuid,
   materialCode: z.string(),
   materialName: z.string(),
-  materialRole,
+  materialRole: MaterialRole,
   state: z.enum(lotStates),
   condition: LotCondition,
   blockedReason: z.nullable(z.string()),

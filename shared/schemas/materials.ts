@@ -2,16 +2,7 @@ import * as z from 'zod/mini'
 import { pageOf, pageQuery, searchText } from './common'
 import { DateText, DecimalText, Flag, InstantText, Uuid } from './fields'
 import { LotItem } from './lots'
-
-/** What a material is bought as. */
-export const materialRoles = ['base', 'hardener', 'thinner', 'additive', 'accelerator', 'peroxide', 'ready-to-use'] as const
-export const MaterialRole = z.enum(materialRoles, 'Choose a role.')
-export type MaterialRole = z.infer<typeof MaterialRole>
-
-/** The part that a material plays in a mix. */
-export const componentRoles = ['base', 'hardener', 'thinner', 'additive', 'accelerator', 'peroxide'] as const
-export const ComponentRole = z.enum(componentRoles, 'Choose a role.')
-export type ComponentRole = z.infer<typeof ComponentRole>
+import { ComponentRole, MaterialRole } from './material-roles'
 
 /** A short word in an address, such as a chemistry. */
 export const chemistryText = z.string('Name a chemistry.').check(z.trim(), z.minLength(1, 'Name a chemistry.'), z.maxLength(40, 'No chemistry has so long a name.'))

@@ -1,7 +1,8 @@
 import * as z from 'zod/mini'
 import { WorkingLine, pageOf, pageQuery, searchText } from './common'
 import { DecimalText, Flag, InstantText, Uuid } from './fields'
-import { ComponentRole, chemistryText } from './materials'
+import { ComponentRole } from './material-roles'
+import { chemistryText } from './materials'
 
 export const MixListQuery = z.strictObject({
   materialId: z.optional(Uuid),
