@@ -4,6 +4,7 @@ import { ensureBuild } from './lib/build.mjs'
 import { lint, prepareTypes, typecheck } from './lib/checks.mjs'
 import { ensureChromium } from './lib/chromium.mjs'
 import { scrub } from './lib/environment.mjs'
+import { ensureMariadb } from './lib/mariadb.mjs'
 import { ensurePackages } from './lib/packages.mjs'
 import { root } from './lib/paths.mjs'
 import { Stop, isEnding, main, run, say, tail } from './lib/process.mjs'
@@ -61,6 +62,7 @@ await main(async () => {
   const { suites, checks, filters } = readArguments(process.argv.slice(2))
   const env = scrub(process.env)
   await ensurePackages(root, env)
+  await ensureMariadb()
   const folder = await openTestFolder()
   await prepareTypes(env)
   const sums = []

@@ -1,4 +1,4 @@
-import { closeSync, existsSync, mkdirSync, mkdtempSync, openSync, readdirSync, rmSync } from 'node:fs'
+import { closeSync, mkdirSync, mkdtempSync, openSync, readdirSync, rmSync } from 'node:fs'
 import { join } from 'node:path'
 import { serverEntry, useBuild } from './build.mjs'
 import { serverEnvironment } from './environment.mjs'
@@ -99,6 +99,6 @@ export async function openTestServer(shop, suite) {
   return {
     log,
     env: { ...env, BASE_URL: url, SERVER_LOG: log, SERVER_ENTRY: serverEntry, POTBELL_DATA_DIR: dataFolder },
-    close: () => existsSync(shop.folder) ? endTree(child.pid, 1200) : Promise.resolve(),
+    close: () => endTree(child.pid, 1200),
   }
 }
