@@ -1,12 +1,18 @@
 import knex, { type Knex } from 'knex'
 
-/** What the connection is told besides where the database is. */
-export interface ConnectionOptions extends Knex.MySql2ConnectionConfig {
+/** Where the database is and how values travel, in the driver's terms. */
+export interface ConnectionOptions {
   host: string
   port: number
   user: string
   password: string
   database: string
+  timezone: 'Z'
+  dateStrings: ['DATE']
+  supportBigNumbers: boolean
+  bigNumberStrings: boolean
+  decimalNumbers: boolean
+  ssl?: { rejectUnauthorized: boolean }
 }
 
 /**
