@@ -1,13 +1,13 @@
 import * as z from 'zod/mini'
-
-const decimal = (message: string) => z.string(message).check(z.trim(), z.regex(/^-?\d{1,3}(\.\d{1,2})?$/, message))
+import { pageOf, pageQuery } from './common'
+import { CelsiusText, PercentText, Uuid } from './fields'
 
 /** Air and humidity of a booth as read from its instrument. Degrees Celsius and per cent, decimal strings. */
 export const ClimateCreateBody = z.strictObject({
-  boothId: z.uuid('Choose a booth.'),
-  airC: decimal('Give the air in °C, with at most two decimals.'),
-  rhPct: decimal('Give the humidity in %, with at most two decimals.'),
-  surfaceC: z.optional(z.nullable(decimal('Give the surface in °C, with at most two decimals.'))),
+  boothId: Uuid,
+  airC: CelsiusText,
+  rhPct: PercentText,
+  surfaceC: z._default(z.nullable(CelsiusText), null),
 })
 export type ClimateCreateBody = z.infer<typeof ClimateCreateBody>
 
@@ -30,11 +30,10 @@ export const ClimateReading = z.object({
 export type ClimateReading = z.infer<typeof ClimateReading>
 
 export const ClimateListQuery = z.object({
-  boothId: z.optional(z.uuid('That is not an id.')),
-  cursor: z.optional(z.string().check(z.maxLength(400, 'That cursor is too long.'))),
-  limit: z.optional(z.string().check(z.regex(/^([1-9]|[1-9]\d|1\d\d|200)$/, 'From 1 to 200.'))),
+  boothId: z.optional(Uuid),
+  ...pageQuery,
 })
 export type ClimateListQuery = z.infer<typeof ClimateListQuery>
 
-export const ClimateList = z.object({ items: z.array(ClimateReading), nextCursor: z.nullable(z.string()) })
+export const ClimateList = pageOf(ClimateReading)
 export type ClimateList = z.infer<typeof ClimateList>

@@ -1,5 +1,6 @@
 import * as z from 'zod/mini'
 import { ClimateReading } from './climate'
+import { Uuid } from './fields'
 import { Timer } from './timers'
 
 /** Instants are ISO 8601 UTC with milliseconds, quantities decimal strings, everywhere below. */
@@ -91,14 +92,14 @@ export const LiveSnapshot = z.object({
 })
 export type LiveSnapshot = z.infer<typeof LiveSnapshot>
 
-export const LiveQuery = z.object({ boothId: z.optional(z.uuid('That is not an id.')) })
+export const LiveQuery = z.object({ boothId: z.optional(Uuid) })
 export type LiveQuery = z.infer<typeof LiveQuery>
 
 export const ServerTime = z.object({ now: z.string() })
 export type ServerTime = z.infer<typeof ServerTime>
 
 export const EventsQuery = z.object({
-  boothId: z.optional(z.uuid('That is not an id.')),
+  boothId: z.optional(Uuid),
   lastEventId: z.optional(z.string().check(z.regex(/^\d{1,15}$/, 'That is no event number.'))),
 })
 export type EventsQuery = z.infer<typeof EventsQuery>

@@ -1,4 +1,6 @@
 import * as z from 'zod/mini'
+import { pageOf, pageQuery } from './common'
+import { Uuid, words } from './fields'
 
 export const timerKinds = [
   'pot-late', 'pot-up', 'window-opens', 'window-closing', 'window-closes', 'clearance', 'dry-sand', 'dry-stack', 'dry-pack', 'free',
@@ -31,16 +33,15 @@ export const Timer = z.object({
 })
 export type Timer = z.infer<typeof Timer>
 
-export const TimerList = z.object({ items: z.array(Timer), nextCursor: z.nullable(z.string()) })
+export const TimerList = pageOf(Timer)
 export type TimerList = z.infer<typeof TimerList>
 
 export const TimerListQuery = z.object({
-  boothId: z.optional(z.uuid('That is not an id.')),
+  boothId: z.optional(Uuid),
   kind: z.optional(z.enum(timerKinds, 'That is no kind of timer.')),
   /** `running` is everything that waits, rings or was acknowledged. */
   state: z.optional(z.enum([...timerStates, 'running'], 'That is no state of a timer.')),
-  cursor: z.optional(z.string().check(z.maxLength(400, 'That cursor is too long.'))),
-  limit: z.optional(z.string().check(z.regex(/^([1-9]|[1-9]\d|1\d\d|200)$/, 'From 1 to 200.'))),
+  ...pageQuery,
 })
 export type TimerListQuery = z.infer<typeof TimerListQuery>
 
@@ -52,17 +53,15 @@ const minutes = (least: number, most: number) =>
 
 /** A timer of one's own: a name and whole minutes from now. A week is the longest. */
 export const TimerCreateBody = z.strictObject({
-  name: z.string('Give it a name.').check(z.trim(), z.minLength(1, 'Give it a name.'), z.maxLength(80, 'Keep the name under 80 characters.')),
+  name: words(80),
   minutes: minutes(1, 10_080),
-  boothId: z.optional(z.nullable(z.uuid('Choose a booth.'))),
+  boothId: z._default(z.nullable(Uuid), null),
 })
 export type TimerCreateBody = z.infer<typeof TimerCreateBody>
 
-export const TimerParams = z.object({ id: z.uuid('That is not an id.') })
-
 /** Ten minutes of quiet. A reason is welcome and not required. */
 export const TimerSilenceBody = z.strictObject({
-  reason: z.optional(z.string().check(z.trim(), z.maxLength(400, 'Keep it under 400 characters.'))),
+  reason: z._default(z.nullable(words(400)), null),
 })
 export type TimerSilenceBody = z.infer<typeof TimerSilenceBody>
 

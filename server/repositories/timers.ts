@@ -1,0 +1,164 @@
+import type { Knex } from 'knex'
+import type { Timer, TimerKind, TimerState } from '#shared/schemas/timers'
+import { newId } from '../utils/ids'
+import { isoOf, isoOrNull, toInstant } from '../utils/rows'
+
+type Db = Knex | Knex.Transaction
+
+interface TimerRow {
+  id: string
+  kind: TimerKind
+  subject_type: Timer['subjectType']
+  subject_id: string
+  booth_id: string | null
+  booth_name: string | null
+  label: string
+  due_at: Date
+  state: TimerState
+  fired_at: Date | null
+  announced_at: Date | null
+  silenced_until: Date | null
+  silenced_by: string | null
+  acknowledged_at: Date | null
+  acknowledged_by: string | null
+  created_at: Date
+  version: number
+}
+
+function toTimer(row: TimerRow): Timer {
+  return {
+    id: row.id,
+    kind: row.kind,
+    subjectType: row.subject_type,
+    subjectId: row.subject_id,
+    boothId: row.booth_id,
+    boothName: row.booth_name,
+    label: row.label,
+    dueAt: isoOf(row.due_at),
+    state: row.state,
+    firedAt: isoOrNull(row.fired_at),
+    announcedAt: isoOrNull(row.announced_at),
+    silencedUntil: isoOrNull(row.silenced_until),
+    silencedBy: row.silenced_by,
+    acknowledgedAt: isoOrNull(row.acknowledged_at),
+    acknowledgedBy: row.acknowledged_by,
+    createdAt: isoOf(row.created_at),
+    version: row.version,
+  }
+}
+
+const select = (db: Db) =>
+  db('timers as t').leftJoin('booths as b', 'b.id', 't.booth_id').select<TimerRow[]>('t.*', 'b.name as booth_name')
+
+/** Instants are epoch milliseconds. */
+export interface NewTimer {
+  kind: TimerKind
+  subjectType: Timer['subjectType']
+  subjectId: string
+  boothId: string | null
+  label: string
+  dueAt: number
+  createdByUserId?: string | null
+}
+
+/**
+ * Sets the one timer of its kind and subject. One that stands for the same instant and was not called off keeps
+ * what happened to it; one for another instant waits anew.
+ */
+export async function setTimer(timer: NewTimer, now: number, db: Db): Promise<void> {
+  const at = toInstant(now)
+  // MariaDB assigns from left to right: due_at moves last, so that the others still see the old instant.
+  const kept = (column: string, otherwise: string) =>
+    `${column} = IF(due_at = VALUES(due_at) AND state NOT IN ('cancelled', 'done'), ${column}, ${otherwise})`
+  await db.raw(
+    `INSERT INTO timers (id, kind, subject_type, subject_id, booth_id, label, due_at, state, created_by_user_id, version, created_at, updated_at)
+     VALUES (?, ?, ?, ?, ?, ?, ?, 'waiting', ?, 1, ?, ?)
+     ON DUPLICATE KEY UPDATE ${kept('fired_at', 'NULL')}, ${kept('announced_at', 'NULL')}, ${kept('silenced_until', 'NULL')},
+       ${kept('silenced_by', 'NULL')}, ${kept('acknowledged_at', 'NULL')}, ${kept('acknowledged_by', 'NULL')}, ${kept('state', '\'waiting\'')},
+       booth_id = VALUES(booth_id), label = VALUES(label), due_at = VALUES(due_at), version = version + 1, updated_at = VALUES(updated_at)`,
+    [newId(), timer.kind, timer.subjectType, timer.subjectId, timer.boothId, timer.label, toInstant(timer.dueAt), timer.createdByUserId ?? null, at, at],
+  )
+}
+
+export async function getTimer(id: string, db: Db): Promise<Timer | null> {
+  const row = await select(db).where('t.id', id).first()
+  return row ? toTimer(row) : null
+}
+
+/** The timer with its row locked until the transaction ends. */
+export async function lockTimer(id: string, trx: Knex.Transaction): Promise<Timer | null> {
+  const held = await trx('timers').where({ id }).forUpdate().first<{ id: string } | undefined>('id')
+  return held ? getTimer(id, trx) : null
+}
+
+/** All timers of one subject that were not ended, locked. */
+export async function lockTimersOf(subjectType: Timer['subjectType'], subjectId: string, trx: Knex.Transaction): Promise<Timer[]> {
+  await trx('timers').where({ subject_type: subjectType, subject_id: subjectId }).forUpdate().select('id')
+  const rows = await select(trx)
+    .where({ 't.subject_type': subjectType, 't.subject_id': subjectId })
+    .whereIn('t.state', ['waiting', 'fired', 'acknowledged'])
+    .orderBy(['t.due_at', 't.id'])
+  return rows.map(toTimer)
+}
+
+/** What may change of a timer. Instants are epoch milliseconds. */
+export interface TimerChange {
+  state?: TimerState
+  dueAt?: number
+  firedAt?: number | null
+  announcedAt?: number | null
+  silencedUntil?: number | null
+  silencedBy?: string | null
+  acknowledgedAt?: number | null
+  acknowledgedBy?: string | null
+}
+
+const instantOrNull = (ms: number | null) => (ms === null ? null : toInstant(ms))
+
+export async function updateTimer(id: string, change: TimerChange, now: number, db: Db): Promise<void> {
+  const columns: Record<string, unknown> = { version: db.raw('version + 1'), updated_at: toInstant(now) }
+  if (change.state !== undefined) columns.state = change.state
+  if (change.dueAt !== undefined) columns.due_at = toInstant(change.dueAt)
+  if (change.firedAt !== undefined) columns.fired_at = instantOrNull(change.firedAt)
+  if (change.announcedAt !== undefined) columns.announced_at = instantOrNull(change.announcedAt)
+  if (change.silencedUntil !== undefined) columns.silenced_until = instantOrNull(change.silencedUntil)
+  if (change.silencedBy !== undefined) columns.silenced_by = change.silencedBy
+  if (change.acknowledgedAt !== undefined) columns.acknowledged_at = instantOrNull(change.acknowledgedAt)
+  if (change.acknowledgedBy !== undefined) columns.acknowledged_by = change.acknowledgedBy
+  await db('timers').where({ id }).update(columns)
+}
+
+export interface TimerFilter {
+  boothId?: string
+  kind?: TimerKind
+  states?: readonly TimerState[]
+  after?: { at: number; id: string }
+  limit: number
+}
+
+/** Timers by the instant they are due. Those without a booth belong to every booth. */
+export async function listTimers(filter: TimerFilter, db: Db): Promise<Timer[]> {
+  const query = select(db).orderBy(['t.due_at', 't.id']).limit(filter.limit)
+  const { boothId, after } = filter
+  if (boothId) void query.where((part) => part.where('t.booth_id', boothId).orWhereNull('t.booth_id'))
+  if (filter.kind) void query.where('t.kind', filter.kind)
+  if (filter.states) void query.whereIn('t.state', filter.states)
+  if (after) void query.whereRaw('(t.due_at, t.id) > (?, ?)', [toInstant(after.at), after.id])
+  return (await query).map(toTimer)
+}
+
+/**
+ * Timers that call for a person: everything that has fired and was not acknowledged, and pots whose life is up
+ * until they are emptied. With a booth: its own, those of no booth, and the pots of all.
+ */
+export async function listAlarms(boothId: string | null, db: Db): Promise<Timer[]> {
+  const query = select(db)
+    .where((part) =>
+      part
+        .where((pot) => pot.where('t.kind', 'pot-up').whereIn('t.state', ['fired', 'acknowledged']))
+        .orWhere((other) => other.whereIn('t.kind', ['window-closes', 'clearance', 'dry-sand', 'dry-stack', 'dry-pack', 'free']).where('t.state', 'fired')),
+    )
+    .orderBy(['t.due_at', 't.id'])
+  if (boothId) void query.where((part) => part.where('t.kind', 'pot-up').orWhere('t.booth_id', boothId).orWhereNull('t.booth_id'))
+  return (await query).map(toTimer)
+}

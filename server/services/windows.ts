@@ -1,0 +1,29 @@
+import type { Knex } from 'knex'
+import type { LiveWindow } from '#shared/schemas/live'
+import { windowStateAt } from '#shared/utils/windows'
+import { findWindows, type OpenWindow, type WindowFilter } from '../repositories/windows'
+import type { Mutation } from '../utils/transactions'
+
+/** Windows that still count, as they stand at `now` (epoch milliseconds). */
+export async function windowsAt(filter: WindowFilter, now: number, db: Knex | Knex.Transaction): Promise<LiveWindow[]> {
+  const windows = await findWindows(filter, db)
+  return windows.map((window) => toLiveWindow(window, now))
+}
+
+/** The window without what only the readiness rules need, with its state at `now` (epoch milliseconds). */
+export function toLiveWindow(window: OpenWindow, now: number): LiveWindow {
+  const { stepPosition: _position, pieceIds: _ids, ...shown } = window
+  return { ...shown, state: stateOf(window, now) }
+}
+
+/** State of a window at `now`, epoch milliseconds. */
+export function stateOf(window: Pick<OpenWindow, 'opensAt' | 'closingAt' | 'closesAt'>, now: number): LiveWindow['state'] {
+  const ms = (iso: string | null) => (iso === null ? null : Date.parse(iso))
+  return windowStateAt({ opensAt: Date.parse(window.opensAt), closingAt: ms(window.closingAt), closesAt: ms(window.closesAt) }, now)
+}
+
+/** Tells the screens what the window is now; one that has ended is told as null. */
+export async function publishWindow(m: Mutation, applicationId: string, boothId: string | null): Promise<void> {
+  const [window] = await windowsAt({ applicationId }, m.now, m.trx)
+  m.publish({ type: 'window', subject: `application:${applicationId}`, boothId, payload: window ?? null })
+}
