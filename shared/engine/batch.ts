@@ -101,9 +101,18 @@ export function calculateBatch(input: BatchInput): BatchAnswer {
     targetTotalG: plan.targetTotalG,
     tooSmallForScale: plan.tooSmallForScale,
     smallestTotalG: plan.smallestTotalG,
-    components: plan.components.map(({ uncertaintyG: _u, fitness: _f, ...component }) => component),
+    components: plan.components.map(withoutFitness),
     working: plan.working,
   }
+}
+
+/** Targets as they leave the engine. */
+export function printTargets(mix: Mix, targets: readonly Target[]): BatchComponent[] {
+  return targets.map(target => withoutFitness(printTarget(mix, target)))
+}
+
+function withoutFitness({ uncertaintyG: _u, fitness: _f, ...component }: BatchPlan['components'][number]): BatchComponent {
+  return component
 }
 
 function printTarget(mix: Mix, target: Target): BatchPlan['components'][number] {

@@ -1,0 +1,93 @@
+import { HUNDRED, readDecimal, readPositive } from './decimal'
+import { EngineError } from './error'
+import type { Mix, MixComponent } from './mix'
+
+/** Where two chemistries meet: one after the other in a booth, in one waste bin, in neighbouring schedule steps. */
+export type Meeting = 'booth' | 'bin' | 'step'
+
+/** One rule of the table that is handed in; chemistries are the shop's own keys. */
+export interface ChemistryRule {
+  meeting: Meeting
+  first: string
+  second: string
+  /** The rule holds in this order only; otherwise both ways round. */
+  ordered?: boolean
+  /** `blocked` until booth, duct and filters are recorded clean; `warning` is shown and may be gone past. */
+  severity: 'blocked' | 'warning'
+  reason: string
+}
+
+/**
+ * The strictest rule that two chemistries break, or null. In a booth a recorded cleaning of booth, duct and filters
+ * between the two lifts it.
+ */
+export function clashOf(
+  rules: readonly ChemistryRule[], meeting: Meeting, first: string, second: string, cleanedBetween = false,
+): ChemistryRule | null {
+  if (meeting === 'booth' && cleanedBetween) return null
+  const broken = rules.filter(rule => rule.meeting === meeting
+    && ((rule.first === first && rule.second === second)
+      || (rule.ordered !== true && rule.first === second && rule.second === first)))
+  return broken.find(({ severity }) => severity === 'blocked') ?? broken[0] ?? null
+}
+
+/** One thing to do at the bench. */
+export type PouringStep = { kind: 'pour', index: number } | { kind: 'stir' }
+
+/**
+ * Order at the bench: base; accelerator into the base, stirred; the others as the mix lists them; peroxide last, after
+ * stirring. Accelerator and peroxide are never neighbours.
+ */
+export function pouringOrder(mix: Mix): PouringStep[] {
+  const pours = (wanted: (component: MixComponent) => boolean): PouringStep[] =>
+    mix.components.filter(wanted).map(({ index }) => ({ kind: 'pour', index }))
+  const stir: PouringStep = { kind: 'stir' }
+  const accelerator = pours(({ role }) => role === 'accelerator')
+  const peroxide = pours(({ role }) => role === 'peroxide')
+  const others = pours(({ role }) => role !== 'base' && role !== 'accelerator' && role !== 'peroxide')
+  const before: PouringStep[] = [
+    ...pours(({ role }) => role === 'base'),
+    ...(accelerator.length > 0 ? [...accelerator, stir] : []),
+    ...others,
+  ]
+  if (peroxide.length === 0) return before
+  return before.at(-1)?.kind === 'stir' ? [...before, ...peroxide] : [...before, stir, ...peroxide]
+}
+
+/**
+ * Refuses an order in which accelerator and peroxide meet without stirring between them.
+ * @throws EngineError `accelerator-meets-peroxide`, `component-unknown`
+ */
+export function checkPouringOrder(mix: Mix, steps: readonly PouringStep[]): void {
+  steps.forEach((step, position) => {
+    const next = steps[position + 1]
+    if (step.kind !== 'pour' || next?.kind !== 'pour') return
+    const roles = [roleAt(mix, step.index, position), roleAt(mix, next.index, position + 1)]
+    if (roles.includes('accelerator') && roles.includes('peroxide')) {
+      throw new EngineError('accelerator-meets-peroxide', `steps.${position + 1}`, 'Stir the accelerator into the base before the peroxide goes in')
+    }
+  })
+}
+
+/**
+ * Whether an addition lies within its sheet's per-cent limits on the base.
+ * @throws EngineError for numbers that cannot be true
+ */
+export function additionVerdict(input: {
+  baseG: string
+  addedG: string
+  minPct: string
+  maxPct: string
+}): 'below' | 'within' | 'above' {
+  const percent = readPositive(input.addedG, 'addedG').times(HUNDRED).div(readPositive(input.baseG, 'baseG'))
+  if (percent.lt(readDecimal(input.minPct, 'minPct', { min: '0', max: HUNDRED }))) return 'below'
+  return percent.gt(readDecimal(input.maxPct, 'maxPct', { min: '0', max: HUNDRED })) ? 'above' : 'within'
+}
+
+function roleAt(mix: Mix, index: number, position: number): MixComponent['role'] {
+  const component = mix.components[index]
+  if (component === undefined) {
+    throw new EngineError('component-unknown', `steps.${position}`, 'The mix has no such component')
+  }
+  return component.role
+}

@@ -1,0 +1,145 @@
+import type { Beyond, TableValue, TemperatureRow } from './temperature'
+import { readCelsius, readTable, valueAt } from './temperature'
+import type { Dec } from './decimal'
+import { print, readPositive } from './decimal'
+import { EngineError } from './error'
+import { MINUTE_MS, earlier, later, readDuration, readInstant, wholePart } from './instants'
+import { DEFAULT_HALVES_PER_C } from './pot-life'
+
+/** First and last moment of one application. Instants are whole epoch milliseconds. */
+export interface Sprayed {
+  firstSprayedAt: number
+  lastSprayedAt: number
+}
+
+export interface WindowInput extends Sprayed {
+  /** Earliest: counted from the **last** spray. */
+  minMs: number
+  /** Latest: counted from the **first** spray. Null: never. */
+  maxMs: number | null
+  /** To mix and spray what is still to be coated. */
+  workLeftMs?: number | undefined
+}
+
+export interface OvercoatWindow {
+  opensAt: number
+  closesAt: number | null
+  /** Null where it never closes and where it is empty. */
+  closingAt: number | null
+  /** Closes before it opens: to be said before the coat below is sprayed. */
+  empty: boolean
+}
+
+export type WindowState = 'too-early' | 'open' | 'closing' | 'missed'
+
+const CLOSING_AT_LEAST_MS = 5 * MINUTE_MS
+const CLOSING_AT_MOST_MS = 30 * MINUTE_MS
+
+/**
+ * Opens = last sprayed + earliest, closes = first sprayed + latest. Closing begins at
+ * latest − max(work left, 10 % of the window held between 5 and 30 min), never before the middle of the window.
+ * @throws EngineError `spray-reversed`, and for instants and durations that are none
+ */
+export function overcoatWindow(input: WindowInput): OvercoatWindow {
+  readSprayed(input)
+  const opensAt = input.lastSprayedAt + readDuration(input.minMs, 'minMs')
+  if (input.maxMs === null) return { opensAt, closesAt: null, closingAt: null, empty: false }
+  const closesAt = input.firstSprayedAt + readDuration(input.maxMs, 'maxMs')
+  const workLeftMs = readDuration(input.workLeftMs ?? 0, 'workLeftMs')
+  return between(opensAt, closesAt, workLeftMs)
+}
+
+/**
+ * *missed* from the close on, *closing* from `closingAt` on, *open* from the opening on. An empty window is too early
+ * until it is missed.
+ */
+export function windowState({ opensAt, closesAt, closingAt }: OvercoatWindow, now: number): WindowState {
+  if (closesAt !== null && now >= closesAt) return 'missed'
+  if (now < opensAt) return 'too-early'
+  return closingAt !== null && now >= closingAt ? 'closing' : 'open'
+}
+
+/** A coat on both faces and edges is several applications; together they run from the first to the last of them. */
+export function spanOf(applications: readonly Sprayed[]): Sprayed {
+  const [first, ...rest] = applications
+  if (first === undefined) throw new EngineError('application-missing', 'applications', 'Nothing was sprayed')
+  return rest.reduce((span, one) => ({
+    firstSprayedAt: earlier(span.firstSprayedAt, one.firstSprayedAt),
+    lastSprayedAt: later(span.lastSprayedAt, one.lastSprayedAt),
+  }), first)
+}
+
+/** The four times of a coat, as its data sheet gives them. Durations in whole milliseconds. */
+export interface CoatTimes {
+  overcoatMinMs: number
+  /** Latest without sanding; null: never too late. */
+  overcoatMaxMs: number | null
+  /** Earliest to sand; null where the sheet is silent: as the overcoat. */
+  sandMinMs: number | null
+  /** Latest after sanding, counted from the first moment of sanding; null: no limit. */
+  sandedMaxMs: number | null
+}
+
+export interface CoatWindows {
+  /** For the next coat: without sanding, or after it where the piece was sanded or denibbed. */
+  overcoat: OvercoatWindow
+  sanded: boolean
+  /** Earliest moment to sand. */
+  sandFromAt: number
+  /** Sanding began before the coat could be sanded. */
+  sandedTooEarly: boolean
+}
+
+/**
+ * Windows over one coat. Sanding and denibbing move a piece to the second pair: it may be coated once the coat could be
+ * sanded and the sanding is done, until the latest after sanding.
+ * @param sanding first and last moment of sanding, null while not sanded
+ */
+export function coatWindows(
+  sprayed: Sprayed, times: CoatTimes, sanding: Sprayed | null, workLeftMs = 0,
+): CoatWindows {
+  readSprayed(sprayed)
+  const sandFromAt = sprayed.lastSprayedAt + readDuration(times.sandMinMs ?? times.overcoatMinMs, 'sandMinMs')
+  if (sanding === null) {
+    const overcoat = overcoatWindow({ ...sprayed, minMs: times.overcoatMinMs, maxMs: times.overcoatMaxMs, workLeftMs })
+    return { overcoat, sanded: false, sandFromAt, sandedTooEarly: false }
+  }
+  readSprayed(sanding)
+  const opensAt = later(sandFromAt, sanding.lastSprayedAt)
+  const overcoat = times.sandedMaxMs === null
+    ? { opensAt, closesAt: null, closingAt: null, empty: false }
+    : between(opensAt, sanding.firstSprayedAt + readDuration(times.sandedMaxMs, 'sandedMaxMs'), workLeftMs)
+  return { overcoat, sanded: true, sandFromAt, sandedTooEarly: sanding.firstSprayedAt < sandFromAt }
+}
+
+/** Which end of a window a sheet's table is for. */
+export type WindowEnd = 'opens' | 'closes'
+
+/**
+ * Minutes of a sheet's table at a temperature: cold opens later, heat closes earlier. Never to the careless side of the
+ * table: warmer than it does not open earlier, colder than it does not close later.
+ */
+export function windowMinutesAt(
+  end: WindowEnd, table: readonly TemperatureRow[], temperatureC: string, halvesPerC = DEFAULT_HALVES_PER_C,
+): { minutes: string, from: TableValue['from'] } {
+  const [colder, hotter]: [Beyond, Beyond] = end === 'opens' ? ['rule', 'hold'] : ['hold', 'rule']
+  const stepC: Dec = readPositive(halvesPerC, 'halvesPerC', '100')
+  const { minutes, from } = valueAt(readTable(table, 'table'), readCelsius(temperatureC, 'temperatureC'), stepC, colder, hotter)
+  return { minutes: print(minutes), from }
+}
+
+function between(opensAt: number, closesAt: number, workLeftMs: number): OvercoatWindow {
+  if (opensAt >= closesAt) return { opensAt, closesAt, closingAt: null, empty: true }
+  const length = closesAt - opensAt
+  const tenth = earlier(later(wholePart(length, 10), CLOSING_AT_LEAST_MS), CLOSING_AT_MOST_MS)
+  const middle = opensAt + wholePart(length, 2)
+  return { opensAt, closesAt, closingAt: later(closesAt - later(workLeftMs, tenth), middle), empty: false }
+}
+
+function readSprayed({ firstSprayedAt, lastSprayedAt }: Sprayed): void {
+  readInstant(firstSprayedAt, 'firstSprayedAt')
+  readInstant(lastSprayedAt, 'lastSprayedAt')
+  if (lastSprayedAt < firstSprayedAt) {
+    throw new EngineError('spray-reversed', 'lastSprayedAt', 'The last spray cannot be before the first')
+  }
+}
