@@ -166,7 +166,7 @@ export function atEnd(closer) {
 }
 
 /** Ends everything that was started here: the children, then what they stood on. */
-export async function endAll(graceMs = 1200) {
+async function endAll(graceMs = 1200) {
   ending ??= (async () => {
     await Promise.all([...living].map(child => endTree(child.pid, graceMs)))
     for (const closer of closers.reverse()) await closer()

@@ -2,8 +2,8 @@ import { existsSync, rmSync, writeFileSync } from 'node:fs'
 import { join } from 'node:path'
 import { sql } from './mariadb.mjs'
 
-export const ADMIN_USER = 'potbell_admin'
-export const APP_USER = 'potbell_app'
+const ADMIN_USER = 'potbell_admin'
+const APP_USER = 'potbell_app'
 /** With host names not resolved, a connection over loopback counts as 127.0.0.1, one over the socket as localhost. */
 const HOSTS = ['127.0.0.1', 'localhost']
 
