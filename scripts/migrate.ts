@@ -1,5 +1,6 @@
 import { createKnex } from '../server/database/connection'
 import { applyGrants } from '../server/database/grants'
+import { demandDurableCommits } from '../server/services/health'
 import { readMigrationEnvironment } from '../server/utils/config'
 import knexConfig from '../knexfile'
 
@@ -17,21 +18,13 @@ async function main(direction: string | undefined): Promise<void> {
       process.stdout.write(`${JSON.stringify({ rolledBack: names })}\n`)
       return
     }
-    await checkDurability(knex)
+    await demandDurableCommits(knex)
     const [, applied] = await knex.migrate.latest(knexConfig.migrations) as [number, string[]]
     await applyGrants(knex, decodeURIComponent(new URL(databaseUrl).username))
     process.stdout.write(`${JSON.stringify({ applied, ...await countPeople(knex) })}\n`)
   }
   finally {
     await knex.destroy()
-  }
-}
-
-/** What is acknowledged must be on disk: a database set otherwise could lose batches in a power cut. */
-async function checkDurability(knex: ReturnType<typeof createKnex>): Promise<void> {
-  const row: { flush: unknown } | undefined = await knex.first(knex.raw('@@innodb_flush_log_at_trx_commit AS flush'))
-  if (String(row?.flush) !== '1') {
-    throw new Error('The database runs with innodb_flush_log_at_trx_commit other than 1 and could lose batches that were acknowledged: set it to 1.')
   }
 }
 
