@@ -1,0 +1,130 @@
+import type { Knex } from 'knex'
+import type { OimlClass } from '#shared/engine/scale'
+import { decimalOf, decimalOrNull } from '../utils/rows'
+
+type Db = Knex | Knex.Transaction
+
+/** A scale's record, as the arithmetic needs it. Grams. */
+export interface ScaleRecord {
+  id: string
+  divisionG: string
+  capacityG: string
+  mpeG: string | null
+  accuracyClass: OimlClass | null
+  verificationIntervalG: string | null
+}
+
+interface ScaleRow {
+  id: string
+  division_g: string
+  capacity_g: string
+  mpe_g: string | null
+  accuracy_class: OimlClass | null
+  verification_interval_g: string | null
+}
+
+export async function findScale(id: string, db: Db): Promise<ScaleRecord | null> {
+  const row = await db('scales').where({ id }).first<ScaleRow | undefined>(
+    'id', 'division_g', 'capacity_g', 'mpe_g', 'accuracy_class', 'verification_interval_g',
+  )
+  return row
+    ? {
+        id: row.id,
+        divisionG: decimalOf(row.division_g),
+        capacityG: decimalOf(row.capacity_g),
+        mpeG: decimalOrNull(row.mpe_g),
+        accuracyClass: row.accuracy_class,
+        verificationIntervalG: decimalOrNull(row.verification_interval_g),
+      }
+    : null
+}
+
+/** True when the row is there, in use or archived: what was done with it stays true. */
+export async function isThere(table: 'booths' | 'guns' | 'users', id: string, db: Db): Promise<boolean> {
+  return (await db(table).where({ id }).first('id')) !== undefined
+}
+
+/** A step of a job with what the schedule says of it. Minutes as decimals. */
+export interface JobStep {
+  id: string
+  jobId: string
+  jobCode: string
+  title: string
+  state: 'to-come' | 'started' | 'done'
+  mixId: string | null
+  coats: number
+  faces: 'front' | 'back' | 'both' | 'edges' | 'all' | null
+  coatIntervalMinMin: string | null
+  coatIntervalMaxMin: string | null
+  overcoatFromMin: string | null
+  overcoatUntilMin: string | null
+  sandFromMin: string | null
+  sandUntilMin: string | null
+}
+
+interface JobStepRow {
+  id: string
+  job_id: string
+  job_code: string
+  title: string
+  state: JobStep['state']
+  mix_id: string | null
+  coats: number | null
+  faces: JobStep['faces']
+  coat_interval_min_min: string | null
+  coat_interval_max_min: string | null
+  overcoat_from_min: string | null
+  overcoat_until_min: string | null
+  sand_from_min: string | null
+  sand_until_min: string | null
+}
+
+export async function findJobStep(id: string, db: Db): Promise<JobStep | null> {
+  const row = await db('job_steps as s')
+    .join('jobs as j', 'j.id', 's.job_id')
+    .join('schedule_steps as c', 'c.id', 's.schedule_step_id')
+    .where('s.id', id)
+    .first<JobStepRow | undefined>(
+      's.id', 's.job_id', 'j.code as job_code', 'c.title', 's.state', 'c.mix_id', 'c.coats', 'c.faces', 'c.coat_interval_min_min',
+      'c.coat_interval_max_min', 'c.overcoat_from_min', 'c.overcoat_until_min', 'c.sand_from_min', 'c.sand_until_min',
+    )
+  return row
+    ? {
+        id: row.id,
+        jobId: row.job_id,
+        jobCode: row.job_code,
+        title: row.title,
+        state: row.state,
+        mixId: row.mix_id,
+        coats: row.coats ?? 1,
+        faces: row.faces,
+        coatIntervalMinMin: decimalOrNull(row.coat_interval_min_min),
+        coatIntervalMaxMin: decimalOrNull(row.coat_interval_max_min),
+        overcoatFromMin: decimalOrNull(row.overcoat_from_min),
+        overcoatUntilMin: decimalOrNull(row.overcoat_until_min),
+        sandFromMin: decimalOrNull(row.sand_from_min),
+        sandUntilMin: decimalOrNull(row.sand_until_min),
+      }
+    : null
+}
+
+/** How many of these pieces belong to the job. */
+export async function countPiecesOf(jobId: string, pieceIds: readonly string[], db: Db): Promise<number> {
+  const row = await db('pieces').where({ job_id: jobId }).whereIn('id', [...pieceIds]).count<{ n: number | string }[]>({ n: '*' })
+  return Number(row[0]?.n ?? 0)
+}
+
+export async function pieceIdsOf(jobId: string, db: Db): Promise<string[]> {
+  const rows = await db('pieces').where({ job_id: jobId }).orderBy('position').select<{ id: string }[]>('id')
+  return rows.map(({ id }) => id)
+}
+
+/** Marks a step as started, where nothing had been done of it yet. */
+export async function startJobStep(id: string, at: Date, db: Db): Promise<void> {
+  await db('job_steps').where({ id, state: 'to-come' }).update({ state: 'started', updated_at: at, version: db.raw('version + 1') })
+}
+
+/** True when the person has ever signed in on this device. */
+export async function hasSignedInAt(userId: string, deviceId: string, db: Db): Promise<boolean> {
+  return (await db('sessions').where({ user_id: userId, device_id: deviceId }).first('id')) !== undefined
+}

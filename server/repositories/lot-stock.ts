@@ -1,0 +1,83 @@
+import type { Knex } from 'knex'
+import { newId } from '../utils/ids'
+import { decimalOf } from '../utils/rows'
+
+type Db = Knex | Knex.Transaction
+
+/** A lot as pouring looks at it. */
+export interface StockLot {
+  id: string
+  materialId: string
+  materialRole: string
+  lotNumber: string
+  /** Last day that it may be used, `YYYY-MM-DD`. */
+  expiresOn: string | null
+  state: 'sealed' | 'in-use' | 'empty' | 'blocked'
+}
+
+interface LotRow {
+  id: string
+  material_id: string
+  material_role: string
+  lot_number: string
+  expires_on: string | null
+  state: StockLot['state']
+}
+
+export async function findStockLots(ids: readonly string[], db: Db): Promise<Map<string, StockLot>> {
+  if (ids.length === 0) return new Map()
+  const rows = await db('lots as l')
+    .join('materials as m', 'm.id', 'l.material_id')
+    .whereIn('l.id', [...ids])
+    .select<LotRow[]>('l.id', 'l.material_id', 'm.role as material_role', 'l.lot_number', 'l.expires_on', 'l.state')
+  return new Map(rows.map((row) => [row.id, {
+    id: row.id,
+    materialId: row.material_id,
+    materialRole: row.material_role,
+    lotNumber: row.lot_number,
+    expiresOn: row.expires_on,
+    state: row.state,
+  }]))
+}
+
+/** Locks the lots in the order of their ids, so that two batches from the same tins wait instead of dying of each other. */
+export async function lockLots(ids: readonly string[], trx: Knex.Transaction): Promise<void> {
+  if (ids.length > 0) await trx('lots').whereIn('id', [...ids]).orderBy('id').forUpdate().select('id')
+}
+
+/** What left a lot for a batch, in grams above nothing. */
+export interface Drawn {
+  lotId: string
+  grams: string
+  at: Date
+}
+
+/** Books what a batch took, opens tins that were sealed and marks those whose stock cannot be right for counting. */
+export async function drawFromLots(
+  drawn: readonly Drawn[], batchId: string, userId: string, now: Date, trx: Knex.Transaction,
+): Promise<{ id: string; stockG: string }[]> {
+  if (drawn.length === 0) return []
+  await trx('lot_movements').insert(drawn.map(({ lotId, grams, at }) => ({
+    id: newId(), lot_id: lotId, kind: 'poured', grams: `-${grams}`, batch_id: batchId, user_id: userId, at, created_at: now,
+  })))
+  for (const { lotId, at } of drawn) await openLot(lotId, at, now, trx)
+  const stock = await stockOf(drawn.map(({ lotId }) => lotId), trx)
+  const short = stock.filter(({ stockG }) => stockG.startsWith('-')).map(({ id }) => id)
+  if (short.length > 0) {
+    await trx('lots').whereIn('id', short).where({ count_needed: false })
+      .update({ count_needed: true, updated_at: now, version: trx.raw('version + 1') })
+  }
+  return stock
+}
+
+async function openLot(id: string, at: Date, now: Date, trx: Knex.Transaction): Promise<void> {
+  await trx('lots').where({ id, state: 'sealed' })
+    .update({ state: 'in-use', opened_at: trx.raw('COALESCE(opened_at, ?)', [at]), updated_at: now, version: trx.raw('version + 1') })
+}
+
+/** Present stock by the movements, in grams; below nothing when more was poured than was booked in. */
+export async function stockOf(lotIds: readonly string[], db: Db): Promise<{ id: string; stockG: string }[]> {
+  const rows = await db('lot_movements').whereIn('lot_id', [...lotIds]).groupBy('lot_id').orderBy('lot_id')
+    .select<{ lot_id: string; stock: string }[]>('lot_id', db.raw('SUM(grams) AS stock'))
+  return rows.map(({ lot_id: id, stock }) => ({ id, stockG: decimalOf(stock) }))
+}
