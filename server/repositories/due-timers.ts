@@ -9,7 +9,8 @@ export const announceAgainMs = 60_000
 /** `fire`: its instant has come. `announce`: nobody answered. `unmute`: the quiet is over and the pot still stands. */
 export type DueAction = 'fire' | 'announce' | 'unmute'
 
-interface DueWork {
+/** One timer and what is to be done about it. */
+export interface DueWork {
   id: string
   action: DueAction
 }
