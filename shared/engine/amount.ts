@@ -1,5 +1,5 @@
 import type { Dec } from './decimal'
-import { ONE, floorTo, ofPercent, print, readCount, readNonNegative, readPercent, readPositive } from './decimal'
+import { LARGEST, ONE, floorTo, ofPercent, print, readCount, readNonNegative, readPercent, readPositive } from './decimal'
 import { EngineError } from './error'
 import type { Mix } from './mix'
 import { componentAt } from './mix'
@@ -59,9 +59,17 @@ const MOST_COATS = 50
  * deposited (`sprayed`); total = sprayed × (1 + reserve %) + residue.
  * @param divisionG what is left of a component counts down to the scale's division: no more can be poured
  * @throws EngineError `amount-ways`, `film-weight-missing`, `film-weight-meaning-missing`, `efficiency-missing`,
- * `residue-exceeds-total`, `too-little`
+ * `residue-exceeds-total`, `too-little`, `too-large`
  */
 export function readAmount(input: AmountInput, mix: Mix, divisionG: Dec): Amount {
+  const amount = readWay(input, mix, divisionG)
+  if (amount.totalG.gt(LARGEST)) {
+    throw new EngineError('too-large', input.areaM2 === undefined ? 'available.grams' : 'areaM2', 'No shop mixes so much')
+  }
+  return amount
+}
+
+function readWay(input: AmountInput, mix: Mix, divisionG: Dec): Amount {
   const ways = [input.areaM2, input.totalG, input.available].filter(way => way !== undefined)
   if (ways.length !== 1) {
     throw new EngineError('amount-ways', 'areaM2', 'Give one of area, total grams and what is left of a component')

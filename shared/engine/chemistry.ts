@@ -3,18 +3,18 @@ import { EngineError } from './error'
 import type { Mix, MixComponent } from './mix'
 
 /** Where two chemistries meet: one after the other in a booth, in one waste bin, in neighbouring schedule steps. */
-export type Meeting = 'booth' | 'bin' | 'step'
+export type Meeting = 'booth' | 'bin' | 'adjacent-steps'
 
 /** One rule of the table that is handed in; chemistries are the shop's own keys. */
 export interface ChemistryRule {
-  meeting: Meeting
+  scope: Meeting
   first: string
   second: string
   /** The rule holds in this order only; otherwise both ways round. */
   ordered?: boolean
-  /** `blocked` until booth, duct and filters are recorded clean; `warning` is shown and may be gone past. */
-  severity: 'blocked' | 'warning'
-  reason: string
+  /** `blocked`: in a booth until booth, duct and filters are recorded clean; `caution`: shown, may be gone past. */
+  verdict: 'blocked' | 'caution'
+  advice: string
 }
 
 /**
@@ -25,10 +25,10 @@ export function clashOf(
   rules: readonly ChemistryRule[], meeting: Meeting, first: string, second: string, cleanedBetween = false,
 ): ChemistryRule | null {
   if (meeting === 'booth' && cleanedBetween) return null
-  const broken = rules.filter(rule => rule.meeting === meeting
+  const broken = rules.filter(rule => rule.scope === meeting
     && ((rule.first === first && rule.second === second)
       || (rule.ordered !== true && rule.first === second && rule.second === first)))
-  return broken.find(({ severity }) => severity === 'blocked') ?? broken[0] ?? null
+  return broken.find(({ verdict }) => verdict === 'blocked') ?? broken[0] ?? null
 }
 
 /** One thing to do at the bench. */

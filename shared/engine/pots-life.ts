@@ -1,8 +1,8 @@
 import type { Dec } from './decimal'
-import { readDecimal, readPositive } from './decimal'
+import { print, readPositive, sum } from './decimal'
 import { EngineError } from './error'
 import { lateAfter } from './pot-life'
-import { readMinutes, readWait } from './temperature'
+import { LONGEST_MINUTES, readMinutes, readWait } from './temperature'
 
 /** How fast a pot is used up. Pace is m²/h with loading, turning and racking; flow alone is a lower bound of the time. */
 export interface Pace {
@@ -45,6 +45,18 @@ export function sprayTimeMin(areaM2: Dec, paceM2PerH: Dec): Dec {
 }
 
 /**
+ * Minutes of work on an area at a pace with loading, turning and racking. Plain decimals.
+ * @throws EngineError `work-too-long` above ten years
+ */
+export function workMinutes(areaM2: string, paceM2PerH: string): string {
+  const minutes = sprayTimeMin(readPositive(areaM2, 'areaM2'), readPositive(paceM2PerH, 'paceM2PerH', '100000'))
+  if (minutes.gt(LONGEST_MINUTES)) {
+    throw new EngineError('work-too-long', 'areaM2', 'At this pace the work would take more than ten years')
+  }
+  return print(minutes)
+}
+
+/**
  * Minutes from the first to the last spray of one pot. Several coats from one pot: each begins an interval after the
  * one before began, or when that is done. Null while neither pace nor flow is known.
  */
@@ -61,15 +73,9 @@ function oneCoatMin({ paceM2PerH, flowGPerMin }: Pace, areaM2: Dec, grams: Dec):
 }
 
 /** Measured pace of past batches: Σ area ÷ Σ time, m²/h. Null without a measured batch. */
-export function measuredPaceM2PerH(batches: readonly { areaM2: string, minutes: string }[]): Dec | null {
+export function measuredPaceM2PerH(batches: readonly { areaM2: string, minutes: string }[]): string | null {
   if (batches.length === 0) return null
-  const area = batches.reduce<Dec | null>((total, { areaM2 }, index) => {
-    const one = readPositive(areaM2, `batches.${index}.areaM2`)
-    return total === null ? one : total.plus(one)
-  }, null)
-  const minutes = batches.reduce<Dec | null>((total, batch, index) => {
-    const one = readDecimal(batch.minutes, `batches.${index}.minutes`, { above: '0' })
-    return total === null ? one : total.plus(one)
-  }, null)
-  return area === null || minutes === null ? null : area.times(60).div(minutes)
+  const area = sum(batches.map(({ areaM2 }, index) => readPositive(areaM2, `batches.${index}.areaM2`)))
+  const minutes = sum(batches.map((batch, index) => readPositive(batch.minutes, `batches.${index}.minutes`)))
+  return print(area.times(60).div(minutes))
 }

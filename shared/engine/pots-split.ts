@@ -30,7 +30,8 @@ export function divideEqually(areaM2: Dec, fits: (areaM2: Dec) => boolean): Port
  * is smallest, so that no pot is left with a single piece.
  * @throws EngineError `piece-too-large`, `too-many-pots`
  */
-export function divideOnBorders(pieces: readonly Dec[], fits: (areaM2: Dec) => boolean): Portion[] {
+export function divideOnBorders(pieces: readonly Dec[], fitsPot: (areaM2: Dec) => boolean): Portion[] {
+  const fits = remembering(fitsPot)
   pieces.forEach((piece, index) => {
     if (!fits(piece)) {
       throw new EngineError('piece-too-large', `pieceAreasM2.${index}`, 'This piece alone does not fit one pot')
@@ -41,6 +42,23 @@ export function divideOnBorders(pieces: readonly Dec[], fits: (areaM2: Dec) => b
     throw new EngineError('too-many-pots', 'pieceAreasM2', `More than ${MOST_POTS} pots would be needed`)
   }
   return fewest.length === 1 ? fewest : even(pieces, fits, fewest)
+}
+
+/**
+ * What holds a smaller area never refuses it: an answer once given holds for everything below, a refusal for everything
+ * above. Only areas between the two are reckoned.
+ */
+function remembering(fits: (areaM2: Dec) => boolean): (areaM2: Dec) => boolean {
+  let fitting: Dec | null = null
+  let refused: Dec | null = null
+  return (areaM2) => {
+    if (fitting?.gte(areaM2)) return true
+    if (refused?.lte(areaM2)) return false
+    const answer = fits(areaM2)
+    if (answer) fitting = areaM2
+    else refused = areaM2
+    return answer
+  }
 }
 
 /** Fills pot after pot as far as it goes: no other split on borders needs fewer. */

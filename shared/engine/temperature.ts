@@ -19,7 +19,8 @@ export type Beyond = 'hold' | 'rule'
 const COLDEST = '-40'
 const HOTTEST = '150'
 const MOST_ROWS = 40
-const LONGEST_MINUTES = '5256000'
+/** Ten years. */
+export const LONGEST_MINUTES = '5256000'
 
 export function readCelsius(text: string, field: string): Dec {
   return readDecimal(text, field, { min: COLDEST, max: HOTTEST })
