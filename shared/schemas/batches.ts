@@ -7,11 +7,11 @@ export const batchStates = ['fresh', 'closing', 'life-up', 'emptied', 'stopped',
 
 /** Why a foreman should look at a batch: what is in the cup is kept as a fact. */
 export const reviewCodes = [
-  'out-of-tolerance', 'cannot-tell', 'not-complete', 'expired-lot', 'blocked-lot', 'late-entry',
-  'not-mixed-in-order', 'clock-ahead', 'over-fill', 'stock-short',
+  'out-of-tolerance', 'not-complete', 'not-mixed-in-order', 'expired-lot', 'blocked-lot', 'late-entry', 'clock-ahead',
 ] as const
 export type ReviewCode = (typeof reviewCodes)[number]
 
+/** What a component does in a mix. */
 const roles = ['base', 'hardener', 'thinner', 'additive', 'accelerator', 'peroxide'] as const
 const verdicts = ['short', 'in-tolerance', 'too-much', 'cannot-tell'] as const
 
@@ -168,7 +168,7 @@ export const Batch = z.strictObject({
   scaleId: z.nullable(Uuid),
   scaleName: z.nullable(z.string()),
   deviceName: z.nullable(z.string()),
-  review: z.array(z.string()),
+  review: z.array(z.enum(reviewCodes)),
   areaM2: z.nullable(DecimalText),
   filmWeightGsm: z.nullable(DecimalText),
   filmWeightIs: z.nullable(z.enum(['deposited', 'sprayed'])),

@@ -63,9 +63,10 @@ export const DraftPlan = z.strictObject({
   transferEfficiencyPct: z.optional(DecimalText),
   reserveG: z.optional(DecimalText),
   reservePct: z.optional(DecimalText),
-  scaleDivisionG: DecimalText,
-  scaleMpeG: z.optional(DecimalText),
+  scaleDivisionG: GramsText,
+  scaleMpeG: z.optional(GramsText),
 })
+export type DraftPlan = z.infer<typeof DraftPlan>
 
 /** Body of `PUT /api/batch-drafts/:id`: a batch being made. The id is the batch's own, made by the client. */
 export const DraftBody = z.strictObject({
@@ -141,8 +142,12 @@ export type PotLife = z.infer<typeof PotLife>
 
 export const draftStates = ['open', 'sealed', 'stopped', 'discarded'] as const
 
-/** Something the server changed or saw, in one word: `clock-ahead` or `late-entry`. */
-export const draftNotes = ['clock-ahead', 'late-entry', 'taken-over'] as const
+/**
+ * What the server saw or changed. `clock-ahead`: the moment lay up to 2 min in the future and was set to now;
+ * `clock-far-ahead`: more than that; `late-entry`: older than 7 days; `taken-over`: another person went on with it.
+ */
+export const draftNotes = ['clock-ahead', 'clock-far-ahead', 'late-entry', 'taken-over'] as const
+export type DraftNote = (typeof draftNotes)[number]
 
 /** Answer of `PUT` and `GET /api/batch-drafts/:id`: the body as stored, with what the server knows of it. */
 export const Draft = z.strictObject({
@@ -163,6 +168,7 @@ export const DraftListQuery = z.strictObject({
   state: z._default(z.enum(['open']), 'open'),
   boothId: z.optional(Uuid),
 })
+export type DraftListQuery = z.infer<typeof DraftListQuery>
 
 /** One line of what is being mixed, for taking over at another tablet. */
 export const DraftSummary = z.strictObject({
@@ -186,3 +192,4 @@ export const DraftSummary = z.strictObject({
 export type DraftSummary = z.infer<typeof DraftSummary>
 
 export const DraftList = z.strictObject({ items: z.array(DraftSummary), nextCursor: z.nullable(z.string()) })
+export type DraftList = z.infer<typeof DraftList>

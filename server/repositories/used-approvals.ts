@@ -1,0 +1,21 @@
+import type { Knex } from 'knex'
+import { toInstant } from '../utils/rows'
+
+/** An approval that can be used now. */
+export interface OpenApproval {
+  id: string
+  action: string
+  subject: string
+}
+
+/** Those of the approvals that are neither used nor expired, locked. */
+export async function lockOpenApprovals(ids: readonly string[], now: number, trx: Knex.Transaction): Promise<OpenApproval[]> {
+  if (ids.length === 0) return []
+  return trx('approvals').whereIn('id', [...ids]).whereNull('used_at').where('expires_at', '>', toInstant(now)).orderBy('id').forUpdate()
+    .select<OpenApproval[]>('id', 'action', 'subject')
+}
+
+/** An approval serves once. */
+export async function useApprovals(ids: readonly string[], now: number, trx: Knex.Transaction): Promise<void> {
+  if (ids.length > 0) await trx('approvals').whereIn('id', [...ids]).update({ used_at: toInstant(now) })
+}
