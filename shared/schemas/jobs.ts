@@ -1,6 +1,7 @@
 import * as z from 'zod/mini'
 import { WorkingLine, pageOf, pageQuery, searchText } from './common'
 import { DateText, DecimalText, InstantText, Uuid } from './fields'
+import { LiveWindow } from './live'
 import { ComponentRole } from './material-roles'
 import { Faces, ScheduleStep } from './schedules'
 
@@ -97,24 +98,11 @@ export const JobStep = z.object({
 })
 export type JobStep = z.infer<typeof JobStep>
 
-/** The overcoat window of one coat on some pieces. `state` is null where no window is set. */
-export const JobWindow = z.object({
-  applicationId: Uuid,
-  jobStepId: Uuid,
-  stepTitle: z.string(),
-  coatNumber: z.nullable(z.number()),
-  coatCount: z.nullable(z.number()),
-  face: z.nullable(Faces),
+/** An overcoat window that still counts, with where its pieces lie. */
+export const JobWindow = z.extend(LiveWindow, {
   racks: z.array(z.string()),
+  /** Pieces by their quantities. */
   pieceCount: z.number(),
-  firstAt: InstantText,
-  lastAt: InstantText,
-  opensAt: z.nullable(InstantText),
-  closingAt: z.nullable(InstantText),
-  closesAt: z.nullable(InstantText),
-  state: z.nullable(z.enum(['too-early', 'open', 'closing', 'missed'])),
-  /** The next coat or sanding is on: the window no longer matters. */
-  used: z.boolean(),
 })
 export type JobWindow = z.infer<typeof JobWindow>
 
@@ -129,7 +117,10 @@ export const JobNeed = z.object({
   afterG: DecimalText,
   reorderPointG: z.nullable(DecimalText),
   reorder: z.boolean(),
+  /** More than may be used today. */
   short: z.boolean(),
+  /** Share of the usable stock that it takes; null where there is none. */
+  takesPct: z.nullable(DecimalText),
   working: z.array(WorkingLine),
 })
 export type JobNeed = z.infer<typeof JobNeed>

@@ -50,15 +50,15 @@ export const MixComponent = z.object({
   role: ComponentRole,
   parts: DecimalText,
   partsMax: z.nullable(DecimalText),
-  /** Allowed deviation in per cent of the target; the one in force, given or default. */
-  tolerancePct: DecimalText,
+  /** Allowed deviation in per cent of the target, given or by default; null where a peroxide's sheet value is missing. */
+  tolerancePct: z.nullable(DecimalText),
   toleranceGiven: z.boolean(),
   reactive: z.boolean(),
   densityGPerMl: z.nullable(DecimalText),
   chemistry: z.string(),
   containsIsocyanates: z.boolean(),
-  /** Share of the mixed material by weight. */
-  sharePct: DecimalText,
+  /** Share of the mixed material by weight; null where a ratio by volume lacks a density. */
+  sharePct: z.nullable(DecimalText),
 })
 export type MixComponent = z.infer<typeof MixComponent>
 

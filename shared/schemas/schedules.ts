@@ -96,9 +96,10 @@ export const ScheduleStep = z.object({
   keepFromDraughts: z.boolean(),
   cautions: z.nullable(z.string()),
   instructions: z.nullable(z.string()),
-  /** Wet film of one coat in µm; null where the density of the mix is not known. */
+  /** Film of one coat on the panel in µm; null where density or volume solids of the mix are not known. */
   wetFilmUm: z.nullable(DecimalText),
-  wetFilmWorking: z.array(WorkingLine),
+  dryFilmUm: z.nullable(DecimalText),
+  filmWorking: z.array(WorkingLine),
 })
 export type ScheduleStep = z.infer<typeof ScheduleStep>
 
