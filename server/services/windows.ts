@@ -1,6 +1,7 @@
 import type { Knex } from 'knex'
+import { windowState } from '#shared/engine/window'
 import type { LiveWindow } from '#shared/schemas/live'
-import { windowStateAt } from '#shared/utils/windows'
+import { toMs } from '#shared/utils/instant'
 import { findWindows, type OpenWindow, type WindowFilter } from '../repositories/windows'
 import type { Mutation } from '../utils/transactions'
 
@@ -18,8 +19,10 @@ export function toLiveWindow(window: OpenWindow, now: number): LiveWindow {
 
 /** State of a window at `now`, epoch milliseconds. */
 export function stateOf(window: Pick<OpenWindow, 'opensAt' | 'closingAt' | 'closesAt'>, now: number): LiveWindow['state'] {
-  const ms = (iso: string | null) => (iso === null ? null : Date.parse(iso))
-  return windowStateAt({ opensAt: Date.parse(window.opensAt), closingAt: ms(window.closingAt), closesAt: ms(window.closesAt) }, now)
+  const opensAt = toMs(window.opensAt)
+  const closesAt = window.closesAt === null ? null : toMs(window.closesAt)
+  const closingAt = window.closingAt === null ? null : toMs(window.closingAt)
+  return windowState({ opensAt, closesAt, closingAt, empty: closesAt !== null && closesAt <= opensAt }, now)
 }
 
 /** Tells the screens what the window is now; one that has ended is told as null. */
