@@ -1,0 +1,104 @@
+import type * as z from 'zod/mini'
+import { Batch, BatchCloseBody, BatchCreateBody, BatchEventBody, BatchList, BatchListQuery, BatchParams } from '#shared/schemas/batches'
+import { BenchSnapshot } from '#shared/schemas/bench'
+import { calculations } from '#shared/schemas/calculations'
+import { ClimateCreateBody, ClimateList, ClimateListQuery, ClimateReading } from '#shared/schemas/climate'
+import { IdParams } from '#shared/schemas/common'
+import { Device, DeviceCreateBody, DeviceList, DeviceParams } from '#shared/schemas/devices'
+import { Draft, DraftBody, DraftList, DraftListQuery, DraftParams } from '#shared/schemas/drafts'
+import { Job, JobList, JobListQuery } from '#shared/schemas/jobs'
+import { EventsQuery, LiveQuery, LiveSnapshot, ServerTime } from '#shared/schemas/live'
+import { Lot, LotList, LotListQuery } from '#shared/schemas/lots'
+import { Material, MaterialList, MaterialListQuery } from '#shared/schemas/materials'
+import { Mix, MixList, MixListQuery } from '#shared/schemas/mixes'
+import { OpenApiDocument } from '#shared/schemas/openapi'
+import { Schedule, ScheduleList, ScheduleListQuery, ScheduleQuery } from '#shared/schemas/schedules'
+import { Approval, ApprovalBody, Session, SignInBody } from '#shared/schemas/session'
+import { BoothList, GunList, MixingCupList, ScaleList, ShopListQuery, UserList } from '#shared/schemas/shop'
+import { Timer, TimerActionBody, TimerCreateBody, TimerExtendBody, TimerList, TimerListQuery, TimerSilenceBody } from '#shared/schemas/timers'
+import type { Action } from '#shared/utils/permissions'
+
+type Schema = z.ZodMiniType
+
+/** What the document says of one route. */
+export interface ApiRoute {
+  method: 'get' | 'post' | 'put' | 'patch' | 'delete'
+  /** With its parameters in braces: `/api/lots/{id}`. */
+  path: string
+  permission: Action | 'public'
+  summary: string
+  query?: Schema
+  params?: Schema
+  body?: Schema
+  /** Null answers nothing (204); `stream` answers server-sent events. */
+  answer: Schema | 'stream' | null
+  status: 200 | 201 | 204
+  /** A POST that needs an Idempotency-Key. */
+  idempotent: boolean
+  /** Path of the file that serves it, where that is more general than `path`. */
+  servedBy?: string
+}
+
+type Extra = Partial<Pick<ApiRoute, 'query' | 'params' | 'body' | 'status' | 'idempotent' | 'servedBy'>>
+type Entry = [path: string, permission: ApiRoute['permission'], summary: string, answer: ApiRoute['answer'], extra?: Extra]
+
+const get = (...[path, permission, summary, answer, extra]: Entry): ApiRoute =>
+  ({ method: 'get', path, permission, summary, answer, status: 200, idempotent: false, ...extra })
+const put = (...entry: Entry): ApiRoute => ({ ...get(...entry), method: 'put' })
+const post = (...[path, permission, summary, answer, extra]: Entry): ApiRoute =>
+  ({ method: 'post', path, permission, summary, answer, status: 201, idempotent: true, ...extra })
+const remove = (...entry: Entry): ApiRoute => ({ ...get(...entry), method: 'delete', status: 204 })
+
+const byId = { params: IdParams }
+
+const calculationRoutes = Object.entries(calculations).map(([name, { body, answer }]) =>
+  post(`/api/calculations/${name}`, 'calculations:run', `Works out: ${name.replace('-', ' ')}`, answer,
+    { body, status: 200, idempotent: false, servedBy: '/api/calculations/{name}' }))
+
+/** Every route under `/api`. A test holds it against the files. */
+export const apiRoutes: readonly ApiRoute[] = [
+  get('/api/session', 'public', 'Who this browser is', Session),
+  post('/api/session', 'public', 'Signs in', Session, { body: SignInBody, idempotent: false }),
+  remove('/api/session', 'public', 'Signs out', null),
+  post('/api/approvals', 'approvals:create', 'A foreman allows one thing, once', Approval, { body: ApprovalBody }),
+  get('/api/time', 'time:read', 'The shop\'s clock', ServerTime),
+  get('/api/live', 'live:read', 'Pots, windows and alarms at one instant', LiveSnapshot, { query: LiveQuery }),
+  get('/api/events', 'live:read', 'What happens, as it happens', 'stream', { query: EventsQuery }),
+  get('/api/bench/snapshot', 'bench:read', 'All that a bench works from', BenchSnapshot),
+  ...calculationRoutes,
+  get('/api/batch-drafts', 'drafts:read', 'Batches being made', DraftList, { query: DraftListQuery }),
+  get('/api/batch-drafts/{id}', 'drafts:read', 'A batch being made', Draft, { params: DraftParams }),
+  put('/api/batch-drafts/{id}', 'drafts:write', 'Saves a batch being made', Draft, { params: DraftParams, body: DraftBody }),
+  get('/api/batches', 'batches:read', 'The log of batches', BatchList, { query: BatchListQuery }),
+  post('/api/batches', 'batches:create', 'Seals a batch into the record', Batch, { body: BatchCreateBody }),
+  get('/api/batches/{id}', 'batches:read', 'A batch', Batch, { params: BatchParams }),
+  post('/api/batches/{id}/events', 'batches:event', 'First spray, last spray or a note', Batch, { params: BatchParams, body: BatchEventBody }),
+  post('/api/batches/{id}/close', 'batches:close', 'A pot is emptied', Batch, { params: BatchParams, body: BatchCloseBody }),
+  get('/api/timers', 'timers:read', 'Timers', TimerList, { query: TimerListQuery }),
+  post('/api/timers', 'timers:create', 'Sets a free timer', Timer, { body: TimerCreateBody }),
+  post('/api/timers/{id}/silence', 'timers:silence', 'Ten minutes of quiet', Timer, { ...byId, body: TimerSilenceBody, status: 200 }),
+  post('/api/timers/{id}/acknowledge', 'timers:acknowledge', 'Somebody has heard it', Timer, { ...byId, body: TimerActionBody, status: 200 }),
+  post('/api/timers/{id}/extend', 'timers:create', 'Gives a free timer more time', Timer, { ...byId, body: TimerExtendBody, status: 200 }),
+  post('/api/timers/{id}/done', 'timers:acknowledge', 'A timer has served', Timer, { ...byId, body: TimerActionBody, status: 200 }),
+  get('/api/materials', 'materials:read', 'Materials with their stock', MaterialList, { query: MaterialListQuery }),
+  get('/api/materials/{id}', 'materials:read', 'A material', Material, byId),
+  get('/api/lots', 'lots:read', 'Lots with their stock', LotList, { query: LotListQuery }),
+  get('/api/lots/{id}', 'lots:read', 'A lot with all that came and went', Lot, byId),
+  get('/api/mixes', 'mixes:read', 'Mixes', MixList, { query: MixListQuery }),
+  get('/api/mixes/{id}', 'mixes:read', 'A mix with its revisions', Mix, byId),
+  get('/api/schedules', 'schedules:read', 'Finishing schedules', ScheduleList, { query: ScheduleListQuery }),
+  get('/api/schedules/{id}', 'schedules:read', 'A finishing schedule with the steps of a revision', Schedule, { ...byId, query: ScheduleQuery }),
+  get('/api/jobs', 'jobs:read', 'Jobs, the one due first first', JobList, { query: JobListQuery }),
+  get('/api/jobs/{id}', 'jobs:read', 'A job with pieces, steps and windows', Job, byId),
+  get('/api/booths', 'shop:read', 'Booths', BoothList, { query: ShopListQuery }),
+  get('/api/guns', 'shop:read', 'Guns', GunList, { query: ShopListQuery }),
+  get('/api/scales', 'shop:read', 'Scales', ScaleList, { query: ShopListQuery }),
+  get('/api/mixing-cups', 'shop:read', 'Mixing cups', MixingCupList, { query: ShopListQuery }),
+  get('/api/users', 'users:read', 'People', UserList, { query: ShopListQuery }),
+  get('/api/devices', 'devices:read', 'Enrolled benches and screens', DeviceList),
+  post('/api/devices', 'devices:write', 'Makes this browser a bench or a screen', Device, { body: DeviceCreateBody }),
+  remove('/api/devices/{id}', 'devices:write', 'Takes a bench\'s or screen\'s right away', null, { params: DeviceParams }),
+  get('/api/climate-readings', 'climate:read', 'Climate of the booths', ClimateList, { query: ClimateListQuery }),
+  post('/api/climate-readings', 'climate:write', 'Notes a reading', ClimateReading, { body: ClimateCreateBody }),
+  get('/api/openapi.json', 'public', 'This document', OpenApiDocument),
+]
