@@ -48,7 +48,7 @@ export function defineRoute<B extends Schema, Q extends Schema, P extends Schema
   return defineEventHandler(async (event) => {
     try {
       const principal = admit(event, route.permission)
-      if (principal.kind !== 'nobody') await countRequest(principalName(principal))
+      if (principal.kind !== 'nobody') await countRequest(principal.user?.sessionId ?? principalName(principal))
       const params = parse(route.params, getRouterParams(event, { decode: true }), 'params')
       const query = parse(route.query, getQuery(event), 'query')
       const sent = event.method === 'GET' || event.method === 'HEAD' ? undefined : await readJsonBody(event.node.req)

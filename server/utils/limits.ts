@@ -7,7 +7,7 @@ import { sha256 } from './hash'
 export const signInAttempts = 10
 const windowS = 15 * 60
 
-/** Requests a second that one person or device may send. */
+/** Requests a second that one session or device may send. */
 const requestsPerSecond = 100
 
 interface SignInLimit {
@@ -49,7 +49,7 @@ export function signInLimit(db: Knex, email: string, deviceId: string | null): S
 const requests = new RateLimiterMemory({ points: requestsPerSecond, duration: 1, keyPrefix: 'requests' })
 
 /** @throws Refusal 429 above 100 requests a second */
-export const countRequest = (principal: string): Promise<void> => consume(requests, principal, 'Too many requests at once.')
+export const countRequest = (sessionOrDevice: string): Promise<void> => consume(requests, sessionOrDevice, 'Too many requests at once.')
 
 async function consume(limiter: RateLimiterMySQL | RateLimiterMemory, key: string, message: string): Promise<void> {
   try {

@@ -1,9 +1,9 @@
 import { randomUUID } from 'node:crypto'
+import { demoPassword } from '#shared/utils/demo'
 
 /** Address of the running server that the test command started. */
 export const baseUrl = process.env.BASE_URL ?? 'http://127.0.0.1:3000'
 
-export const demoPassword = 'let the pot ring'
 export type DemoRole = 'sprayer' | 'foreman' | 'manager'
 
 export interface Answer<T> {
