@@ -4,7 +4,7 @@ import { describe, expect, it } from 'vitest'
 import { apiRoutes } from '../../server/utils/openapi-routes'
 import { baseUrl, Client, signedIn } from './support/http'
 
-const mutating = apiRoutes.filter(({ method }) => method !== 'GET')
+const mutating = apiRoutes.filter(({ method }) => method !== 'get')
 const pathOf = (path: string) => path.replace(/\{[^}]+\}/g, randomUUID())
 
 describe('cross-site requests', () => {
