@@ -1,0 +1,8 @@
+import { BatchListQuery } from '#shared/schemas/batches'
+import { listBatches } from '../../services/batches'
+
+export default defineRoute({
+  permission: 'batches:read',
+  query: BatchListQuery,
+  handle: ({ ctx, query }) => listBatches(ctx, query),
+})

@@ -1,0 +1,134 @@
+import type { Knex } from 'knex'
+import { msOrNull, toInstant } from '../utils/rows'
+
+export type BatchState = 'fresh' | 'closing' | 'life-up' | 'emptied' | 'stopped' | 'no-pot-life'
+
+/** What a batch is when it is sealed. Instants are epoch milliseconds. */
+export interface NewCurrent {
+  batchId: string
+  state: BatchState
+  mixedAt: number
+  boothId: string | null
+  reactiveAt: number | null
+  lateAt: number | null
+  endsAt: number | null
+  closedAt: number | null
+  worstDeviationPct: string | null
+  outOfTolerance: boolean
+  corrected: boolean
+  reviewOpen: boolean
+}
+
+const instantOrNull = (ms: number | null) => (ms === null ? null : toInstant(ms))
+
+export async function insertCurrent(current: NewCurrent, now: number, trx: Knex.Transaction): Promise<void> {
+  await trx('batch_current').insert({
+    batch_id: current.batchId, state: current.state, mixed_at: toInstant(current.mixedAt), booth_id: current.boothId,
+    reactive_at: instantOrNull(current.reactiveAt), late_at: instantOrNull(current.lateAt), ends_at: instantOrNull(current.endsAt),
+    closed_at: instantOrNull(current.closedAt), worst_deviation_pct: current.worstDeviationPct, out_of_tolerance: current.outOfTolerance,
+    corrected: current.corrected, review_open: current.reviewOpen, created_at: toInstant(now), updated_at: toInstant(now),
+  })
+}
+
+/** What a batch is now, as far as spraying and emptying look at it. Instants are epoch milliseconds. */
+export interface CurrentBatch {
+  id: string
+  code: string
+  state: BatchState
+  mixName: string
+  planId: string
+  jobId: string | null
+  jobStepId: string | null
+  coats: number | null
+  gunId: string | null
+  boothId: string | null
+  mixedAt: number
+  reactiveAt: number | null
+  lateAt: number | null
+  endsAt: number | null
+  firstSprayAt: number | null
+  lastSprayAt: number | null
+  closedAt: number | null
+  pouredTotalG: string
+}
+
+interface CurrentRow {
+  batch_id: string
+  code: string
+  state: BatchState
+  mix_name: string
+  plan_id: string
+  job_id: string | null
+  job_step_id: string | null
+  coats: number | null
+  gun_id: string | null
+  booth_id: string | null
+  mixed_at: Date
+  reactive_at: Date | null
+  late_at: Date | null
+  ends_at: Date | null
+  first_spray_at: Date | null
+  last_spray_at: Date | null
+  closed_at: Date | null
+  poured_total_g: string
+}
+
+/** The batch with its present state locked until the transaction ends. */
+export async function lockCurrent(id: string, trx: Knex.Transaction): Promise<CurrentBatch | null> {
+  const held = await trx('batch_current').where({ batch_id: id }).forUpdate().first<{ batch_id: string } | undefined>('batch_id')
+  if (!held) return null
+  const row = await trx('batch_current as c')
+    .join('batches as b', 'b.id', 'c.batch_id')
+    .join('mix_revisions as r', 'r.id', 'b.mix_revision_id')
+    .join('mixes as m', 'm.id', 'r.mix_id')
+    .where('c.batch_id', id)
+    .first<CurrentRow>(
+      'c.batch_id', 'b.code', 'c.state', 'm.name as mix_name', 'b.plan_id', 'b.job_id', 'b.job_step_id', 'b.coats', 'b.gun_id', 'c.booth_id',
+      'c.mixed_at', 'c.reactive_at', 'c.late_at', 'c.ends_at', 'c.first_spray_at', 'c.last_spray_at', 'c.closed_at', 'b.poured_total_g',
+    )
+  return {
+    id: row.batch_id,
+    code: row.code,
+    state: row.state,
+    mixName: row.mix_name,
+    planId: row.plan_id,
+    jobId: row.job_id,
+    jobStepId: row.job_step_id,
+    coats: row.coats,
+    gunId: row.gun_id,
+    boothId: row.booth_id,
+    mixedAt: row.mixed_at.getTime(),
+    reactiveAt: msOrNull(row.reactive_at),
+    lateAt: msOrNull(row.late_at),
+    endsAt: msOrNull(row.ends_at),
+    firstSprayAt: msOrNull(row.first_spray_at),
+    lastSprayAt: msOrNull(row.last_spray_at),
+    closedAt: msOrNull(row.closed_at),
+    pouredTotalG: row.poured_total_g,
+  }
+}
+
+/** What may change of a batch's present state. Instants are epoch milliseconds. */
+export interface CurrentChange {
+  state?: BatchState
+  firstSprayAt?: number
+  lastSprayAt?: number
+  closedAt?: number
+  leftoverG?: string | null
+  leftoverWeighed?: boolean
+  disposal?: string
+  used?: 'in-time' | 'late' | 'past-life' | null
+}
+
+export async function updateCurrent(id: string, change: CurrentChange, now: number, trx: Knex.Transaction): Promise<void> {
+  const columns: Record<string, unknown> = { version: trx.raw('version + 1'), updated_at: toInstant(now) }
+  if (change.state !== undefined) columns.state = change.state
+  if (change.firstSprayAt !== undefined) columns.first_spray_at = toInstant(change.firstSprayAt)
+  if (change.lastSprayAt !== undefined) columns.last_spray_at = toInstant(change.lastSprayAt)
+  if (change.closedAt !== undefined) columns.closed_at = toInstant(change.closedAt)
+  if (change.leftoverG !== undefined) columns.leftover_g = change.leftoverG
+  if (change.leftoverWeighed !== undefined) columns.leftover_weighed = change.leftoverWeighed
+  if (change.disposal !== undefined) columns.disposal = change.disposal
+  if (change.used !== undefined) columns.used = change.used
+  await trx('batch_current').where({ batch_id: id }).update(columns)
+}

@@ -1,0 +1,236 @@
+import type { Knex } from 'knex'
+import type { Batch, BatchComponent } from '#shared/schemas/batches'
+import { decimalOf, decimalOrNull, isoOf, isoOrNull } from '../utils/rows'
+import { selectNamed, toNamed, type NamedRow } from './batch-rows'
+
+type Db = Knex | Knex.Transaction
+
+/** What lies beside a sealed batch as it was reckoned. */
+export interface BatchSnapshot extends Pick<Batch, 'plan' | 'corrections' | 'stopped' | 'working' | 'engineVersion'> {
+  schemaVersion: number
+  notes: string[]
+}
+
+interface PageRow extends NamedRow {
+  version: number
+  plan_id: string
+  mix_id: string
+  mix_revision_id: string
+  job_step_id: string | null
+  scale_id: string | null
+  scale_name: string | null
+  device_name: string | null
+  review: string
+  snapshot: string
+  area_m2: string | null
+  film_weight_gsm: string | null
+  film_weight_is: Batch['filmWeightIs']
+  coats: number | null
+  transfer_efficiency_pct: string | null
+  pot_life_min: string | null
+  pot_life_basis: NonNullable<Batch['potLife']>['basis'] | null
+  air_c: string | null
+  rh_pct: string | null
+  surface_c: string | null
+  material_c: string | null
+  viscosity_cup: string | null
+  viscosity_seconds: string | null
+}
+
+/** Everything about one batch, in a fixed number of reads. */
+export async function findBatch(id: string, db: Db): Promise<Batch | null> {
+  const row = (await selectNamed(db('batches as b').join('batch_current as c', 'c.batch_id', 'b.id'))
+    .leftJoin('scales as sc', 'sc.id', 'b.scale_id')
+    .leftJoin('devices as d', 'd.id', 'b.device_id')
+    .where('b.id', id)
+    .select(
+      'c.version', 'b.plan_id', 'r.mix_id', 'b.mix_revision_id', 'b.job_step_id', 'b.scale_id', 'sc.name as scale_name', 'd.name as device_name',
+      'b.review', 'b.snapshot', 'b.area_m2', 'b.film_weight_gsm', 'b.film_weight_is', 'b.coats', 'b.transfer_efficiency_pct', 'b.pot_life_min',
+      'b.pot_life_basis', 'b.air_c', 'b.rh_pct', 'b.surface_c', 'b.material_c', 'b.viscosity_cup', 'b.viscosity_seconds',
+    )
+    .first()) as PageRow | undefined
+  if (!row) return null
+  const { components, chemistry, containsIsocyanates } = await readComponents(id, db)
+  const snapshot = JSON.parse(row.snapshot) as BatchSnapshot
+  return {
+    ...toNamed(row),
+    ...toPage(row),
+    components,
+    chemistry,
+    containsIsocyanates,
+    plan: snapshot.plan,
+    corrections: snapshot.corrections,
+    stopped: snapshot.stopped,
+    working: snapshot.working,
+    engineVersion: snapshot.engineVersion,
+    pieces: await readPieces(id, db),
+    events: await readEvents(id, db),
+    amendments: await readAmendments(id, db),
+    applications: await readApplications(id, db),
+  }
+}
+
+function toPage(row: PageRow) {
+  const { reactive_at: startsAt, late_at: lateAt, ends_at: endsAt } = row
+  return {
+    version: row.version,
+    planId: row.plan_id,
+    mixId: row.mix_id,
+    mixRevisionId: row.mix_revision_id,
+    jobStepId: row.job_step_id,
+    scaleId: row.scale_id,
+    scaleName: row.scale_name,
+    deviceName: row.device_name,
+    review: JSON.parse(row.review) as Batch['review'],
+    areaM2: decimalOrNull(row.area_m2),
+    filmWeightGsm: decimalOrNull(row.film_weight_gsm),
+    filmWeightIs: row.film_weight_is,
+    coats: row.coats,
+    transferEfficiencyPct: decimalOrNull(row.transfer_efficiency_pct),
+    potLife: startsAt && lateAt && endsAt && row.pot_life_basis && row.pot_life_min
+      ? { startsAt: isoOf(startsAt), lateAt: isoOf(lateAt), endsAt: isoOf(endsAt), basis: row.pot_life_basis, potLifeMin: decimalOf(row.pot_life_min) }
+      : null,
+    climate: row.air_c === null ? null : { airC: decimalOf(row.air_c), rhPct: decimalOrNull(row.rh_pct), surfaceC: decimalOrNull(row.surface_c) },
+    viscosity: row.viscosity_cup === null || row.viscosity_seconds === null
+      ? null
+      : { cup: row.viscosity_cup, seconds: decimalOf(row.viscosity_seconds), materialC: decimalOrNull(row.material_c) },
+  }
+}
+
+interface ComponentRow {
+  component_index: number
+  role: BatchComponent['role']
+  material_id: string
+  material_code: string
+  material_name: string
+  chemistry: string
+  contains_isocyanates: number
+  parts: string
+  planned_g: string
+  target_g: string
+  poured_g: string
+  deviation_pct: string | null
+  verdict: BatchComponent['verdict']
+}
+
+interface PourRow {
+  component_index: number
+  lot_id: string
+  lot_number: string
+  grams: string
+  at: Date
+  source: BatchComponent['pours'][number]['source']
+  round: number
+}
+
+async function readComponents(id: string, db: Db): Promise<Pick<Batch, 'components' | 'chemistry' | 'containsIsocyanates'>> {
+  const rows = await db('batch_components as x').join('materials as a', 'a.id', 'x.material_id').where('x.batch_id', id).orderBy('x.component_index')
+    .select<ComponentRow[]>(
+      'x.component_index', 'x.role', 'x.material_id', 'a.code as material_code', 'a.name as material_name', 'a.chemistry', 'a.contains_isocyanates',
+      'x.parts', 'x.planned_g', 'x.target_g', 'x.poured_g', 'x.deviation_pct', 'x.verdict',
+    )
+  const pours = await db('batch_pours as p').join('lots as l', 'l.id', 'p.lot_id').where('p.batch_id', id).orderBy(['p.component_index', 'p.position'])
+    .select<PourRow[]>('p.component_index', 'p.lot_id', 'l.lot_number', 'p.grams', 'p.at', 'p.source', 'p.round')
+  const components = rows.map((row) => ({
+    index: row.component_index,
+    role: row.role,
+    materialId: row.material_id,
+    materialCode: row.material_code,
+    materialName: row.material_name,
+    parts: decimalOf(row.parts),
+    plannedG: decimalOf(row.planned_g),
+    targetG: decimalOf(row.target_g),
+    pouredG: decimalOf(row.poured_g),
+    deviationPct: decimalOrNull(row.deviation_pct),
+    verdict: row.verdict,
+    pours: pours.filter((pour) => pour.component_index === row.component_index).map((pour) => ({
+      lotId: pour.lot_id, lotNumber: pour.lot_number, grams: decimalOf(pour.grams), at: isoOf(pour.at), source: pour.source, round: pour.round,
+    })),
+  }))
+  const base = rows.find(({ role }) => role === 'base') ?? rows[0]
+  return { components, chemistry: base?.chemistry ?? null, containsIsocyanates: rows.some((row) => row.contains_isocyanates === 1) }
+}
+
+interface PieceRow {
+  id: string
+  position: number
+  label: string
+  quantity: number
+  area_m2: string
+  rack: string | null
+}
+
+async function readPieces(id: string, db: Db): Promise<Batch['pieces']> {
+  const rows = await db('batch_pieces as x').join('pieces as p', 'p.id', 'x.piece_id').where('x.batch_id', id).orderBy(['p.position', 'p.id'])
+    .select<PieceRow[]>('p.id', 'p.position', 'p.label', 'p.quantity', 'p.area_m2', 'p.rack')
+  return rows.map(({ area_m2: areaM2, ...piece }) => ({ ...piece, areaM2: decimalOf(areaM2) }))
+}
+
+interface EventRow {
+  id: string
+  kind: Batch['events'][number]['kind']
+  at: Date
+  user_name: string | null
+  device_name: string | null
+  gun_name: string | null
+  booth_name: string | null
+  details: string
+}
+
+async function readEvents(id: string, db: Db): Promise<Batch['events']> {
+  const rows = await db('batch_events as e')
+    .leftJoin('users as u', 'u.id', 'e.user_id').leftJoin('devices as d', 'd.id', 'e.device_id')
+    .leftJoin('guns as g', 'g.id', 'e.gun_id').leftJoin('booths as o', 'o.id', 'e.booth_id')
+    .where('e.batch_id', id).orderBy(['e.at', 'e.created_at', 'e.id'])
+    .select<EventRow[]>('e.id', 'e.kind', 'e.at', 'u.name as user_name', 'd.name as device_name', 'g.name as gun_name', 'o.name as booth_name', 'e.details')
+  return rows.map((row) => ({
+    id: row.id,
+    kind: row.kind,
+    at: isoOf(row.at),
+    userName: row.user_name,
+    deviceName: row.device_name,
+    gunName: row.gun_name,
+    boothName: row.booth_name,
+    details: JSON.parse(row.details) as Record<string, unknown>,
+  }))
+}
+
+interface AmendmentRow {
+  id: string
+  field: string
+  from_value: string | null
+  to_value: string | null
+  reason: string
+  user_name: string
+  at: Date
+}
+
+async function readAmendments(id: string, db: Db): Promise<Batch['amendments']> {
+  const rows = await db('amendments as a').join('users as u', 'u.id', 'a.user_id').where('a.batch_id', id).orderBy(['a.at', 'a.id'])
+    .select<AmendmentRow[]>('a.id', 'a.field', 'a.from_value', 'a.to_value', 'a.reason', 'u.name as user_name', 'a.at')
+  return rows.map((row) => ({
+    id: row.id, field: row.field, from: row.from_value, to: row.to_value, reason: row.reason, userName: row.user_name, at: isoOf(row.at),
+  }))
+}
+
+interface ApplicationRow {
+  id: string
+  first_at: Date
+  last_at: Date
+  opens_at: Date | null
+  closing_at: Date | null
+  closes_at: Date | null
+}
+
+async function readApplications(id: string, db: Db): Promise<Batch['applications']> {
+  const rows = await db('application_batches as l').join('applications as a', 'a.id', 'l.application_id').where('l.batch_id', id).orderBy(['a.first_at', 'a.id'])
+    .select<ApplicationRow[]>('a.id', 'a.first_at', 'a.last_at', 'a.opens_at', 'a.closing_at', 'a.closes_at')
+  return rows.map((row) => ({
+    id: row.id,
+    firstAt: isoOf(row.first_at),
+    lastAt: isoOf(row.last_at),
+    opensAt: isoOrNull(row.opens_at),
+    closingAt: isoOrNull(row.closing_at),
+    closesAt: isoOrNull(row.closes_at),
+  }))
+}

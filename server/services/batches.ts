@@ -1,0 +1,163 @@
+import type { Batch, BatchCreateBody, BatchList, BatchListQuery } from '#shared/schemas/batches'
+import { addDays, startOfShopDay } from '#shared/utils/zone'
+import { insertCurrent } from '../repositories/batch-current'
+import { listBatchRows, type BatchFilter } from '../repositories/batch-list'
+import { findBatch } from '../repositories/batch-page'
+import { insertBatch, insertWaste, type PourRecord } from '../repositories/batches'
+import { startJobStep } from '../repositories/draft-references'
+import { endDraft, lockDraft, type StoredDraft } from '../repositories/drafts'
+import { drawFromLots, lockLots } from '../repositories/lot-stock'
+import { readShop } from '../repositories/settings'
+import type { Context } from '../utils/context'
+import { notFound, Refusal, ruleBroken } from '../utils/errors'
+import { decodeCursor, encodeCursor } from '../utils/keyset'
+import { toInstant } from '../utils/rows'
+import { mutateUnlessDone } from '../utils/settled'
+import type { Mutation } from '../utils/transactions'
+import { judgeBatch, potLives, potTimesOf, reactiveByPours } from './batch-sums'
+import { notAfter } from './device-clock'
+import { lotIdsOf, readReferences } from './draft-references'
+import { refuseImpossible } from './draft-rules'
+import { potLabel } from './drafts'
+import { requireMixer } from './mixers'
+import { publishPot } from './pot-view'
+import { componentsOf, deviationOf, drawnOf, mixedAtOf, poursOf, recordOf, reviewOf, sealedState, type Sealing } from './seal-facts'
+import { cancelTimers, setPotTimers } from './timers'
+
+/**
+ * Seals a draft into the record: reckons everything again, moves the stock, starts the job's step. What is in the cup
+ * is a fact and is stored whatever rule it broke; `review` tells a foreman. Sealing twice answers the batch.
+ *
+ * @throws Refusal 404 without a draft, 403 for another person's, 422 `nothing-poured` and for what cannot be true
+ */
+export function sealBatch(ctx: Context, { draftId }: BatchCreateBody): Promise<Batch> {
+  return mutateUnlessDone<Batch>(ctx, async (m, keep) => {
+    const draft = await lockDraft(draftId, m.trx)
+    if (!draft) throw notFound('The draft')
+    await requireMixer(ctx.principal, draft.mixedByUserId, draft.mixedByUserId, m.trx)
+    if (draft.state === 'discarded') throw new Refusal(409, 'discarded', 'This draft was discarded.')
+    if (draft.state !== 'open') keep(() => getBatch(ctx, draftId))
+    const sealing = await readSealing(m, draft)
+    const pours = poursOf(sealing)
+    if (pours.length === 0 && !draft.body.stopped) throw ruleBroken('nothing-poured', 'Nothing was poured into this cup yet.')
+    await writeBatch(m, sealing, pours)
+    await publishPot(m, draftId)
+    const batch = await findBatch(draftId, m.trx)
+    if (!batch) throw new Error('a batch was lost in its own transaction')
+    return batch
+  })
+}
+
+async function readSealing(m: Mutation, draft: StoredDraft): Promise<Sealing> {
+  await lockLots(lotIdsOf(draft.body), m.trx)
+  const references = await readReferences(draft.body, m.trx)
+  refuseImpossible(draft.body, references)
+  const { revision, scale } = references
+  const reactiveAt = draft.reactiveAt ?? (potLives(revision) ? reactiveByPours(revision, draft.body, m.now) : null)
+  const { zone } = await readShop(m.trx)
+  return {
+    draft,
+    references,
+    sums: judgeBatch(revision, draft.body, scale),
+    times: potTimesOf(revision, draft.body, reactiveAt),
+    reactiveAt,
+    now: m.now,
+    zone,
+  }
+}
+
+async function writeBatch(m: Mutation, sealing: Sealing, pours: readonly PourRecord[]): Promise<void> {
+  const { draft, references, sums, times } = sealing
+  const { body } = draft
+  const mixedAt = mixedAtOf(sealing, pours)
+  const review = reviewOf(sealing, pours, mixedAt)
+  const state = sealedState(sealing)
+  const drawn = drawnOf(pours)
+  await insertBatch(recordOf(sealing, review, mixedAt), componentsOf(sealing), pours, body.pieceIds, m.trx)
+  await insertCurrent({
+    batchId: draft.id,
+    state,
+    mixedAt,
+    boothId: body.boothId,
+    reactiveAt: sealing.reactiveAt,
+    lateAt: times?.lateAt ?? null,
+    endsAt: times?.endsAt ?? null,
+    closedAt: body.stopped ? notAfter(body.stopped.at, m.now) : null,
+    worstDeviationPct: deviationOf(sums.worstDeviationPct),
+    outOfTolerance: !body.stopped && sums.outOfTolerance,
+    corrected: body.corrections.some(({ accepted }) => accepted) || pours.some(({ round }) => round > 0),
+    reviewOpen: review.length > 0,
+  }, m.now, m.trx)
+  const stock = await drawFromLots(drawn, draft.id, body.mixedByUserId, toInstant(m.now), m.trx)
+  await (body.stopped ? endStopped(m, sealing) : startPot(m, sealing))
+  await endDraft(draft.id, body.stopped ? 'stopped' : 'sealed', m.now, m.trx)
+  m.audit({
+    action: body.stopped ? 'batch.stopped' : 'batch.sealed',
+    subject: `batch:${draft.id}`,
+    facts: {
+      code: draft.code, seq: draft.seq, state, review, mixRevisionId: references.revision.id, mixedByUserId: body.mixedByUserId, mixedAt,
+      reactiveAt: sealing.reactiveAt, endsAt: times?.endsAt ?? null, targetTotalG: sums.plan.targetTotalG, pouredTotalG: sums.pouredTotalG,
+      drawn: drawn.map(({ lotId, grams }) => ({ lotId, grams })),
+    },
+  })
+  m.publish({ type: 'stock', subject: `batch:${draft.id}`, boothId: null, payload: { lots: stock } })
+}
+
+async function startPot(m: Mutation, { draft, references, times }: Sealing): Promise<void> {
+  if (times) {
+    const label = potLabel(draft.code, references.revision)
+    await setPotTimers(m, { batchId: draft.id, boothId: draft.body.boothId, label, lateAt: times.lateAt, endsAt: times.endsAt })
+  }
+  if (references.jobStep) await startJobStep(references.jobStep.id, toInstant(m.now), m.trx)
+}
+
+/** A mix that was stopped is waste: it is booked as such and rings no more. */
+async function endStopped(m: Mutation, { draft, references, sums }: Sealing): Promise<void> {
+  const { stopped, mixedByUserId } = draft.body
+  if (!stopped) return
+  await cancelTimers(m, 'batch', draft.id)
+  if (sums.pouredTotalG === '0') return
+  const { components } = references.revision
+  await insertWaste({
+    batchId: draft.id,
+    kind: 'stopped-mix',
+    chemistry: (components.find(({ role }) => role === 'base') ?? components[0])?.chemistry ?? null,
+    grams: sums.pouredTotalG,
+    disposal: stopped.disposal,
+    reason: stopped.reason,
+    userId: mixedByUserId,
+    at: toInstant(notAfter(stopped.at, m.now)),
+  }, m.trx)
+}
+
+/** Everything about one batch. @throws Refusal 404 */
+export async function getBatch(ctx: Pick<Context, 'db'>, id: string): Promise<Batch> {
+  const batch = await findBatch(id, ctx.db)
+  if (!batch) throw notFound('The batch')
+  return batch
+}
+
+/** The log, the youngest first. Days are the shop's. @throws Refusal 400 for a cursor of another list */
+export async function listBatches(ctx: Pick<Context, 'db'>, query: BatchListQuery): Promise<BatchList> {
+  const { from, to, cursor, limit, ...filters } = query
+  const { zone } = await readShop(ctx.db)
+  const filter: BatchFilter = {
+    ...filters,
+    from: from === undefined ? undefined : startOfShopDay(from, zone),
+    before: to === undefined ? undefined : startOfShopDay(addDays(to, 1), zone),
+    after: cursor === undefined ? undefined : readCursor(cursor),
+    limit: limit + 1,
+  }
+  const rows = await listBatchRows(filter, ctx.db)
+  const shown = rows.slice(0, limit)
+  const last = shown.at(-1)
+  return {
+    items: shown.map(({ item }) => item),
+    nextCursor: rows.length > limit && last ? encodeCursor([last.sortedAt, last.item.id]) : null,
+  }
+}
+
+function readCursor(cursor: string): { mixedAt: number; id: string } {
+  const [mixedAt, id] = decodeCursor(cursor, ['instant', 'id'])
+  return { mixedAt: Number(mixedAt), id: String(id) }
+}
