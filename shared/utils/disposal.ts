@@ -31,3 +31,13 @@ export function disposalFor(chemistry: string, reacting: boolean): Disposal {
   if (chemistry === 'nitrocellulose') return disposals.nitrocellulose
   return chemistry.startsWith('waterborne') ? disposals.water : disposals.solvent
 }
+
+const shortWords: Record<Disposal['key'], string> = {
+  'open-metal-can': 'left to harden in an open metal can',
+  'nitro-metal-can': 'closed metal can, kept wet',
+  'solvent-waste': 'solvent waste',
+  'waterborne-waste': 'waterborne waste',
+}
+
+/** What the record's key means, in a few words; anything else is the words that were entered. */
+export const disposalWordsOf = (key: string): string => shortWords[key as Disposal['key']] ?? key
