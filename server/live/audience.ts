@@ -24,11 +24,16 @@ export interface Addressed {
   payloadJson: string
 }
 
+/** An event as an audience gets it: whole, as something that is not in its booth (any more), or not at all. */
+export type Hearing = 'whole' | 'gone' | 'nothing'
+
 /**
- * True for events of the audience's booth, for those of no booth, and for pots of any booth whose life is up: those
- * alarms hang on every screen of the shop.
+ * Events of the audience's booth and of no booth are told whole, and so are pots of any booth whose life is up: those
+ * alarms hang on every screen of the shop. Any other pot of another booth is told as gone, since it may have been moved
+ * there from this one.
  */
-export function concerns({ boothId }: Audience, event: Addressed): boolean {
-  if (boothId === null || event.boothId === null || event.boothId === boothId) return true
-  return event.type === 'timer' && (JSON.parse(event.payloadJson) as { kind?: string }).kind === 'pot-up'
+export function hearingOf({ boothId }: Audience, event: Addressed): Hearing {
+  if (boothId === null || event.boothId === null || event.boothId === boothId) return 'whole'
+  if (event.type === 'pot') return 'gone'
+  return event.type === 'timer' && (JSON.parse(event.payloadJson) as { kind?: string }).kind === 'pot-up' ? 'whole' : 'nothing'
 }

@@ -29,8 +29,8 @@ export interface Subscriber {
   end(): void
 }
 
-/** Events between the parts of the server that never leave it. */
-const internalTypes = new Set(['session-ended', 'device-ended'])
+/** True for events between the parts of the server, which never leave it. */
+export const isInternalEvent = (type: string): boolean => type === 'session-ended' || type === 'device-ended'
 
 /**
  * Where committed events reach the open streams of this process, each once and in the order of their numbers.
@@ -89,7 +89,7 @@ export class EventHub {
     const id = event.subject.slice(event.subject.indexOf(':') + 1)
     if (event.type === 'session-ended') this.endSession(id)
     if (event.type === 'device-ended') this.endDevice(id)
-    if (internalTypes.has(event.type)) return
+    if (isInternalEvent(event.type)) return
     for (const subscriber of this.#subscribers) subscriber.event(event)
   }
 

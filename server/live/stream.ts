@@ -4,8 +4,8 @@ import { eventsAfter, isUnbroken, readHead } from '../repositories/events'
 import { mayListen, type Listener } from '../repositories/listening'
 import type { Clock } from '../utils/clock'
 import { isoOf, toInstant } from '../utils/rows'
-import { concerns, type Audience } from './audience'
-import type { Beat, EventHub, HubEvent, Subscriber } from './hub'
+import { hearingOf, type Audience } from './audience'
+import { isInternalEvent, type Beat, type EventHub, type HubEvent, type Subscriber } from './hub'
 import type { LiveLog } from './loop'
 
 export interface StreamOptions {
@@ -75,7 +75,7 @@ export class EventStream extends Readable implements Subscriber {
     if (this.#held) return void this.#held.push(event)
     if (event.seq <= this.#lastSeq) return
     this.#lastSeq = event.seq
-    if (concerns(this.#options.audience, event)) this.#send(formatEvent(event))
+    this.#tell(event)
   }
 
   beat(beat: Beat): void {
@@ -125,10 +125,15 @@ export class EventStream extends Readable implements Subscriber {
       const serverNow = await this.#now()
       for (const event of events) {
         last = event.seq
-        if (!isInternal(event.type) && concerns(this.#options.audience, event)) this.#send(formatEvent({ ...event, serverNow }))
+        if (!isInternalEvent(event.type)) this.#tell({ ...event, serverNow })
       }
       if (events.length < page || this.#over) return
     }
+  }
+
+  #tell(event: HubEvent): void {
+    const hearing = hearingOf(this.#options.audience, event)
+    if (hearing !== 'nothing') this.#send(formatEvent(hearing === 'gone' ? { ...event, payloadJson: 'null' } : event))
   }
 
   async #checkRight(): Promise<void> {
@@ -152,8 +157,6 @@ export class EventStream extends Readable implements Subscriber {
     }
   }
 }
-
-const isInternal = (type: string) => type === 'session-ended' || type === 'device-ended'
 
 function formatEvent(event: HubEvent): string {
   const { seq, type, at, serverNow, subject } = event

@@ -1,0 +1,97 @@
+import type { ClimateReading } from '../schemas/climate'
+import type { LiveBooth, LiveEvent, LivePot, LiveSnapshot, LiveWindow } from '../schemas/live'
+import type { Timer } from '../schemas/timers'
+
+/** What a screen knows of the running shop: a snapshot and every event since. */
+export interface LiveState {
+  /** Number of the last event in it; older ones are dropped. */
+  lastSeq: number
+  /** The one booth that it is about, or null for the whole shop. */
+  boothId: string | null
+  /** The most urgent first. */
+  pots: LivePot[]
+  windows: LiveWindow[]
+  alarms: Timer[]
+  booths: LiveBooth[]
+}
+
+export const emptyLiveState: LiveState = { lastSeq: 0, boothId: null, pots: [], windows: [], alarms: [], booths: [] }
+
+/** The state that a snapshot describes. */
+export function fromSnapshot(snapshot: LiveSnapshot): LiveState {
+  const { lastSeq, boothId, pots, windows, alarms, booths } = snapshot
+  return { lastSeq, boothId, pots: [...pots].sort(byUrgency), windows: [...windows].sort(byClose), alarms, booths }
+}
+
+/**
+ * The state after an event. One that is already in it changes nothing, so that a repeat or a late snapshot does no
+ * harm; a kind that is not known only moves the number on.
+ */
+export function applyEvent(state: LiveState, event: LiveEvent): LiveState {
+  if (event.seq <= state.lastSeq) return state
+  const moved = { ...state, lastSeq: event.seq }
+  const id = event.subject.slice(event.subject.indexOf(':') + 1)
+  switch (event.type) {
+    case 'pot': return { ...moved, pots: placePot(state, id, event.payload as LivePot | null) }
+    case 'window': return { ...moved, windows: placeWindow(state, id, event.payload as LiveWindow | null) }
+    case 'timer': return { ...moved, alarms: placeAlarm(state, event.payload as Timer) }
+    case 'climate': return { ...moved, booths: placeClimate(state.booths, event.payload as ClimateReading) }
+    default: return moved
+  }
+}
+
+/** A snapshot with the events that came while it was being fetched. */
+export function catchUp(snapshot: LiveSnapshot, since: readonly LiveEvent[]): LiveState {
+  return since.reduce(applyEvent, fromSnapshot(snapshot))
+}
+
+const isHere = (state: LiveState, boothId: string | null) => state.boothId === null || boothId === null || boothId === state.boothId
+
+function placePot(state: LiveState, id: string, pot: LivePot | null): LivePot[] {
+  const others = state.pots.filter((known) => known.id !== id)
+  if (pot === null || pot.state === 'emptied' || pot.state === 'stopped' || !isHere(state, pot.boothId)) return others
+  return [...others, pot].sort(byUrgency)
+}
+
+function placeWindow(state: LiveState, id: string, window: LiveWindow | null): LiveWindow[] {
+  const others = state.windows.filter((known) => known.id !== id)
+  if (window === null || !isHere(state, window.boothId)) return others
+  return [...others, window].sort(byClose)
+}
+
+function placeAlarm(state: LiveState, timer: Timer): Timer[] {
+  const others = state.alarms.filter((known) => known.id !== timer.id)
+  if (!isAlarm(timer) || (timer.kind !== 'pot-up' && !isHere(state, timer.boothId))) return others
+  return [...others, timer].sort((a, b) => compare(a.dueAt, b.dueAt) || compare(a.id, b.id))
+}
+
+const quiet = new Set<Timer['kind']>(['pot-late', 'window-opens', 'window-closing'])
+
+/** True for timers that call for a person: a pot whose life is up until it is emptied, others until they are seen. */
+export function isAlarm({ kind, state }: Pick<Timer, 'kind' | 'state'>): boolean {
+  if (kind === 'pot-up') return state === 'fired' || state === 'acknowledged'
+  return state === 'fired' && !quiet.has(kind)
+}
+
+function placeClimate(booths: LiveBooth[], reading: ClimateReading): LiveBooth[] {
+  return booths.map((booth) => (booth.id === reading.boothId ? { ...booth, climate: reading } : booth))
+}
+
+/** What an alarm does at `now`, epoch milliseconds: a quiet that is over counts as over, told or not. */
+export function alarmAt(pot: Pick<LivePot, 'alarm' | 'silencedUntil'>, now: number): LivePot['alarm'] {
+  if (pot.alarm !== 'silenced' || pot.silencedUntil === null) return pot.alarm
+  return Date.parse(pot.silencedUntil) <= now ? 'sounding' : 'silenced'
+}
+
+const urgency: Record<LivePot['state'], number> = { 'life-up': 0, closing: 1, fresh: 2, 'no-pot-life': 3, emptied: 4, stopped: 5 }
+
+/** Pot life up, closing, then the soonest to end; within that by code, so that the order never changes by itself. */
+export function byUrgency(a: LivePot, b: LivePot): number {
+  return urgency[a.state] - urgency[b.state] || compare(a.endsAt ?? '9', b.endsAt ?? '9') || compare(a.code, b.code)
+}
+
+function byClose(a: LiveWindow, b: LiveWindow): number {
+  return compare(a.closesAt ?? '9', b.closesAt ?? '9') || compare(a.opensAt, b.opensAt) || compare(a.id, b.id)
+}
+
+const compare = (a: string, b: string): number => (a < b ? -1 : a > b ? 1 : 0)
