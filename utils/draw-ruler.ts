@@ -20,7 +20,7 @@ export interface ToleranceRange {
 export function toleranceRange(lowG: number, highG: number, readingG: number, widthPx: number): ToleranceRange {
   const band = Math.max(highG - lowG, 1e-6)
   const [min, max] = stretch(lowG, highG, readingG, band)
-  const major = niceStep(max - min, widthPx / 60)
+  const major = niceStep(max - min, widthPx / 56)
   const minor = minorStep(major, widthPx / (max - min), 5)
   return { min, max, ticks: ticksBetween(min, max, minor, major), decimals: stepDecimals(major) }
 }
