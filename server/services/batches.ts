@@ -1,5 +1,6 @@
 import type { Batch, BatchCreateBody, BatchList, BatchListQuery } from '#shared/schemas/batches'
 import { addDays, startOfShopDay } from '#shared/utils/zone'
+import { audienceOf } from '../live/audience'
 import { insertCurrent } from '../repositories/batch-current'
 import { listBatchRows, type BatchFilter } from '../repositories/batch-list'
 import { findBatch } from '../repositories/batch-page'
@@ -130,19 +131,25 @@ async function endStopped(m: Mutation, { draft, references, sums }: Sealing): Pr
   }, m.trx)
 }
 
-/** Everything about one batch. @throws Refusal 404 */
-export async function getBatch(ctx: Pick<Context, 'db'>, id: string): Promise<Batch> {
+/** Everything about one batch. @throws Refusal 404, also for a screen that asks for another booth's */
+export async function getBatch(ctx: Pick<Context, 'db' | 'principal'>, id: string): Promise<Batch> {
   const batch = await findBatch(id, ctx.db)
-  if (!batch) throw notFound('The batch')
+  const { boothId } = audienceOf(ctx.principal, undefined)
+  if (!batch || (boothId !== null && batch.boothId !== boothId)) throw notFound('The batch')
   return batch
 }
 
-/** The log, the youngest first. Days are the shop's. @throws Refusal 400 for a cursor of another list */
-export async function listBatches(ctx: Pick<Context, 'db'>, query: BatchListQuery): Promise<BatchList> {
+/**
+ * The log, the youngest first. Days are the shop's. A booth's screen sees its own booth.
+ *
+ * @throws Refusal 400 for a cursor of another list, 403 when a screen asks for another booth
+ */
+export async function listBatches(ctx: Pick<Context, 'db' | 'principal'>, query: BatchListQuery): Promise<BatchList> {
   const { from, to, cursor, limit, ...filters } = query
   const { zone } = await readShop(ctx.db)
   const filter: BatchFilter = {
     ...filters,
+    boothId: audienceOf(ctx.principal, query.boothId).boothId ?? undefined,
     from: from === undefined ? undefined : startOfShopDay(from, zone),
     before: to === undefined ? undefined : startOfShopDay(addDays(to, 1), zone),
     after: cursor === undefined ? undefined : readCursor(cursor),

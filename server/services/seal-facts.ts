@@ -1,4 +1,5 @@
 import { D, print, type Dec } from '#shared/engine/decimal'
+import { DEFAULT_HALVES_PER_C } from '#shared/engine/pot-life'
 import { potState } from '#shared/engine/pot-state'
 import { engineVersion } from '#shared/engine/version'
 import type { ReviewCode } from '#shared/schemas/batches'
@@ -8,6 +9,7 @@ import type { BatchSnapshot } from '../repositories/batch-page'
 import type { BatchRecord, ComponentRecord, PourRecord } from '../repositories/batches'
 import type { StoredDraft } from '../repositories/drafts'
 import type { Drawn, StockLot } from '../repositories/lot-stock'
+import type { MixRevision } from '../repositories/mix-revisions'
 import { toInstant } from '../utils/rows'
 import { mixInputOf, type BatchSums, type PotTimes } from './batch-sums'
 import { lateEntryMs, notAfter } from './device-clock'
@@ -189,7 +191,14 @@ function snapshotOf({ draft, references, sums, times }: Sealing): BatchSnapshot 
     device: body.device,
     stopped: body.stopped,
     working: times
-      ? [...sums.working, { what: `pot life at ${times.temperatureC} °C`, formula: times.basis, value: times.potLifeMin, unit: 'min' }]
+      ? [...sums.working, { what: `pot life at ${times.temperatureC} °C`, formula: potLifeWords(times.basis, references.revision), value: times.potLifeMin, unit: 'min' }]
       : sums.working,
   }
+}
+
+function potLifeWords(basis: PotTimes['basis'], { potLifeMin, potLifeReferenceC, halvesPerC }: MixRevision): string {
+  const sheet = potLifeMin === null || potLifeReferenceC === null ? 'the hottest row of the sheet' : `${potLifeMin} min at ${potLifeReferenceC} °C`
+  if (basis === 'table') return 'from the table of the sheet'
+  if (basis === 'held') return `${potLifeMin === null ? 'the coldest row of the sheet' : sheet}, not lengthened by the cold`
+  return basis === 'sheet' ? sheet : `${sheet}, halved for every ${halvesPerC ?? DEFAULT_HALVES_PER_C} °C more`
 }
