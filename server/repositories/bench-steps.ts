@@ -115,7 +115,7 @@ export async function listPieceFacts(jobIds: readonly string[], db: Db): Promise
   }))
 }
 
-/** How often one step was done to one piece, and when last (epoch milliseconds). */
+/** How many coats of one step a piece has got, or how often it was done, and when last (epoch milliseconds). */
 export interface Treatment {
   jobStepId: string
   pieceId: string
@@ -131,8 +131,8 @@ interface TreatmentRow {
 }
 
 /**
- * What was done to the pieces of these jobs. A coat on several faces is several applications and counts once:
- * what counts is the coat number, where it was noted.
+ * What was done to the pieces of these jobs. A coat on several faces is several applications, and one application may
+ * be several coats: the highest coat number counts, where it was noted.
  */
 export async function listTreatments(jobIds: readonly string[], db: Db): Promise<Treatment[]> {
   if (jobIds.length === 0) return []
@@ -140,6 +140,6 @@ export async function listTreatments(jobIds: readonly string[], db: Db): Promise
     .join('application_pieces as p', 'p.application_id', 'a.id')
     .whereIn('a.job_id', jobIds)
     .groupBy(['a.job_step_id', 'p.piece_id'])
-    .select<TreatmentRow[]>('a.job_step_id', 'p.piece_id', db.raw('COUNT(DISTINCT COALESCE(a.coat_number, a.id)) AS times'), db.raw('MAX(a.last_at) AS last_at'))
+    .select<TreatmentRow[]>('a.job_step_id', 'p.piece_id', db.raw('COALESCE(MAX(a.coat_number), COUNT(*)) AS times'), db.raw('MAX(a.last_at) AS last_at'))
   return rows.map((row) => ({ jobStepId: row.job_step_id, pieceId: row.piece_id, times: Number(row.times), lastAt: row.last_at.getTime() }))
 }

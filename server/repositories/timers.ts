@@ -101,6 +101,21 @@ export async function lockTimersOf(subjectType: Timer['subjectType'], subjectId:
   return rows.map(toTimer)
 }
 
+/** Other applications to pieces of this one whose timers were not ended, the oldest first. */
+export async function timedApplicationsUnder(applicationId: string, db: Db): Promise<string[]> {
+  const rows = await db('application_pieces as mine')
+    .join('application_pieces as theirs', 'theirs.piece_id', 'mine.piece_id')
+    .join('applications as a', 'a.id', 'theirs.application_id')
+    .join('timers as t', (on) => void on.on('t.subject_id', 'a.id').andOnVal('t.subject_type', 'application'))
+    .where('mine.application_id', applicationId)
+    .whereNot('a.id', applicationId)
+    .whereIn('t.state', ['waiting', 'fired', 'acknowledged'])
+    .groupBy(['a.id', 'a.first_at'])
+    .orderBy(['a.first_at', 'a.id'])
+    .select<{ id: string }[]>('a.id')
+  return rows.map(({ id }) => id)
+}
+
 /** What may change of a timer. Instants are epoch milliseconds. */
 export interface TimerChange {
   state?: TimerState

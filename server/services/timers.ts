@@ -1,5 +1,6 @@
 import type { Timer, TimerCreateBody, TimerExtendBody, TimerSilenceBody } from '#shared/schemas/timers'
-import { getTimer, lockTimer, lockTimersOf, setTimer, updateTimer, type TimerChange } from '../repositories/timers'
+import { getTimer, lockTimer, lockTimersOf, setTimer, timedApplicationsUnder, updateTimer, type TimerChange } from '../repositories/timers'
+import { findWindows } from '../repositories/windows'
 import type { Context, Principal } from '../utils/context'
 import { userIdOf } from '../utils/context'
 import { forbidden, invalid, notFound, ruleBroken } from '../utils/errors'
@@ -58,6 +59,19 @@ export async function setWindowTimers(m: Mutation, window: WindowTimers): Promis
   if (window.closingAt !== null) await setTimer({ ...subject, kind: 'window-closing', dueAt: window.closingAt }, m.now, m.trx)
   if (window.closesAt !== null) await setTimer({ ...subject, kind: 'window-closes', dueAt: window.closesAt }, m.now, m.trx)
   await publishWindow(m, window.applicationId, window.boothId)
+  await endWindowsUnder(m, window.applicationId)
+}
+
+/**
+ * Ends the windows that an application used up: those of earlier coats on the same pieces, once nothing is left to do
+ * to any piece of theirs. Call it for applications that start no window of their own; `setWindowTimers` does it itself.
+ */
+export async function endWindowsUnder(m: Mutation, applicationId: string): Promise<void> {
+  for (const id of await timedApplicationsUnder(applicationId, m.trx)) {
+    const [left] = await findWindows({ applicationId: id }, m.trx)
+    if (left) await publishWindow(m, id, left.boothId)
+    else await cancelTimers(m, 'application', id)
+  }
 }
 
 /**
