@@ -14,5 +14,6 @@ export default defineConfig({
     include: ['tests/unit/**/*.test.ts'],
     environment: 'node',
     passWithNoTests: false,
+    testTimeout: 30_000,
   },
 })
