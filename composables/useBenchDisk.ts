@@ -1,0 +1,69 @@
+import { openDB, type DBSchema, type IDBPDatabase } from 'idb'
+import type { BenchSnapshot } from '#shared/schemas/bench'
+import type { OutboxEntry } from '#shared/utils/bench-outbox'
+import type { BenchPot } from '#shared/utils/bench-reckon'
+import type { BenchRun } from '#shared/utils/bench-run'
+import type { BenchSetup } from '#shared/utils/bench-setup'
+
+/** The pots of one plan, kept until the last of them is mixed. */
+export interface BenchPlanKept {
+  id: string
+  setup: BenchSetup
+  pots: BenchPot[]
+}
+
+/** What the bench must find again after a reload or a crash. */
+export interface BenchKept {
+  userId: string
+  setup: BenchSetup
+  plan: BenchPlanKept | null
+  run: BenchRun | null
+}
+
+export interface BenchSnapshotKept {
+  snapshot: BenchSnapshot
+  /** By the server's clock, epoch ms. */
+  at: number
+}
+
+interface BenchDb extends DBSchema {
+  bench: { key: 'kept', value: BenchKept }
+  snapshot: { key: 'last', value: BenchSnapshotKept }
+  outbox: { key: string, value: OutboxEntry, indexes: { createdAt: number } }
+}
+
+let opened: Promise<IDBPDatabase<BenchDb>> | null = null
+
+function database(): Promise<IDBPDatabase<BenchDb>> {
+  opened ??= openDB<BenchDb>('potbell-bench', 1, {
+    upgrade(db) {
+      db.createObjectStore('bench')
+      db.createObjectStore('snapshot')
+      db.createObjectStore('outbox', { keyPath: 'id' }).createIndex('createdAt', 'createdAt')
+    },
+  })
+  return opened
+}
+
+/** The store keeps proxies; the disk takes plain data only. */
+const plain = <T>(value: T): T => JSON.parse(JSON.stringify(value)) as T
+
+/** The tablet's own disk. Everything the bench must not lose is written here before it is sent anywhere. */
+export function useBenchDisk() {
+  return {
+    readKept: async (): Promise<BenchKept | undefined> => (await database()).get('bench', 'kept'),
+    writeKept: async (kept: BenchKept): Promise<void> => {
+      await (await database()).put('bench', plain(kept), 'kept')
+    },
+    readSnapshot: async (): Promise<BenchSnapshotKept | undefined> => (await database()).get('snapshot', 'last'),
+    writeSnapshot: async (kept: BenchSnapshotKept): Promise<void> => {
+      await (await database()).put('snapshot', plain(kept), 'last')
+    },
+    readOutbox: async (): Promise<OutboxEntry[]> => (await database()).getAllFromIndex('outbox', 'createdAt'),
+    /** Puts what changed and removes what went, in one transaction. */
+    writeOutbox: async (puts: readonly OutboxEntry[], removes: readonly string[]): Promise<void> => {
+      const trx = (await database()).transaction('outbox', 'readwrite')
+      await Promise.all([...puts.map(entry => trx.store.put(plain(entry))), ...removes.map(id => trx.store.delete(id)), trx.done])
+    },
+  }
+}

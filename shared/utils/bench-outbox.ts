@@ -1,0 +1,71 @@
+/** Something that waits to be sent. It is written here first, online too, so that there is one path. */
+export interface OutboxEntry {
+  id: string
+  /** What it is about: entries of one subject go in order. */
+  subject: string
+  kind: 'draft' | 'seal'
+  method: 'PUT' | 'POST'
+  path: string
+  body: Record<string, unknown>
+  /** Stored with the entry: a retry is the same request. */
+  idempotencyKey: string | null
+  createdAt: number
+  tries: number
+  /** Not before; epoch milliseconds. */
+  nextAt: number
+  /** Refused by the server: it does not go by itself any more. */
+  refusal: { status: number, message: string } | null
+}
+
+const FIRST_WAIT_MS = 1_000
+const LONGEST_WAIT_MS = 30_000
+
+/** How long to wait after so many failures: doubling from one second, at most half a minute. */
+export function backoffMs(tries: number): number {
+  return Math.min(LONGEST_WAIT_MS, FIRST_WAIT_MS * 2 ** Math.max(0, tries - 1))
+}
+
+/** A newer draft takes the place of one that was not sent yet: only the latest is worth sending. */
+export function withEntry(entries: readonly OutboxEntry[], entry: OutboxEntry, sendingId: string | null): OutboxEntry[] {
+  if (entry.kind !== 'draft') return [...entries, entry]
+  const kept = entries.filter(other => other.kind !== 'draft' || other.subject !== entry.subject || other.id === sendingId)
+  return [...kept, entry].sort(draftsBeforeSeal)
+}
+
+/** Seals wait for their drafts; between subjects the order of writing stands. */
+function draftsBeforeSeal(a: OutboxEntry, b: OutboxEntry): number {
+  if (a.subject !== b.subject || a.kind === b.kind) return 0
+  return a.kind === 'draft' ? -1 : 1
+}
+
+/** What to send now: the first of each subject that is due; a refused one holds back what comes after it. */
+export function nextEntry(entries: readonly OutboxEntry[], now: number): OutboxEntry | null {
+  const seen = new Set<string>()
+  for (const entry of entries) {
+    if (seen.has(entry.subject)) continue
+    seen.add(entry.subject)
+    if (entry.refusal === null && entry.nextAt <= now) return entry
+  }
+  return null
+}
+
+/** The next instant at which something falls due, or null while nothing waits. */
+export function nextDueAt(entries: readonly OutboxEntry[]): number | null {
+  const due = entries.filter(({ refusal }) => refusal === null).map(({ nextAt }) => nextAt)
+  return due.length === 0 ? null : Math.min(...due)
+}
+
+/** A failure that will pass: the same request again, later. */
+export function waited(entry: OutboxEntry, now: number): OutboxEntry {
+  const tries = entry.tries + 1
+  return { ...entry, tries, nextAt: now + backoffMs(tries) }
+}
+
+export function refused(entry: OutboxEntry, status: number, message: string): OutboxEntry {
+  return { ...entry, tries: entry.tries + 1, refusal: { status, message } }
+}
+
+/** Nobody is signed in any more: it waits for the next sign-in, it is not lost. */
+export function passes(status: number): boolean {
+  return status === 0 || status === 401 || status === 408 || status === 429 || status >= 500
+}

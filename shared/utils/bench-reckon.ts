@@ -1,0 +1,198 @@
+import { planBatch } from '../engine/batch'
+import type { BatchPlan } from '../engine/batch'
+import { D, print, sum } from '../engine/decimal'
+import { EngineError } from '../engine/error'
+import { calculatePots } from '../engine/pots'
+import type { PlannedPot, PotBound, PotsCaution } from '../engine/pots'
+import type { BenchSnapshot, BenchStep } from '../schemas/bench'
+import type { DraftPlan } from '../schemas/drafts'
+import { efficiencyOf, toolChoice } from './bench-setup'
+import type { BenchSetup } from './bench-setup'
+import { benchPotLife, benchTools } from './bench-tools'
+import type { BenchTools } from './bench-tools'
+
+/** What stands beside a field. `field` is one of the form's own. */
+export interface BenchFault {
+  field: keyof BenchSetup | 'form'
+  message: string
+  /** Not given yet, or given and impossible. */
+  kind: 'missing' | 'refused'
+}
+
+/** One pot of the plan, with its own figures and their working. */
+export interface BenchPot {
+  number: number
+  plan: DraftPlan
+  batch: BatchPlan
+  /** Null where no area is known. */
+  areaM2: string | null
+  /** Chosen pieces in it; empty where the area was typed. */
+  pieceIds: string[]
+  /** Place of the first and last piece in the whole list, from 1; null without pieces. */
+  span: { from: number, to: number } | null
+  startsAfterMin: string | null
+}
+
+export interface BenchReckoning {
+  faults: BenchFault[]
+  tools: BenchTools | null
+  /** Everything in one pot, whether it fits or not; null while something is missing. */
+  whole: BatchPlan | null
+  pots: BenchPot[]
+  boundBy: PotBound
+  cautions: PotsCaution[]
+  /** Sum of the pots' targets, grams. */
+  totalG: string | null
+}
+
+/** Paths of the arithmetic → fields of the form. */
+const FIELDS: readonly (readonly [RegExp, keyof BenchSetup])[] = [
+  [/^areaM2|^pieceAreasM2/, 'areaM2'],
+  [/^totalG/, 'totalG'],
+  [/^available/, 'tinG'],
+  [/^filmWeightGsm/, 'filmWeightGsm'],
+  [/^filmWeightIs/, 'filmWeightIs'],
+  [/^transferEfficiencyPct/, 'gunId'],
+  [/^reserveG|^residueG/, 'residueG'],
+  [/^paceM2PerH/, 'paceM2PerH'],
+  [/^coats/, 'coats'],
+  [/^cup/, 'cupId'],
+  [/^scale/, 'scaleId'],
+  [/^mix|^potLife|^referenceMin|^table/, 'mixId'],
+]
+
+/** A refusal of the arithmetic beside the field that caused it. */
+export function faultOf(error: EngineError): BenchFault {
+  const field = FIELDS.find(([path]) => path.test(error.field))?.[1] ?? 'form'
+  return { field, message: error.message, kind: 'refused' }
+}
+
+/** Targets, working and pots for the form as it stands. Never throws for what was typed: faults stand beside their fields. */
+export function reckon(setup: BenchSetup, snapshot: BenchSnapshot): BenchReckoning {
+  const nothing: BenchReckoning = {
+    faults: missing(setup), tools: null, whole: null, pots: [], boundBy: 'one-pot', cautions: [], totalG: null,
+  }
+  try {
+    const tools = benchTools(toolChoice(setup), snapshot)
+    if (tools === null || nothing.faults.some(({ field }) => BLOCKING.has(field))) return { ...nothing, tools }
+    return { ...nothing, ...plans(setup, snapshot, tools) }
+  }
+  catch (error) {
+    if (!(error instanceof EngineError)) throw error
+    return { ...nothing, faults: [...nothing.faults, faultOf(error)] }
+  }
+}
+
+/** Without these nothing can be reckoned; a missing purpose or gun still lets the figures stand. */
+const BLOCKING: ReadonlySet<BenchFault['field']> = new Set(['mixId', 'areaM2', 'totalG', 'tinG', 'filmWeightGsm', 'filmWeightIs', 'cupId', 'scaleId'])
+
+function missing(setup: BenchSetup): BenchFault[] {
+  const faults: BenchFault[] = []
+  const need = (given: boolean, field: keyof BenchSetup, message: string): void => {
+    if (!given) faults.push({ field, message, kind: 'missing' })
+  }
+  need(!setup.loose || setup.purpose.trim() !== '', 'purpose', 'Say what the mix is for.')
+  need(setup.mixId !== '', 'mixId', 'Choose the material.')
+  need(setup.way !== 'area' || setup.areaM2 !== '', 'areaM2', 'Give the panel area.')
+  need(setup.way !== 'total' || setup.totalG !== '', 'totalG', 'Give the grams to mix.')
+  need(setup.way !== 'tin' || setup.tinG !== '', 'tinG', 'Weigh what is left in the tin.')
+  need(setup.way !== 'area' || setup.filmWeightGsm !== '', 'filmWeightGsm', 'Give the wet coat weight.')
+  need(setup.filmWeightGsm === '' || setup.filmWeightIs !== null, 'filmWeightIs', 'Say where the coat weight is meant.')
+  need(setup.gunId !== '', 'gunId', 'Choose the gun.')
+  need(setup.cupId !== '', 'cupId', 'Choose a cup.')
+  need(setup.scaleId !== '', 'scaleId', 'Choose a scale.')
+  return faults
+}
+
+type Film = Pick<DraftPlan, 'filmWeightGsm' | 'filmWeightIs' | 'coats' | 'transferEfficiencyPct'>
+
+function plans(setup: BenchSetup, snapshot: BenchSnapshot, tools: BenchTools): Partial<BenchReckoning> {
+  const rest = commonPlan(setup, snapshot, tools)
+  const amount = amountOf(setup)
+  const whole = planOne({ ...rest, ...amount }, tools)
+  const answer = split(setup, snapshot, tools, whole)
+  const pieces = setup.way === 'area' ? setup.pieceIds : []
+  const one = answer === null || answer.pots.length === 1
+  const pots = one
+    ? [potOf(1, { ...rest, ...amount }, whole, pieces, pieces.length > 0 ? { from: 1, to: pieces.length } : null, '0')]
+    : answer.pots.map((pot, place) => potOfSplit(place + 1, pot, setup, rest, tools, whole.areaM2 !== null))
+  return {
+    tools,
+    whole,
+    pots,
+    boundBy: answer?.boundBy ?? 'one-pot',
+    cautions: answer?.cautions ?? [],
+    totalG: print(sum(pots.map(({ batch }) => new D(batch.targetTotalG)))),
+  }
+}
+
+function commonPlan(setup: BenchSetup, snapshot: BenchSnapshot, { scale }: BenchTools): Film & Pick<DraftPlan, 'reserveG' | 'scaleDivisionG' | 'scaleMpeG'> {
+  const film: Film = setup.filmWeightGsm === ''
+    ? {}
+    : {
+        filmWeightGsm: setup.filmWeightGsm,
+        filmWeightIs: setup.filmWeightIs ?? undefined,
+        coats: setup.coats,
+        transferEfficiencyPct: efficiencyOf(setup, snapshot) ?? undefined,
+      }
+  return { ...film, reserveG: setup.residueG === '' ? '0' : setup.residueG, scaleDivisionG: scale.divisionG, scaleMpeG: scale.mpeG ?? undefined }
+}
+
+function amountOf(setup: BenchSetup): Pick<DraftPlan, 'areaM2' | 'totalG' | 'available'> {
+  if (setup.way === 'area') return { areaM2: setup.areaM2 }
+  return setup.way === 'total' ? { totalG: setup.totalG } : { available: { index: setup.tinIndex, grams: setup.tinG } }
+}
+
+function planOne(plan: DraftPlan, tools: BenchTools): BatchPlan {
+  return planBatch({ ...plan, mix: tools.input }, { scale: { capacityG: tools.scale.capacityG } })
+}
+
+/** Without a known area the grams alone are divided: a pace then says nothing. Null where nothing bounds a pot. */
+function split(setup: BenchSetup, snapshot: BenchSnapshot, tools: BenchTools, whole: BatchPlan): ReturnType<typeof calculatePots> | null {
+  if (tools.limitG === null) return null
+  const life = benchPotLife(tools.mix, { airC: tools.booth?.climate?.airC ?? null, materialC: null })
+  const pieces = setup.way === 'area' ? pieceAreas(setup, snapshot) : []
+  return calculatePots({
+    mix: tools.input,
+    sprayG: whole.sprayedG,
+    residueG: setup.residueG === '' ? '0' : setup.residueG,
+    areaM2: whole.areaM2 ?? '1',
+    pieceAreasM2: pieces.length > 0 ? pieces : undefined,
+    cupCapacityG: tools.limitG,
+    scaleDivisionG: tools.scale.divisionG,
+    scaleCapacityG: tools.scale.capacityG,
+    paceM2PerH: whole.areaM2 === null || setup.paceM2PerH === '' ? undefined : setup.paceM2PerH,
+    gunFlowGPerMin: tools.gun?.flowGPerMin ?? undefined,
+    potLifeMin: life?.potLifeMin,
+    lateFromPct: tools.mix.lateFromPct,
+    inductionMin: tools.mix.inductionMin,
+    coats: setup.filmWeightGsm === '' ? 1 : setup.coats,
+  })
+}
+
+function pieceAreas(setup: BenchSetup, snapshot: BenchSnapshot): string[] {
+  const step = snapshot.today.find(({ jobStepId }) => jobStepId === setup.stepId)
+  const areas = new Map(step?.pieces.map(({ id, areaM2 }) => [id, areaM2]))
+  return setup.pieceIds.flatMap(id => areas.get(id) ?? [])
+}
+
+function potOfSplit(
+  number: number, pot: PlannedPot, setup: BenchSetup, rest: ReturnType<typeof commonPlan>, tools: BenchTools, areaKnown: boolean,
+): BenchPot {
+  const byArea = setup.way === 'area' && areaKnown && pot.coat === undefined
+  const plan: DraftPlan = byArea ? { ...rest, areaM2: pot.areaM2 } : { ...rest, totalG: pot.exactTotalG }
+  const span = pot.fromPiece === undefined || pot.toPiece === undefined ? null : { from: pot.fromPiece + 1, to: pot.toPiece + 1 }
+  const pieces = span === null ? [] : setup.pieceIds.slice(span.from - 1, span.to)
+  return potOf(number, plan, planOne(plan, tools), pieces, span, pot.startsAfterMin)
+}
+
+function potOf(
+  number: number, plan: DraftPlan, batch: BatchPlan, pieceIds: string[], span: BenchPot['span'], startsAfterMin: string | null,
+): BenchPot {
+  return { number, plan, batch, areaM2: batch.areaM2, pieceIds, span, startsAfterMin }
+}
+
+/** Exact sum of the chosen pieces, m². */
+export function areaOfPieces(step: BenchStep, pieceIds: readonly string[]): string {
+  return print(sum(step.pieces.filter(({ id }) => pieceIds.includes(id)).map(({ areaM2 }) => new D(areaM2))))
+}

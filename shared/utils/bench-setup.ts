@@ -1,0 +1,126 @@
+import type { BenchMix, BenchSnapshot, BenchStep } from '../schemas/bench'
+import type { GunShape, ToolChoice } from './bench-tools'
+
+/** The three ways to say how much. */
+export type BenchWay = 'area' | 'total' | 'tin'
+
+/** What the form of step 1 holds. Quantities are as typed: plain decimals, or text that the arithmetic will refuse. */
+export interface BenchSetup {
+  /** The job step, or null for a loose mix. */
+  stepId: string | null
+  loose: boolean
+  purpose: string
+  mixId: string
+  way: BenchWay
+  areaM2: string
+  /** Chosen pieces, in the order of the job's list; empty while the area was typed. */
+  pieceIds: string[]
+  totalG: string
+  /** Component whose rest decides, by its place in the mix. */
+  tinIndex: number
+  tinG: string
+  coats: number
+  filmWeightGsm: string
+  filmWeightIs: 'deposited' | 'sprayed' | null
+  gunId: string
+  shape: GunShape
+  residueG: string
+  paceM2PerH: string
+  cupId: string
+  scaleId: string
+  boothId: string
+}
+
+/** The tablet's own place in the shop. */
+export interface BenchHome {
+  boothId: string | null
+  scaleId: string | null
+}
+
+/** An empty form with this bench's own scale and the first cup large enough to be the usual one. */
+export function blankSetup(snapshot: BenchSnapshot, home: BenchHome): BenchSetup {
+  const scale = snapshot.scales.find(({ id }) => id === home.scaleId) ?? snapshot.scales[0]
+  const booth = snapshot.booths.find(({ id }) => id === home.boothId) ?? snapshot.booths[0]
+  return {
+    stepId: null,
+    loose: false,
+    purpose: '',
+    mixId: '',
+    way: 'area',
+    areaM2: '',
+    pieceIds: [],
+    totalG: '',
+    tinIndex: 0,
+    tinG: '',
+    coats: 1,
+    filmWeightGsm: '',
+    filmWeightIs: null,
+    gunId: '',
+    shape: 'flat',
+    residueG: '',
+    paceM2PerH: '',
+    cupId: snapshot.cups[0]?.id ?? '',
+    scaleId: scale?.id ?? '',
+    boothId: booth?.id ?? '',
+  }
+}
+
+/** A row of today's list: material, pieces, coat weight, booth and gun as the schedule has them. */
+export function setupForStep(step: BenchStep, snapshot: BenchSnapshot, home: BenchHome, before: BenchSetup): BenchSetup {
+  const free = step.pieces.filter(({ heldReason }) => heldReason === null)
+  const setup: BenchSetup = {
+    ...blankSetup(snapshot, home),
+    stepId: step.jobStepId,
+    mixId: step.mixId ?? '',
+    areaM2: step.areaM2,
+    pieceIds: free.map(({ id }) => id),
+    coats: step.coats,
+    filmWeightGsm: step.filmWeightGsm ?? '',
+    filmWeightIs: step.filmWeightIs,
+    shape: step.gunShape,
+    cupId: before.cupId,
+    scaleId: before.scaleId,
+  }
+  const boothId = step.boothId ?? setup.boothId
+  return chooseGun({ ...setup, boothId }, gunFor(snapshot, step.gunId, boothId), snapshot)
+}
+
+/** The form for a mix without a job: its purpose has to be said. */
+export function setupForLoose(snapshot: BenchSnapshot, home: BenchHome, before: BenchSetup): BenchSetup {
+  const setup: BenchSetup = { ...blankSetup(snapshot, home), loose: true, filmWeightIs: 'deposited', cupId: before.cupId, scaleId: before.scaleId }
+  return chooseGun(setup, gunFor(snapshot, null, setup.boothId), snapshot)
+}
+
+function gunFor(snapshot: BenchSnapshot, gunId: string | null, boothId: string): string {
+  const guns = snapshot.guns
+  return (guns.find(({ id }) => id === gunId) ?? guns.find(gun => gun.boothId === boothId) ?? guns[0])?.id ?? ''
+}
+
+/** A gun brings its own residue and its measured pace. */
+export function chooseGun(setup: BenchSetup, gunId: string, snapshot: BenchSnapshot): BenchSetup {
+  const gun = snapshot.guns.find(({ id }) => id === gunId)
+  if (!gun) return { ...setup, gunId: '' }
+  return { ...setup, gunId, residueG: gun.residueG, paceM2PerH: gun.paceM2PerH ?? '' }
+}
+
+/** Another mix: what is left of a component that it has not starts again at its base. */
+export function chooseMix(setup: BenchSetup, mix: BenchMix | undefined): BenchSetup {
+  return { ...setup, mixId: mix?.id ?? '', tinIndex: 0, tinG: '' }
+}
+
+/** Typing an area leaves the chosen pieces behind: nobody knows any more which of them are meant. */
+export function typeArea(setup: BenchSetup, areaM2: string): BenchSetup {
+  return { ...setup, areaM2, pieceIds: [] }
+}
+
+export function toolChoice(setup: BenchSetup): ToolChoice {
+  return {
+    mixId: setup.mixId, scaleId: setup.scaleId, cupId: setup.cupId, gunId: setup.gunId || null, boothId: setup.boothId || null,
+  }
+}
+
+/** Per cent of what leaves the gun that stays on the panel, for the shape of work. Null without a gun. */
+export function efficiencyOf(setup: BenchSetup, snapshot: BenchSnapshot): string | null {
+  const gun = snapshot.guns.find(({ id }) => id === setup.gunId)
+  return gun === undefined ? null : gun.efficiencyPct[setup.shape]
+}

@@ -1,0 +1,164 @@
+import { defineStore } from 'pinia'
+import { computed, ref, shallowRef } from 'vue'
+import type { Batch } from '#shared/schemas/batches'
+import type { BenchSnapshot } from '#shared/schemas/bench'
+import type { Draft } from '#shared/schemas/drafts'
+import { draftOf } from '#shared/utils/bench-draft'
+import { reckon } from '#shared/utils/bench-reckon'
+import type { BenchRun } from '#shared/utils/bench-run'
+import { blankSetup, type BenchHome, type BenchSetup } from '#shared/utils/bench-setup'
+import { benchTools } from '#shared/utils/bench-tools'
+import { toIso } from '#shared/utils/instant'
+import { shopDate } from '#shared/utils/zone'
+import { useBenchDisk, type BenchPlanKept } from '~/composables/useBenchDisk'
+import { useOutboxStore } from '~/stores/outbox'
+import { useSessionStore } from '~/stores/session'
+import { callApi, toFailure } from '~/utils/api'
+
+/** Drafts go out this long after the last change; at steps and at the start of a pot life at once. */
+const SAVE_AFTER_MS = 1_500
+
+/** The mix being made at this bench. It holds what is, and writes it down; what follows from it is reckoned elsewhere. */
+export const useBenchStore = defineStore('bench', () => {
+  const session = useSessionStore()
+  const outbox = useOutboxStore()
+  const disk = useBenchDisk()
+
+  const status = ref<'loading' | 'ready' | 'error'>('loading')
+  const failure = ref<string | null>(null)
+  /** Large and never changed in part. */
+  const snapshot = shallowRef<BenchSnapshot | null>(null)
+  const snapshotAt = ref<number | null>(null)
+  /** The list is from the tablet's disk: the server did not answer. */
+  const isOffline = ref(false)
+  /** The server's clock less this tablet's, ms; null while it was never measured. */
+  const offsetMs = ref<number | null>(null)
+  const setup = ref<BenchSetup | null>(null)
+  const plan = shallowRef<BenchPlanKept | null>(null)
+  const run = shallowRef<BenchRun | null>(null)
+  /** The pot at hand as the log has it. */
+  const logged = shallowRef<Batch | null>(null)
+  let saveTimer: ReturnType<typeof setTimeout> | undefined
+
+  const zone = computed(() => session.shop?.zone ?? 'UTC')
+  const home = computed<BenchHome>(() => ({ boothId: session.device?.boothId ?? null, scaleId: session.device?.scaleId ?? null }))
+  const reckoning = computed(() => (setup.value && snapshot.value ? reckon(setup.value, snapshot.value) : null))
+  const tools = computed(() => (run.value && snapshot.value ? benchTools(run.value.tools, snapshot.value) : null))
+
+  const now = (): number => Date.now() + (offsetMs.value ?? 0)
+  const today = (): string => shopDate(now(), zone.value)
+
+  /** Reads what was left on the tablet, then the shop's present state. */
+  async function load(): Promise<void> {
+    status.value = snapshot.value === null ? 'loading' : status.value
+    const userId = session.user?.id
+    if (userId === undefined) return
+    await outbox.load()
+    if (run.value === null) await restore(userId)
+    await refresh()
+    // What was changed just before a crash may not have gone out.
+    if (run.value !== null && run.value.stage !== 'logged') await save()
+  }
+
+  async function restore(userId: string): Promise<void> {
+    const kept = await disk.readKept()
+    if (kept === undefined) return
+    // A cup that is not in the log stays on this bench whoever signs in; a form belongs to the person who filled it.
+    if (kept.run !== null && kept.run.stage !== 'logged') run.value = kept.run
+    if (kept.userId === userId || run.value !== null) {
+      setup.value = kept.setup
+      plan.value = kept.plan
+    }
+  }
+
+  async function refresh(): Promise<void> {
+    const askedAt = Date.now()
+    try {
+      const answer = await callApi<BenchSnapshot>('/api/bench/snapshot')
+      const answeredAt = Date.now()
+      offsetMs.value = Date.parse(answer.serverNow) - (askedAt + answeredAt) / 2
+      take(answer, now(), false)
+      await disk.writeSnapshot({ snapshot: answer, at: now() })
+    } catch (error) {
+      await readLast(toFailure(error).message, toFailure(error).passing)
+    }
+  }
+
+  async function readLast(message: string, isPassing: boolean): Promise<void> {
+    const kept = isPassing ? await disk.readSnapshot() : undefined
+    failure.value = message
+    if (kept === undefined) status.value = snapshot.value === null ? 'error' : status.value
+    else take(kept.snapshot, kept.at, true)
+  }
+
+  function take(next: BenchSnapshot, at: number, offline: boolean): void {
+    snapshot.value = next
+    snapshotAt.value = at
+    isOffline.value = offline
+    if (!offline) failure.value = null
+    setup.value ??= blankSetup(next, home.value)
+    status.value = 'ready'
+  }
+
+  async function keep(): Promise<void> {
+    if (!setup.value || !session.user) return
+    await disk.writeKept({ userId: session.user.id, setup: setup.value, plan: plan.value, run: run.value })
+  }
+
+  async function changeSetup(next: BenchSetup): Promise<void> {
+    setup.value = next
+    await keep()
+  }
+
+  /** A change of the cup: on the tablet at once, to the server soon, or now where it may not wait. */
+  async function change(next: BenchRun, when: 'now' | 'soon'): Promise<void> {
+    const startsLife = next.reactiveAt !== null && run.value?.reactiveAt !== next.reactiveAt
+    run.value = { ...next, seq: next.seq + 1 }
+    await keep()
+    clearTimeout(saveTimer)
+    if (when === 'now' || startsLife) await save()
+    else saveTimer = setTimeout(() => void save(), SAVE_AFTER_MS)
+  }
+
+  async function save(): Promise<void> {
+    clearTimeout(saveTimer)
+    const { value } = run
+    if (value === null) return
+    const body = draftOf(value, toIso(Date.now()), offsetMs.value === null ? null : Math.round(offsetMs.value))
+    await outbox.put({ subject: value.id, kind: 'draft', method: 'PUT', path: `/api/batch-drafts/${value.id}`, body: { ...body } })
+  }
+
+  /** A pot of a plan begins. */
+  async function begin(next: BenchRun, of: BenchPlanKept): Promise<void> {
+    plan.value = of
+    logged.value = null
+    await change(next, 'now')
+  }
+
+  /** Into the record: the last draft first, then the seal, in this order also without a network. */
+  async function seal(next: BenchRun): Promise<void> {
+    await change(next, 'now')
+    await outbox.put({ subject: next.id, kind: 'seal', method: 'POST', path: '/api/batches', body: { draftId: next.id } })
+  }
+
+  /** Leaves the cup that is in the log; the form stands for the next one. */
+  async function leave(): Promise<void> {
+    run.value = null
+    logged.value = null
+    await keep()
+    await refresh()
+  }
+
+  outbox.listen((entry, answer) => {
+    if (run.value?.id !== entry.subject) return
+    if (entry.kind === 'seal') logged.value = answer as Batch
+    const { code, potLife } = answer as Draft
+    run.value = { ...run.value, code, potLife }
+    void keep()
+  })
+
+  return {
+    status, failure, snapshot, snapshotAt, isOffline, offsetMs, setup, plan, run, logged, zone, home, reckoning, tools,
+    now, today, load, refresh, changeSetup, change, begin, seal, leave,
+  }
+})
