@@ -6,7 +6,7 @@ import { Stop, main, say } from './lib/process.mjs'
 import { databaseUrls, markFilled } from './lib/schema.mjs'
 import { readSecrets } from './lib/secrets.mjs'
 import { checkNode, readSettings } from './lib/settings.mjs'
-import { checkEnvironment, claimFolder, fillShop, migrate, openShop } from './lib/shop.mjs'
+import { checkEnvironment, claimFolder, describeMigrations, fillShop, migrate, openShop } from './lib/shop.mjs'
 import { mustRunFile, runFile } from './lib/typescript.mjs'
 
 const USAGE = `npm run db -- COMMAND
@@ -68,7 +68,7 @@ const commands = {
     const shop = await openAlone('migrate')
     const { applied } = await migrate(shop.env)
     markFilled(shop.folder)
-    say(applied.length > 0 ? applied.map(name => `Migrated ${name}`).join('\n') : 'Nothing to migrate.')
+    say(applied.length > 0 ? describeMigrations(applied) : 'Nothing to migrate.')
   },
   async rollback(rest) {
     confirm(rest)

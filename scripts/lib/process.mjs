@@ -24,17 +24,29 @@ export function say(line) {
 export function identity(pid) {
   if (!Number.isInteger(pid) || pid <= 0) return null
   if (existsSync('/proc/self/stat')) {
-    try {
-      // The name in brackets may hold spaces and brackets: count the fields after the last bracket.
-      const stat = readFileSync(`/proc/${pid}/stat`, 'utf8')
-      const fields = stat.slice(stat.lastIndexOf(')') + 2).split(' ')
-      return fields[0] === 'Z' || fields[0] === 'X' ? null : fields[19]
-    }
-    catch {
-      return null
-    }
+    const fields = statFields(pid)
+    return fields === null || fields[0] === 'Z' || fields[0] === 'X' ? null : fields[19]
   }
   return askPs(pid, 'lstart=')
+}
+
+/** What the system tells about a process, from its state on, or null when it does not run. */
+function statFields(pid) {
+  try {
+    const stat = readFileSync(`/proc/${pid}/stat`, 'utf8')
+    // The name in brackets may hold spaces and brackets: what counts begins after the last bracket.
+    return stat.slice(stat.lastIndexOf(')') + 2).split(' ')
+  }
+  catch {
+    return null
+  }
+}
+
+/** The process that started this one: npm puts a shell between itself and us. */
+function starters() {
+  const parent = process.ppid
+  const shell = commandLine(parent)?.[1] === '-c' && existsSync('/proc/self/stat')
+  return shell ? [parent, Number(statFields(parent)?.[1])] : [parent]
 }
 
 /**
@@ -194,6 +206,8 @@ export async function main(work, { interrupted = 0 } = {}) {
       void finish(interrupted)
     })
   }
+  // A shell that npm puts in between dies of a signal without passing it on.
+  if (process.env.npm_lifecycle_event) endWithStarter(() => finish(interrupted))
   let code
   try {
     code = await work()
@@ -204,6 +218,16 @@ export async function main(work, { interrupted = 0 } = {}) {
     code = 1
   }
   if (!ending) await finish(code)
+}
+
+function endWithStarter(end) {
+  const born = starters().map(pid => ({ pid, is: identity(pid) }))
+  const look = setInterval(() => {
+    if (ending || born.every(({ pid, is }) => identity(pid) === is)) return
+    clearInterval(look)
+    void end()
+  }, 100)
+  look.unref()
 }
 
 async function finish(code) {

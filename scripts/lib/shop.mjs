@@ -86,7 +86,7 @@ export async function migrate(env) {
  */
 export async function fillShop(shop, settings) {
   let status = await migrate(shop.env)
-  for (const name of status.applied) say(`Migrated ${name}`)
+  if (status.applied.length > 0) say(describeMigrations(status.applied))
   refuseOpenDemo(status, settings)
   if (status.users === 0 && settings.demo) {
     say('Filling the empty database with the demo shop …')
@@ -98,6 +98,11 @@ export async function fillShop(shop, settings) {
     await mustRunFile('The demo shop could not be refreshed; its own words are above.', 'seeds/refresh.ts', shop.env)
   }
   return status
+}
+
+/** One line about what was migrated. */
+export function describeMigrations(applied) {
+  return applied.length === 1 ? `Migrated ${applied[0]}` : `Migrated ${applied.length} steps, up to ${applied.at(-1)}`
 }
 
 /** The demo's passwords are public: with them the shop is never opened to the network. */

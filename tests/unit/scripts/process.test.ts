@@ -1,6 +1,10 @@
+import { spawn } from 'node:child_process'
+import { writeFileSync } from 'node:fs'
+import { join } from 'node:path'
 import { describe, expect, it } from 'vitest'
+import { scrub } from '../../../scripts/lib/environment.mjs'
 import { endTree, identity, must, run, start } from '../../../scripts/lib/process.mjs'
-import { library, runModule } from './helpers'
+import { library, runModule, temporaryFolder } from './helpers'
 
 const FOREVER = 'setInterval(() => {}, 1000)'
 
@@ -74,6 +78,26 @@ describe('main', () => {
     expect(code).toBe(0)
     expect(output).toBe(`${child}\nchild ends\nsecond closer\nfirst closer\n`)
     expect(identity(child)).toBeNull()
+  })
+
+  it('ends when the shell that npm puts in between is ended, which tells nobody', async () => {
+    const folder = temporaryFolder()
+    const file = join(folder, 'program.mjs')
+    writeFileSync(file, program(`atEnd(() => say('ended')); say(process.pid); ${FOREVER}; await new Promise(() => {})`))
+    const shell = spawn('sh', ['-c', `"${process.execPath}" "${file}"; true`], {
+      env: { ...scrub(process.env), npm_lifecycle_event: 'start' }, stdio: ['ignore', 'pipe', 'inherit'],
+    })
+    let output = ''
+    const closed = new Promise(done => shell.stdout.once('close', done))
+    const up = new Promise(done => shell.stdout.once('data', done))
+    shell.stdout.on('data', (text: Buffer) => {
+      output += text.toString()
+    })
+    await up
+    shell.kill('SIGTERM')
+    // The output closes once the last process that holds it is gone.
+    await closed
+    expect(output).toMatch(/^\d+\nended\n$/)
   })
 
   it('prints a stop as one sentence without a stack and ends with 1', async () => {
