@@ -4,7 +4,7 @@ import { MINUTE_MS, later, readDuration, readInstant, wholePart } from './instan
 /** One step of a schedule, in order. Durations in whole milliseconds. */
 export interface DayStep {
   name: string
-  /** Working time it takes; it rests outside the working intervals. */
+  /** Working time it takes; it may rest over a break of at most two hours, never over a night. */
   workMs: number
   /** From the end of the step before; 0 for the first. */
   minMs: number
@@ -54,6 +54,8 @@ export interface DayPlan {
 
 const MOST_STEPS = 30
 const MOST_INTERVALS = 60
+/** A coat is not left half sprayed for longer. */
+const LONGEST_BREAK_MS = 120 * MINUTE_MS
 const MOST_WORKING_MS = 14 * 24 * 60 * MINUTE_MS
 
 /** What is known while one plan is searched. */
@@ -127,7 +129,8 @@ function placeRest(search: Search, before: PlacedStep): PlacedStep[] | null {
   const closesAt = step.maxMs === null ? null : before.startsAt + step.maxMs
   for (const startsAt of candidates(search.intervals, opensAt)) {
     const endsAt = workFrom(search.intervals, startsAt, step.workMs)
-    if (endsAt === null || (closesAt !== null && endsAt > closesAt)) break
+    if (closesAt !== null && startsAt > closesAt) break
+    if (endsAt === null || (closesAt !== null && endsAt > closesAt)) continue
     const placed: PlacedStep = { step: index, startsAt, endsAt, opensAt, closesAt }
     const rest = placeRest(search, placed)
     if (rest !== null) return [placed, ...rest]
@@ -142,12 +145,15 @@ function candidates(intervals: readonly WorkingInterval[], opensAt: number): num
   return intervals.filter(({ to }) => to > opensAt).map(({ from }) => later(from, opensAt))
 }
 
-/** The moment at which so much work, begun then, is done; null where the intervals do not last. */
+/** The moment at which so much work, begun then, is done; null where a night or the end of the intervals comes first. */
 function workFrom(intervals: readonly WorkingInterval[], startsAt: number, workMs: number): number | null {
   let left = workMs
+  let rested = startsAt
   for (const { from, to } of intervals) {
     if (to <= startsAt) continue
     const begin = later(from, startsAt)
+    if (begin - rested > LONGEST_BREAK_MS) return null
+    rested = to
     if (begin + left <= to) return begin + left
     left -= to - begin
   }
