@@ -33,6 +33,7 @@ export default {
       'soon-line': token('soon-line'),
       'on-soon': token('on-soon'),
       'alarm': token('alarm'),
+      'alarm-deep': token('alarm-deep'),
       'alarm-soft': token('alarm-soft'),
       'alarm-text': token('alarm-text'),
       'on-alarm': token('on-alarm'),

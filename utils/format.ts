@@ -138,6 +138,12 @@ export function day(ms: number, zone: string, nowMs: number): string {
   return dayText(at.year, at.month, at.day, at.year !== zoned(nowMs, zone).year)
 }
 
+/** Weekday of an instant in the shop's zone: `Tue`. */
+export function weekday(ms: number, zone: string): string {
+  const at = zoned(ms, zone)
+  return dayText(at.year, at.month, at.day, false).slice(0, 3)
+}
+
 /** Day and clock time: `Tue 17 Nov 07:54`. */
 export function dayClock(ms: number, zone: string, nowMs: number): string {
   return `${day(ms, zone, nowMs)} ${clock(ms, zone)}`

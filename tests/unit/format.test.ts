@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import { area, calendarDay, clock, clockSeconds, day, dayClock, decimalsOf, duration, grams, isoDay, numberParts, over, percent, ratio } from '~/utils/format'
+import { area, calendarDay, clock, clockSeconds, day, dayClock, decimalsOf, duration, grams, isoDay, numberParts, over, percent, ratio, weekday } from '~/utils/format'
 
 const SECOND = 1000
 const MIN = 60 * SECOND
@@ -120,6 +120,8 @@ describe('clock and dates in the shop’s zone', () => {
     expect(isoDay(summer, ZONE)).toBe('2026-07-02')
     expect(dayClock(winter, ZONE, winter)).toBe('Tue 17 Nov 07:54')
   })
+
+  it('names the weekday of the zone', () => expect(weekday(summer, ZONE)).toBe('Thu'))
 
   it('gives the year only when it is another', () => {
     expect(day(winter, ZONE, Date.UTC(2027, 0, 2))).toBe('Tue 17 Nov 2026')
