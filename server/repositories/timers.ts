@@ -91,14 +91,21 @@ export async function lockTimer(id: string, trx: Knex.Transaction): Promise<Time
   return held ? getTimer(id, trx) : null
 }
 
-/** All timers of one subject that were not ended, locked. */
+/** All timers of one subject that were not ended, each locked by its key: a search with locks would lock its neighbours. */
 export async function lockTimersOf(subjectType: Timer['subjectType'], subjectId: string, trx: Knex.Transaction): Promise<Timer[]> {
-  await trx('timers').where({ subject_type: subjectType, subject_id: subjectId }).forUpdate().select('id')
-  const rows = await select(trx)
-    .where({ 't.subject_type': subjectType, 't.subject_id': subjectId })
-    .whereIn('t.state', ['waiting', 'fired', 'acknowledged'])
-    .orderBy(['t.due_at', 't.id'])
-  return rows.map(toTimer)
+  const found = await trx('timers').where({ subject_type: subjectType, subject_id: subjectId }).orderBy('id').select<{ id: string }[]>('id')
+  const timers: Timer[] = []
+  for (const { id } of found) {
+    const timer = await lockTimer(id, trx)
+    if (timer && timer.state !== 'done' && timer.state !== 'cancelled') timers.push(timer)
+  }
+  return timers
+}
+
+/** The one timer of its kind and subject. */
+export async function findTimerOf(kind: TimerKind, subjectType: Timer['subjectType'], subjectId: string, db: Db): Promise<Timer | null> {
+  const row = await select(db).where({ 't.kind': kind, 't.subject_type': subjectType, 't.subject_id': subjectId }).first()
+  return row ? toTimer(row) : null
 }
 
 /** Other applications to pieces of this one whose timers were not ended, the oldest first. */

@@ -1,5 +1,5 @@
 import type { Timer, TimerCreateBody, TimerExtendBody, TimerSilenceBody } from '#shared/schemas/timers'
-import { getTimer, lockTimer, lockTimersOf, setTimer, timedApplicationsUnder, updateTimer, type TimerChange } from '../repositories/timers'
+import { findTimerOf, getTimer, lockTimer, lockTimersOf, setTimer, timedApplicationsUnder, updateTimer, type TimerChange } from '../repositories/timers'
 import { findWindows } from '../repositories/windows'
 import type { Context, Principal } from '../utils/context'
 import { userIdOf } from '../utils/context'
@@ -100,7 +100,7 @@ export function createTimer(ctx: Context, body: TimerCreateBody): Promise<Timer>
       m.now,
       m.trx,
     )
-    const [timer] = await lockTimersOf('free', subjectId, m.trx)
+    const timer = await findTimerOf('free', 'free', subjectId, m.trx)
     if (!timer) throw new Error('a timer was lost in its own transaction')
     m.audit({ action: 'timer.created', subject: `timer:${timer.id}`, facts: { minutes: body.minutes, boothId: body.boothId, dueAt } })
     return publishTimer(m, timer.id)
