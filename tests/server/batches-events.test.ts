@@ -12,7 +12,7 @@ import { openWorkshop, type Workshop } from './support/context'
 let work: Workshop
 beforeAll(async () => {
   work = await openWorkshop()
-})
+}, 120_000)
 beforeEach(() => {
   work.clock.now = morning
 })

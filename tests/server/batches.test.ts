@@ -13,7 +13,7 @@ import { idempotency, openWorkshop, stock, type Workshop } from './support/conte
 let work: Workshop
 beforeAll(async () => {
   work = await openWorkshop()
-})
+}, 120_000)
 beforeEach(() => {
   work.clock.now = morning
 })
