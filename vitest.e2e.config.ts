@@ -12,6 +12,8 @@ export default defineConfig({
     include: ['tests/e2e/**/*.test.ts'],
     environment: 'node',
     passWithNoTests: false,
+    // Vite has a BASE_URL of its own, a path, and would put it in place of the server's address.
+    env: process.env.BASE_URL ? { BASE_URL: process.env.BASE_URL } : {},
     // One browser at a time on one shop.
     fileParallelism: false,
     testTimeout: 60_000,
