@@ -35,7 +35,7 @@ async function newPieces(count: number): Promise<{ pieceIds: string[] }> {
   })))
   return { pieceIds }
 }
-const loose = { jobStepId: null, pieceIds: [], purpose: 'sample boards' } as const
+const loose: Partial<DraftInput> = { jobStepId: null, pieceIds: [], purpose: 'sample boards' }
 const spray = (id: string, kind: BatchEventBody['kind'], minute: number | null, ctx: Context = work.as('sprayer')) =>
   recordBatchEvent(ctx, id, { kind, gunId: null, at: minute === null ? null : minutesIn(minute) })
 const close = (id: string, leftoverG: string | null, ctx: Context = work.as('sprayer')) => closeBatch(ctx, id, { leftoverG, at: null })

@@ -13,7 +13,7 @@ import { openWorkshop, type Workshop } from './support/context'
 
 let work: Workshop
 const ids: Record<string, string> = {}
-const loose = { jobStepId: null, pieceIds: [] } as const
+const loose: Partial<DraftInput> = { jobStepId: null, pieceIds: [] }
 
 /** Makes a batch whose pours end at the given minute and remembers it by its purpose. */
 async function batch(purpose: string, minute: number, more: Partial<DraftInput> = {}) {
