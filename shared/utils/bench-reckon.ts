@@ -192,6 +192,20 @@ function potOf(
   return { number, plan, batch, areaM2: batch.areaM2, pieceIds, span, startsAfterMin }
 }
 
+/** The smallest cup that takes everything at once; where none does, the one that needs the fewest pots. */
+export function withFittingCup(setup: BenchSetup, snapshot: BenchSnapshot): BenchSetup {
+  const cups = [...snapshot.cups].sort((a, b) => new D(a.fillLineMl).comparedTo(b.fillLineMl))
+  const tried = cups.map(({ id }) => ({ ...setup, cupId: id })).map(one => ({ setup: one, pots: reckon(one, snapshot).pots.length }))
+  const best = tried.filter(({ pots }) => pots > 0).reduce<(typeof tried)[number] | null>((least, next) => (least === null || next.pots < least.pots ? next : least), null)
+  return best?.setup ?? { ...setup, cupId: cups.at(-1)?.id ?? setup.cupId }
+}
+
+/** Today's list with what can be coated now in front; within a kind its order never changes. */
+export function byReadiness(steps: readonly BenchStep[]): BenchStep[] {
+  const rank: Record<BenchStep['ready'], number> = { ready: 0, mixing: 1, wait: 2, sand: 3, held: 4, done: 5 }
+  return [...steps].sort((a, b) => rank[a.ready] - rank[b.ready])
+}
+
 /** Exact sum of the chosen pieces, m². */
 export function areaOfPieces(step: BenchStep, pieceIds: readonly string[]): string {
   return print(sum(step.pieces.filter(({ id }) => pieceIds.includes(id)).map(({ areaM2 }) => new D(areaM2))))

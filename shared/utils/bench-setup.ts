@@ -37,7 +37,7 @@ export interface BenchHome {
   scaleId: string | null
 }
 
-/** An empty form with this bench's own scale and the first cup large enough to be the usual one. */
+/** An empty form with this bench's own scale and the first cup of the list. */
 export function blankSetup(snapshot: BenchSnapshot, home: BenchHome): BenchSetup {
   const scale = snapshot.scales.find(({ id }) => id === home.scaleId) ?? snapshot.scales[0]
   const booth = snapshot.booths.find(({ id }) => id === home.boothId) ?? snapshot.booths[0]
@@ -78,7 +78,6 @@ export function setupForStep(step: BenchStep, snapshot: BenchSnapshot, home: Ben
     filmWeightGsm: step.filmWeightGsm ?? '',
     filmWeightIs: step.filmWeightIs,
     shape: step.gunShape,
-    cupId: before.cupId,
     scaleId: before.scaleId,
   }
   const boothId = step.boothId ?? setup.boothId
@@ -87,7 +86,7 @@ export function setupForStep(step: BenchStep, snapshot: BenchSnapshot, home: Ben
 
 /** The form for a mix without a job: its purpose has to be said. */
 export function setupForLoose(snapshot: BenchSnapshot, home: BenchHome, before: BenchSetup): BenchSetup {
-  const setup: BenchSetup = { ...blankSetup(snapshot, home), loose: true, filmWeightIs: 'deposited', cupId: before.cupId, scaleId: before.scaleId }
+  const setup: BenchSetup = { ...blankSetup(snapshot, home), loose: true, filmWeightIs: 'deposited', scaleId: before.scaleId }
   return chooseGun(setup, gunFor(snapshot, null, setup.boothId), snapshot)
 }
 
