@@ -1,6 +1,8 @@
-import type { ComponentRole } from '~/utils/roles'
+import type { MaterialRole } from '#shared/schemas/material-roles'
 import { minutesToMs } from '#shared/utils/instant'
+import { patternOf } from '~/utils/batch-words'
 import { duration, grams } from '~/utils/format'
+import type { ComponentRole } from '~/utils/roles'
 
 /** Plain words for the keys of the API, in one place, so that another language can follow. */
 export const ROLE_WORDS = {
@@ -38,12 +40,8 @@ export function cupName(key: string): string {
 /** `acid-curing` → `Acid-curing`. */
 export const chemistryWord = (key: string): string => key.charAt(0).toUpperCase() + key.slice(1)
 
-/** The pattern that stands for a role; everything beside base, hardener and thinner is the fourth. */
-export function patternOf(role: string): ComponentRole {
-  if (role === 'hardener' || role === 'peroxide') return 'hardener'
-  if (role === 'thinner') return 'thinner'
-  return role === 'base' || role === 'ready-to-use' ? 'base' : 'fourth'
-}
+/** The pattern of a material by what it is bought as: ready to use is drawn like a base. */
+export const materialPattern = (role: MaterialRole): ComponentRole => patternOf(role === 'ready-to-use' ? 'base' : role)
 
 /** Minutes of the API for the eye: `90` → `1 h 30`. */
 export const minutesText = (minutes: string): string => duration(minutesToMs(minutes))

@@ -77,15 +77,17 @@ const toJob = (row: JobRow): StoredJob => ({
   updatedAt: isoOf(row.updated_at),
 })
 
-/** Jobs, the one due first first. */
+/** Jobs, the one due first first; done ones the other way round, since the last ones are asked for most. */
 export async function listJobs(
   filter: Pick<JobListQuery, 'state' | 'q'>, page: { after: JobKey | null, limit: number }, db: Db,
 ): Promise<StoredJob[]> {
   const query = select(db)
-  if (filter.state) void query.where('j.state', filter.state)
+  if (filter.state === 'open') void query.whereNot('j.state', 'done')
+  else if (filter.state && filter.state !== 'all') void query.where('j.state', filter.state)
   if (filter.q) whereContains(query, ['j.code', 'j.title', 'j.customer'], filter.q)
-  if (page.after) void query.whereRaw(`(${dueSql}, j.code) > (?, ?)`, [page.after.on, page.after.code])
-  return (await query.orderByRaw(`${dueSql}, j.code`).limit(page.limit)).map(toJob)
+  const [past, turn] = filter.state === 'done' ? ['<', 'DESC'] : ['>', 'ASC']
+  if (page.after) void query.whereRaw(`(${dueSql}, j.code) ${past} (?, ?)`, [page.after.on, page.after.code])
+  return (await query.orderByRaw(`${dueSql} ${turn}, j.code ${turn}`).limit(page.limit)).map(toJob)
 }
 
 export async function findJob(id: string, db: Db): Promise<StoredJob | null> {

@@ -31,7 +31,7 @@ function describe({ notes: _notes, createdAt: _createdAt, updatedAt: _updatedAt,
   return { ...job, dueInDays: job.dueOn === null ? null : daysBetween(today, job.dueOn) }
 }
 
-/** A page of jobs, the one due first first. */
+/** A page of jobs, the one due first first; of done ones the last first. */
 export async function jobsPage(ctx: Context, query: JobListQuery): Promise<Page<JobItem>> {
   const { today } = await shopDay(ctx)
   const key = readCursor(query.cursor, ['day', 'text'])

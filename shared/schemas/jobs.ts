@@ -10,7 +10,8 @@ export const JobState = z.enum(jobStates, 'Choose a state.')
 export type JobState = z.infer<typeof JobState>
 
 export const JobListQuery = z.strictObject({
-  state: z.optional(JobState),
+  /** One state, or `open`: everything that is not done. */
+  state: z.optional(z.enum([...jobStates, 'open', 'all'], 'Choose a state.')),
   q: searchText,
   ...pageQuery,
 })
