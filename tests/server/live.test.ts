@@ -5,6 +5,8 @@ import { catchUp, fromSnapshot } from '#shared/utils/live-reducer'
 import { longestGap } from '../../server/live/stream'
 import { RedisWake } from '../../server/live/redis'
 import { readHead } from '../../server/repositories/events'
+import { readConsistent } from '../../server/repositories/snapshot'
+import { getTimer } from '../../server/repositories/timers'
 import { saveDraft } from '../../server/services/drafts'
 import { readLive } from '../../server/services/live'
 import { createTimer, finishTimer } from '../../server/services/timers'
@@ -63,6 +65,21 @@ describe('the event stream', () => {
     expect(stored).toHaveLength(120)
     expect(seqs(steady)).toEqual(stored)
     expect(cut).toEqual(stored)
+  })
+
+  it('holds back what happens while missed events are still being read', async () => {
+    const from = await head()
+    for (const name of ['one', 'two', 'three']) await createTimer(live.as('sprayer'), timer(name))
+    const last = await head()
+    const here = station()
+    await here.listen()
+    const opening = here.listen({ lastEventId: from })
+    while (here.hub.size < 2) await Promise.resolve()
+    const serverNow = new Date(live.time.now).toISOString()
+    here.hub.dispatch({ seq: last + 1, type: 'timer', at: serverNow, serverNow, subject: 'timer:x', boothId: null, payloadJson: '{}' })
+    const ear = await opening
+    await ear.until(() => ear.events.length === 4)
+    expect(seqs(ear)).toEqual([...(await seqsAfter(from)), last + 1])
   })
 
   it('carries number, kind, instants, subject and payload', async () => {
@@ -230,6 +247,16 @@ describe('the snapshot', () => {
     for (const snapshot of snapshots) expect(catchUp(snapshot, ear.events).pots).toEqual(final.pots)
     expect(snapshots.every(({ lastSeq }) => lastSeq >= from)).toBe(true)
     expect(new Set(snapshots.map(({ pots }) => pots.length)).size).toBeGreaterThan(1)
+  })
+
+  it('does not see what is committed after its number was read', async () => {
+    const ctx = live.as('sprayer')
+    await readConsistent(live.db, async (trx) => {
+      const seq = await readHead(trx)
+      const made = await createTimer(ctx, timer('Too late for this view'))
+      expect(await getTimer(made.id, live.db)).not.toBeNull()
+      expect([await getTimer(made.id, trx), await readHead(trx)]).toEqual([null, seq])
+    })
   })
 
   it('of a booth holds its pots and those of no booth, and refuses a screen that asks for another', async () => {
