@@ -16,12 +16,16 @@ export async function withConnections<T>(work: (connections: Connections) => Pro
   }
 }
 
-/** Runs a command; a failure is told in full and ends with 1. */
+/** Something that whoever gave the command can put right: said in its own words, without a stack. */
+export class Refused extends Error {}
+
+/** Runs a command; a failure is told and ends with 1. */
 export async function command(work: () => Promise<void>): Promise<void> {
   try {
     await work()
   } catch (error) {
-    process.stderr.write(`${error instanceof Error ? (error.stack ?? error.message) : String(error)}\n`)
+    const told = error instanceof Refused ? error.message : error instanceof Error ? (error.stack ?? error.message) : String(error)
+    process.stderr.write(`${told}\n`)
     process.exitCode = 1
   }
 }

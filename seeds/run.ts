@@ -1,4 +1,4 @@
-import { command, withConnections } from './connections'
+import { command, Refused, withConnections } from './connections'
 import { demoWeeks, makeDemo } from './demo/make'
 
 /** Fills an empty database with the demo shop. */
@@ -6,7 +6,7 @@ await command(() => withConnections(async (connections) => {
   const started = process.hrtime.bigint()
   const outcome = await makeDemo(connections, { weeks: demoWeeks, say: (line) => console.log(line) })
   if (!outcome.made) {
-    if (outcome.why === 'foreign') throw new Error('This database already has people in it: the demo shop is only put into an empty one.')
+    if (outcome.why === 'foreign') throw new Refused('This database already has people in it: the demo shop is only put into an empty one.')
     console.log('The demo shop is there already.')
     return
   }

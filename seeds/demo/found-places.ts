@@ -1,9 +1,10 @@
+import { demoPassword } from '#shared/utils/demo'
 import { shopDate } from '#shared/utils/zone'
 import { newId } from '../../server/utils/ids'
 import { hashPassword } from '../../server/utils/password'
 import { toInstant } from '../../server/utils/rows'
 import type { Mutation } from '../../server/utils/transactions'
-import { booths, demoPassword, guns, mixingCups, people, scales, shop, workingHours } from './places'
+import { booths, guns, mixingCups, people, scales, shop, workingHours } from './places'
 import { the, type DemoShop } from './shop'
 
 const dayMs = 86_400_000

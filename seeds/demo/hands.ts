@@ -1,7 +1,6 @@
 import { DraftBody, type DraftInput } from '#shared/schemas/drafts'
 import { shopDate } from '#shared/utils/zone'
 import type { Context } from '../../server/utils/context'
-import { newId } from '../../server/utils/ids'
 import { isoOf, toInstant } from '../../server/utils/rows'
 import { closeBatch, recordBatchEvent } from '../../server/services/batch-events'
 import { sealBatch } from '../../server/services/batches'

@@ -12,7 +12,7 @@ import { booths, crews, shop as theShop, type BoothKey } from './places'
 import { planPot } from './pot'
 import { JobBook } from './progress'
 import { randomOf, type Random } from './random'
-import { endPastWindows, settleDueTimers, settleReviews } from './settle'
+import { acknowledgeMissed, endPastWindows, settleDueTimers, settleReviews } from './settle'
 import { asUser, the, type DemoShop } from './shop'
 import { openingStock, Stores } from './stores'
 import { Yard, type Day, type PlannedPot } from './yard'
@@ -271,6 +271,7 @@ export class History {
     await moveJobs(this.#foreman, moves)
     await endPastWindows(this.#ctx)
     await settleDueTimers(this.#ctx)
+    await acknowledgeMissed(this.#foreman)
     if (!isWorkingDay(today)) await this.#readClimate(now - 4 * minuteMs)
   }
 }

@@ -100,7 +100,7 @@ export const mixes: readonly DemoMix[] = [
   one('CR-10', 'Crystallising coat, frost', { parts: [base('S-640'), thinner('S-900', '10')] }),
   one('CV-10', 'Acid-curing varnish, clear satin', {
     parts: [base('C-210'), hardener('C-510', '10'), thinner('C-900', '20')],
-    potLifeMin: '600', viscosity: din('20', '24'),
+    potLifeMin: '240', viscosity: din('20', '24'),
   }),
   one('CV-5', 'Acid-curing varnish, clear satin, slow', {
     parts: [base('C-210'), hardener('C-510', '5'), thinner('C-900', '20')],

@@ -5,8 +5,6 @@ export const shop = { name: 'Kridtvang Finishing', zone: 'Europe/Copenhagen' }
 /** Local times of the shop; Monday is 1. */
 export const workingHours = { days: [1, 2, 3, 4, 5], from: '07:00', to: '16:00', breaks: [{ from: '11:30', to: '12:00' }] }
 
-export const demoPassword = 'let the pot ring'
-
 /** `trainedDays`: how long the isocyanate training is still valid, from the day of founding on. */
 export const people = [
   { key: 'TV', email: 'sprayer@potbell.example', name: 'Tilda Vestkrog', role: 'sprayer', signsIn: true, trainedDays: 610 },

@@ -63,7 +63,7 @@ export function pourPot(revision: DemoRevision, targets: readonly Tenths[], scal
   for (const [index, part] of revision.parts.entries()) {
     const follows = index === 0 ? targets[0] ?? 0 : nearest((poured[0] ?? 0) * (parts[index] ?? 0), parts[0] ?? 1, step)
     const most = scatter[part.role]
-    poured.push(missed(follows, deliberate(part.role, deviation) ?? random.around(-most, most)))
+    poured.push(missed(follows, deliberate(part.role, deviation, random) ?? random.around(-most, most)))
   }
   const weighings = poured.map((tenths, index) => ({ index, tenths, round: 0 }))
   if (deviation === 'stopped') return { weighings: weighings.slice(0, 2), correction: null }
@@ -73,10 +73,10 @@ export function pourPot(revision: DemoRevision, targets: readonly Tenths[], scal
 }
 
 /** Parts per thousand that a deviation asks for, or null where the hand's scatter counts. */
-function deliberate(role: DemoRevision['parts'][number]['role'], deviation: Deviation | null): number | null {
-  if (role === 'hardener' && deviation === 'hardener-short') return -60
-  if (role === 'hardener' && deviation === 'over-pour') return 55
-  if (role === 'thinner' && deviation === 'thinner-much') return 115
+function deliberate(role: DemoRevision['parts'][number]['role'], deviation: Deviation | null, random: Random): number | null {
+  if (role === 'hardener' && deviation === 'hardener-short') return random.between(-68, -53)
+  if (role === 'hardener' && deviation === 'over-pour') return random.between(48, 66)
+  if (role === 'thinner' && deviation === 'thinner-much') return random.between(95, 130)
   return null
 }
 

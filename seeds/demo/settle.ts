@@ -1,7 +1,7 @@
 import { findDue } from '../../server/repositories/due-timers'
 import { findWindows } from '../../server/repositories/windows'
 import { settleDue } from '../../server/services/due-timers'
-import { cancelTimers } from '../../server/services/timers'
+import { acknowledgeTimer, cancelTimers } from '../../server/services/timers'
 import type { Context } from '../../server/utils/context'
 import { newId } from '../../server/utils/ids'
 import { toInstant } from '../../server/utils/rows'
@@ -29,6 +29,12 @@ export async function endPastWindows(ctx: Context): Promise<void> {
     for (const id of ended) await cancelTimers(m, 'application', id)
     m.audit({ action: 'windows.ended', subject: 'settings:shop', facts: { applications: ended } })
   })
+}
+
+/** The foreman has seen which windows were missed: those pieces are sanded again. */
+export async function acknowledgeMissed(ctx: Context): Promise<void> {
+  const missed = await ctx.db('timers').where({ kind: 'window-closes', state: 'fired' }).select<{ id: string }[]>('id')
+  for (const { id } of missed) await acknowledgeTimer(ctx, id)
 }
 
 /** The foreman has looked at whatever waits for him. */

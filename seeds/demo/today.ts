@@ -11,7 +11,7 @@ import { newId } from '../../server/utils/ids'
 import { toInstant } from '../../server/utils/rows'
 import { mutate } from '../../server/utils/transactions'
 import { Hands, type PotOrder } from './hands'
-import { boothOfMix, gunFor } from './jobs'
+import { boothOfMix, gunFor, moveJobs } from './jobs'
 import { loadLots, loadShop } from './load'
 import { booths, crews, type BoothKey, type GunKey } from './places'
 import { potLifeOf } from './pot'
@@ -131,6 +131,7 @@ class Today {
       await this.#stock(order)
       await this.#hands.mix(this.#ctx, order)
       await this.#hands.seal(this.#ctx, order)
+      await this.#startJob(step)
       if (ends !== 'late') await this.#hands.spray(this.#ctx, order, 'first-spray', reactiveAt + 9 * minuteMs)
     }
     return wanted.length
@@ -147,6 +148,7 @@ class Today {
     await this.#stock(order)
     const pot = await this.#hands.mix(this.#ctx, order)
     await this.#hands.seal(this.#ctx, order)
+    await this.#startJob(step)
     await this.#hands.spray(this.#ctx, order, 'first-spray', this.#now - 95 * minuteMs)
     await this.#hands.spray(this.#ctx, order, 'last-spray', this.#now - 66 * minuteMs)
     await this.#hands.empty(this.#ctx, order, pot, this.#now - 61 * minuteMs)
@@ -187,6 +189,13 @@ class Today {
     const mm2 = rack.reduce((sum, { areaM2 }) => sum + mm2Of(areaM2), 0)
     const gun = [...this.#shop.guns].find(([, id]) => id === step.gunId)?.[0] ?? gunFor(booth, loose.mix, mm2)
     return { ...common, potNumber: 1, potCount: racks.length, of: { stage: coatOf(step, gun), pieceIds: rack.map(({ id }) => id), mm2 } }
+  }
+
+  /** With its first coat a planned job runs. */
+  async #startJob(step: BenchStep | null): Promise<void> {
+    const planned = step && (await this.#ctx.db('jobs').where({ id: step.jobId, state: 'planned' }).first('id'))
+    if (!planned) return
+    await moveJobs(asUser(this.#ctx, the(this.#shop.users, 'BE')), { jobs: new Map([[step.jobId, 'running']]), steps: new Map() })
   }
 
   /** Books in what the pot needs and the shelves no longer hold. */
