@@ -31,6 +31,12 @@ describe('21.6 m², 4 320 g to spray, 60 g residue a pot', () => {
     expect(pots.map(({ totalG, startsAfterMin }) => [totalG, startsAfterMin])).toEqual([['2220', '0'], ['2220', '54']])
   })
 
+  it('counts the way from mixing to the first spray: 109 min would do for 108, 106 do not', () => {
+    const tight = { ...door, cupCapacityG: '5000', potLifeMin: '152' }
+    expect(calculatePots({ ...tight, mixToSprayMin: '0' }).pots).toHaveLength(1)
+    expect(calculatePots(tight).pots).toHaveLength(2)
+  })
+
   it('needs one where everything fits', () => {
     const { pots, boundBy } = calculatePots({ ...door, cupCapacityG: '5000', potLifeMin: '240' })
     expect(boundBy).toBe('one-pot')
