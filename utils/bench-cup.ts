@@ -1,10 +1,6 @@
 import type { BenchPart } from '#shared/utils/bench-tools'
+import { patternOf } from './batch-words'
 import type { ComponentRole } from './roles'
-
-/** The pattern of a component: base, hardener and thinner have their own, everything else the fourth. */
-export function patternOf(role: BenchPart['role']): ComponentRole {
-  return role === 'base' || role === 'hardener' || role === 'thinner' ? role : 'fourth'
-}
 
 /** Layers of the drawn cup, bottom to top in the order of the mix. Grams are decimal strings. */
 export function cupLayers(

@@ -28,6 +28,8 @@ export interface KeypadSource extends ScaleSource {
   readonly kind: 'typed'
   /** A plain decimal, or '' when the figure was wiped. `settled`: the person said that it is done. */
   type: (grams: string, settled?: boolean) => void
+  /** Forgets what was typed and tells nobody: the next component begins. */
+  reset: () => void
 }
 
 /** A weight counts after it stood still so long. */
@@ -79,5 +81,9 @@ export function keypadSource(clock: SourceClock): KeypadSource {
       return () => listeners.delete(listener)
     },
     type,
+    reset: () => {
+      callOff()
+      callOff = () => undefined
+    },
   }
 }
