@@ -1,5 +1,5 @@
 import type { Knex } from 'knex'
-import type { Mix, MixComponent, MixItem, MixListQuery, MixRevision, MixRevisionLine } from '#shared/schemas/mixes'
+import type { Mix, MixComponent, MixItem, MixListQuery, MixRevision, MixRevisionLine, PotLifeIs } from '#shared/schemas/mixes'
 import { decimalOf, decimalOrNull, isoOf } from '../utils/rows'
 import { whereContains } from './search'
 
@@ -27,6 +27,7 @@ interface ItemRow {
   basis: MixItem['basis']
   pot_life_min: string | null
   pot_life_reference_c: string | null
+  pot_life_table: string | null
 }
 
 type Filter = Pick<MixListQuery, 'materialId' | 'chemistry' | 'q' | 'archived'>
@@ -34,7 +35,7 @@ type Filter = Pick<MixListQuery, 'materialId' | 'chemistry' | 'q' | 'archived'>
 /** Mixes by code, with what their current revision says. */
 export async function listMixes(filter: Filter, page: { after: string | null, limit: number }, db: Db): Promise<MixItem[]> {
   const query = db('mixes as x').leftJoin('mix_revisions as r', 'r.id', 'x.current_revision_id')
-    .select<ItemRow[]>('x.*', 'r.number', 'r.basis', 'r.pot_life_min', 'r.pot_life_reference_c')
+    .select<ItemRow[]>('x.*', 'r.number', 'r.basis', 'r.pot_life_min', 'r.pot_life_reference_c', 'r.pot_life_table')
   if (filter.q) whereContains(query, ['x.code', 'x.name'], filter.q)
   if (filter.materialId) void query.whereExists(takes(db).where('c.material_id', filter.materialId))
   if (filter.chemistry) void query.whereExists(takes(db).where({ 'c.role': 'base', 'm.chemistry': filter.chemistry }))
@@ -65,6 +66,7 @@ function toItem(row: ItemRow, components: StoredComponent[]): MixItem {
     baseName: base?.materialName ?? null,
     chemistry: base?.chemistry ?? null,
     containsIsocyanates: components.some(component => component.containsIsocyanates),
+    potLifeIs: potLifeIs(row),
     potLifeMin: decimalOrNull(row.pot_life_min),
     potLifeReferenceC: decimalOrNull(row.pot_life_reference_c),
   }
@@ -157,11 +159,17 @@ export async function findRevisions(ids: readonly string[], db: Db): Promise<Sto
   return rows.map(row => toRevision(row, components.get(row.id) ?? []))
 }
 
+function potLifeIs(row: { pot_life_min: string | null, pot_life_table: string | null }): PotLifeIs {
+  if (row.pot_life_table !== null) return 'table'
+  return row.pot_life_min === null ? null : 'single'
+}
+
 const toRevision = (row: RevisionRow, components: StoredComponent[]): StoredRevision => ({
   id: row.id,
   mixId: row.mix_id,
   number: row.number,
   basis: row.basis,
+  potLifeIs: potLifeIs(row),
   potLifeMin: decimalOrNull(row.pot_life_min),
   potLifeReferenceC: decimalOrNull(row.pot_life_reference_c),
   potLifeTable: row.pot_life_table === null ? null : JSON.parse(row.pot_life_table) as MixRevision['potLifeTable'],
@@ -195,7 +203,7 @@ export async function listRevisions(mixId: string, db: Db): Promise<MixRevisionL
   return rows.map(row => ({
     id: row.id, number: row.number, basis: row.basis,
     parts: (components.get(row.id) ?? []).map(({ parts, partsMax }) => ({ parts, partsMax })),
-    potLifeMin: decimalOrNull(row.pot_life_min), notes: row.notes, createdAt: isoOf(row.created_at), createdByName: row.created_by_name,
+    potLifeIs: potLifeIs(row), potLifeMin: decimalOrNull(row.pot_life_min), notes: row.notes, createdAt: isoOf(row.created_at), createdByName: row.created_by_name,
     batchCount: count.get(row.id) ?? 0,
   }))
 }

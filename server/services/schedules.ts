@@ -66,6 +66,7 @@ export async function stepMixes(ctx: Context, steps: readonly StoredStep[]): Pro
       mix: {
         ...mix,
         parts: revision?.components.map(({ parts, partsMax }) => ({ parts, partsMax })) ?? [],
+        potLifeIs: revision?.potLifeIs ?? null,
         potLifeMin: revision?.potLifeMin ?? null,
         lateFromPct: revision?.lateFromPct ?? null,
         inductionMin: revision?.inductionMin ?? null,

@@ -4,6 +4,10 @@ import { DecimalText, Flag, InstantText, Uuid } from './fields'
 import { ComponentRole } from './material-roles'
 import { chemistryText } from './materials'
 
+/** Whether a pot life is one value at one temperature, a table of the data sheet, or there is none (null). */
+export const PotLifeIs = z.nullable(z.enum(['single', 'table']))
+export type PotLifeIs = z.infer<typeof PotLifeIs>
+
 export const MixListQuery = z.strictObject({
   materialId: z.optional(Uuid),
   chemistry: z.optional(chemistryText),
@@ -35,6 +39,7 @@ export const MixItem = z.object({
   baseName: z.nullable(z.string()),
   chemistry: z.nullable(z.string()),
   containsIsocyanates: z.boolean(),
+  potLifeIs: PotLifeIs,
   potLifeMin: z.nullable(DecimalText),
   potLifeReferenceC: z.nullable(DecimalText),
 })
@@ -70,6 +75,7 @@ export const MixRevision = z.object({
   mixId: Uuid,
   number: z.number(),
   basis: z.enum(['weight', 'volume']),
+  potLifeIs: PotLifeIs,
   potLifeMin: z.nullable(DecimalText),
   potLifeReferenceC: z.nullable(DecimalText),
   potLifeTable: z.nullable(z.array(PotLifePoint)),
@@ -104,6 +110,7 @@ export const MixRevisionLine = z.object({
   number: z.number(),
   basis: z.enum(['weight', 'volume']),
   parts: z.array(MixPart),
+  potLifeIs: PotLifeIs,
   potLifeMin: z.nullable(DecimalText),
   notes: z.nullable(z.string()),
   createdAt: InstantText,

@@ -1,7 +1,7 @@
 import * as z from 'zod/mini'
 import { WorkingLine, pageOf, pageQuery, searchText } from './common'
 import { DecimalText, Flag, InstantText, Uuid } from './fields'
-import { MixPart } from './mixes'
+import { MixPart, PotLifeIs } from './mixes'
 
 export const stepKinds = ['prepare', 'coat', 'sand', 'wait', 'inspect'] as const
 export const StepKind = z.enum(stepKinds)
@@ -57,6 +57,7 @@ export const StepMix = z.object({
   name: z.string(),
   revisionId: z.nullable(Uuid),
   parts: z.array(MixPart),
+  potLifeIs: PotLifeIs,
   potLifeMin: z.nullable(DecimalText),
   lateFromPct: z.nullable(DecimalText),
   inductionMin: z.nullable(DecimalText),
