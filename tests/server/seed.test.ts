@@ -10,6 +10,7 @@ import { eraseUnfinished, readDemoState } from '../../seeds/demo/state'
 import { openToday } from '../../seeds/demo/today'
 import { createKnex } from '../../server/database/connection'
 import { findPots } from '../../server/repositories/pots'
+import { readShop } from '../../server/repositories/settings'
 import { readBench } from '../../server/services/bench'
 import { latestClimate } from '../../server/services/climate'
 import { windowsAt } from '../../server/services/windows'
@@ -37,8 +38,11 @@ const count = async (table: string, where: (query: Knex.QueryBuilder) => void = 
   const row = await query.count<{ n: string }[]>({ n: '*' })
   return Number(row[0]?.n)
 }
-const rows = <T>(sql: string, bindings: readonly string[] = [], db: Knex = schema.db): Promise<T[]> =>
-  db.raw<[T[]]>(sql, [...bindings]).then(([found]) => found)
+async function rows<T>(sql: string, bindings: readonly string[] = [], db: Knex = schema.db): Promise<T[]> {
+  const [found] = await db.raw<[T[]]>(sql, [...bindings])
+  if (!found) throw new Error('the database gave no answer')
+  return found
+}
 
 beforeAll(async () => {
   schema = await openSchema(`seed_${randomUUID().slice(0, 8)}`)
@@ -127,7 +131,7 @@ describe('the shelves of the demo shop', () => {
     expect(expired.length).toBeGreaterThanOrEqual(1)
     expect(await rows('SELECT p.id FROM batch_pours p JOIN lots l ON l.id = p.lot_id WHERE DATE(p.at) > l.expires_on')).toEqual([])
     expect(await rows('SELECT id FROM lots WHERE expires_on BETWEEN ? AND ? + INTERVAL 14 DAY', [today, today])).not.toEqual([])
-    const low = await rows(`SELECT m.code FROM materials m JOIN lots l ON l.material_id = m.id AND l.expires_on >= ? JOIN lot_movements v ON v.lot_id = l.id
+    const low = await rows(`SELECT m.code, m.reorder_point_g FROM materials m JOIN lots l ON l.material_id = m.id AND l.expires_on >= ? JOIN lot_movements v ON v.lot_id = l.id
       GROUP BY m.id HAVING SUM(v.grams) < m.reorder_point_g`, [today])
     expect(low.length).toBeGreaterThanOrEqual(2)
     expect(await rows(`SELECT lot_id FROM lot_movements GROUP BY lot_id
@@ -244,19 +248,53 @@ describe('the shop that this suite runs on', () => {
 describe('making a first manager', () => {
   const run = promisify(execFile)
   const root = fileURLToPath(new URL('../..', import.meta.url))
-  const create = (password: string, args: readonly string[]) => run(process.execPath, ['--import', 'tsx', 'seeds/create-manager.ts', ...args], {
-    cwd: root, env: { ...process.env, POTBELL_MANAGER_PASSWORD: password },
-  })
+  const password = 'long enough for a shop'
+  const manager = ['--email', 'Ada@shop.example', '--name', 'Ada Maria Lind', '--shop', 'Lind', '--zone', 'Europe/Dublin']
+  let empty: Schema
+  beforeAll(async () => {
+    empty = await openSchema(`manager_${randomUUID().slice(0, 8)}`)
+  }, patience)
+  afterAll(() => empty.drop())
+
+  async function create(given: string, args: readonly string[]): Promise<{ code: number, stderr: string }> {
+    const [here] = await rows<{ name: string }>('SELECT DATABASE() AS name', [], empty.db)
+    const inside = (address: string | undefined) => {
+      const url = new URL(address ?? '')
+      url.pathname = `/${here?.name}`
+      return url.href
+    }
+    const env = {
+      ...process.env, DATABASE_URL: inside(process.env.DATABASE_URL), DATABASE_ADMIN_URL: inside(process.env.DATABASE_ADMIN_URL), POTBELL_MANAGER_PASSWORD: given,
+    }
+    return run(process.execPath, ['--import', 'tsx', 'seeds/create-manager.ts', ...args], { cwd: root, env })
+      .then(({ stderr }) => ({ code: 0, stderr }), (failure: { code: number, stderr: string }) => failure)
+  }
 
   it.each([
-    ['too short', 'short', ['--email', 'a@shop.example', '--name', 'Ada Lind']],
-    ['is missing', 'long enough for a shop', ['--name', 'Ada Lind']],
-    ['no e-mail address', 'long enough for a shop', ['--email', 'ada', '--name', 'Ada Lind']],
-    ['has people in it', 'long enough for a shop', ['--email', 'a@shop.example', '--name', 'Ada Lind']],
-  ])('is refused when something is %s', async (said, password, args) => {
-    const failure = await create(password, args).then(() => null, (error: { code: number, stderr: string }) => error)
-    expect(failure?.code).toBe(1)
-    expect(failure?.stderr).toContain(said === 'too short' ? 'at least 12 characters' : said)
-    expect(failure?.stderr).not.toContain(password)
-  })
+    ['at least 12 characters', 'short', manager],
+    ['--name is missing', password, ['--email', 'a@shop.example']],
+    ['--email is no e-mail address', password, ['--email', 'ada', '--name', 'Ada Lind']],
+    ['--zone is no time zone', password, [...manager.slice(0, -1), 'Europe/Nowhere']],
+    ['Unknown option', password, ['--nonsense']],
+  ])('is refused with "%s"', async (said, given, args) => {
+    const { code, stderr } = await create(given, args)
+    expect(code).toBe(1)
+    expect(stderr).toContain(said)
+    expect(stderr).not.toContain(given)
+    expect(stderr).not.toContain('    at ')
+    expect(await rows('SELECT id FROM users', [], empty.db)).toEqual([])
+  }, patience)
+
+  it('fills an empty shop with what it needs, once', async () => {
+    expect(await create(password, manager)).toMatchObject({ code: 0 })
+    const [user, ...others] = await empty.db('users').select<{ email: string, initials: string, role: string, password_hash: string, demo_password: number }[]>()
+    expect(others).toEqual([])
+    expect(user).toMatchObject({ email: 'ada@shop.example', initials: 'AL', role: 'manager', demo_password: 0 })
+    expect(await verifyPassword(user?.password_hash ?? '', password)).toBe(true)
+    expect(await readShop(empty.db)).toEqual({ name: 'Lind', zone: 'Europe/Dublin', demo: false })
+    expect(await rows('SELECT code FROM hazard_statements WHERE code = \'H226\'', [], empty.db)).toHaveLength(1)
+    expect((await verifyChain(empty.db)).ok).toBe(true)
+    expect((await create(password, manager)).stderr).toContain('has people in it already')
+    expect(await makeDemo({ admin: empty.admin, app: empty.db }, { weeks, say: () => undefined })).toEqual({ made: false, why: 'foreign' })
+  }, patience)
 })
