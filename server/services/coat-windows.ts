@@ -1,4 +1,5 @@
-import { overcoatWindow, type OvercoatWindow } from '#shared/engine/window'
+import { overcoatWindow } from '#shared/engine/window'
+import type { OvercoatWindow } from '#shared/engine/window-state'
 import type { JobStep } from '../repositories/draft-references'
 import { minutesMs } from './batch-sums'
 

@@ -1,5 +1,5 @@
 import type { Knex } from 'knex'
-import { windowState } from '#shared/engine/window'
+import { windowState } from '#shared/engine/window-state'
 import type { LiveWindow } from '#shared/schemas/live'
 import { toMs } from '#shared/utils/instant'
 import { findWindows, type OpenWindow, type WindowFilter } from '../repositories/windows'

@@ -5,6 +5,7 @@ import { print, readPositive } from './decimal'
 import { EngineError } from './error'
 import { MINUTE_MS, earlier, later, readDuration, readInstant, wholePart } from './instants'
 import { DEFAULT_HALVES_PER_C } from './pot-life'
+import type { OvercoatWindow } from './window-state'
 
 /** First and last moment of one application. Instants are whole epoch milliseconds. */
 export interface Sprayed {
@@ -21,17 +22,6 @@ export interface WindowInput extends Sprayed {
   workLeftMs?: number | undefined
 }
 
-export interface OvercoatWindow {
-  opensAt: number
-  closesAt: number | null
-  /** Null where it never closes and where it is empty. */
-  closingAt: number | null
-  /** Closes before it opens: to be said before the coat below is sprayed. */
-  empty: boolean
-}
-
-export type WindowState = 'too-early' | 'open' | 'closing' | 'missed'
-
 const CLOSING_AT_LEAST_MS = 5 * MINUTE_MS
 const CLOSING_AT_MOST_MS = 30 * MINUTE_MS
 
@@ -47,16 +37,6 @@ export function overcoatWindow(input: WindowInput): OvercoatWindow {
   const closesAt = input.firstSprayedAt + readDuration(input.maxMs, 'maxMs')
   const workLeftMs = readDuration(input.workLeftMs ?? 0, 'workLeftMs')
   return between(opensAt, closesAt, workLeftMs)
-}
-
-/**
- * *missed* from the close on, *closing* from `closingAt` on, *open* from the opening on. An empty window is too early
- * until it is missed.
- */
-export function windowState({ opensAt, closesAt, closingAt }: OvercoatWindow, now: number): WindowState {
-  if (closesAt !== null && now >= closesAt) return 'missed'
-  if (now < opensAt) return 'too-early'
-  return closingAt !== null && now >= closingAt ? 'closing' : 'open'
 }
 
 /** A coat on both faces and edges is several applications; together they run from the first to the last of them. */

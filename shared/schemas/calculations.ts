@@ -9,7 +9,8 @@ import { calculatePots } from '../engine/pots'
 import { workMinutes } from '../engine/pots-life'
 import { calculatePour } from '../engine/pour'
 import { calculateViscosity } from '../engine/viscosity'
-import { overcoatWindow, windowState } from '../engine/window'
+import { overcoatWindow } from '../engine/window'
+import { windowState } from '../engine/window-state'
 import { minutesToMs, toIso, toMs } from '../utils/instant'
 import {
   BatchCalculationAnswer,

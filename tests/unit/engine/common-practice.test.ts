@@ -5,7 +5,8 @@ import { D, sum } from '#shared/engine/decimal'
 import { hasPotLife, readMix } from '#shared/engine/mix'
 import type { MixInput } from '#shared/engine/mix'
 import { parseRatio } from '#shared/engine/ratio'
-import { coatWindows, overcoatWindow, windowState } from '#shared/engine/window'
+import { coatWindows, overcoatWindow } from '#shared/engine/window'
+import { windowState } from '#shared/engine/window-state'
 import { grainUm } from '#shared/reference/grits'
 
 /** Every figure in this file: common practice, no source. */

@@ -1,6 +1,7 @@
 import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
-import { coatWindows, overcoatWindow, spanOf, windowMinutesAt, windowState } from '#shared/engine/window'
+import { coatWindows, overcoatWindow, spanOf, windowMinutesAt } from '#shared/engine/window'
+import { windowState } from '#shared/engine/window-state'
 import { refusal, thrownBy } from './builders'
 
 const MIN = 60_000
