@@ -35,11 +35,15 @@ const pass = (minutes: number) => { live.time.now += minutes * minuteMs }
 const audited = async (action: string, id: string) =>
   (await live.admin('audit_entries').where({ action, subject: `timer:${id}` }).select('seq')).length
 
+/** Everything poured at one moment of the moved clock. */
+const pouredAt = (at: string, grams: string[]) =>
+  (poured(live.shop, grams) ?? []).map((one) => ({ ...one, pours: one.pours.map((pour) => ({ ...pour, at })) }))
+
 /** A sealed pot with two hours of life from now. */
 async function pot(): Promise<string> {
   const id = randomUUID()
   const at = new Date(live.time.now).toISOString()
-  const components = poured(live.shop, ['100', '50', '20']).map((one) => ({ ...one, pours: one.pours?.map((pour) => ({ ...pour, at })) ?? [] }))
+  const components = pouredAt(at, ['100', '50', '20'])
   await saveDraft(sprayer, id, draftBody(live.shop, { components, reactiveAt: at, plan: { totalG: '170', scaleDivisionG: '0.1' } }))
   await sealBatch(sprayer, { draftId: id })
   return id
@@ -64,7 +68,7 @@ describe('due timers', () => {
   it('fire once each when two processes run on one database', async () => {
     const other = new Station(live)
     try {
-      const timers = []
+      const timers: Timer[] = []
       for (let one = 0; one < 25; one++) timers.push(await free(`Once ${one}`))
       here.startTimers()
       other.startTimers()
@@ -119,7 +123,7 @@ describe('a pot', () => {
     await saveDraft(sprayer, id, draftBody(live.shop, { purpose: 'Shown' }))
     expect(await view(id)).toMatchObject({ stage: 'mixing', state: 'fresh', reactiveAt: null, endsAt: null, pouredG: '0', alarm: 'none', stepTitle: 'Sealer' })
     const at = new Date(live.time.now).toISOString()
-    const components = poured(live.shop, ['100', '50']).map((one) => ({ ...one, pours: one.pours?.map((pour) => ({ ...pour, at })) ?? [] }))
+    const components = pouredAt(at, ['100', '50'])
     await saveDraft(sprayer, id, draftBody(live.shop, { seq: 2, components, reactiveAt: at }))
     expect(await view(id)).toMatchObject({
       stage: 'mixing', state: 'fresh', pouredG: '150', reactiveAt: at, containsIsocyanates: true,
@@ -154,7 +158,7 @@ describe('a pot', () => {
   it('does not ring when it was emptied in time', async () => {
     const id = await pot()
     pass(60)
-    await closeBatch(sprayer, id, { leftoverG: '10', at: new Date(live.time.now).toISOString(), disposal: 'reactive waste', weighed: true })
+    await closeBatch(sprayer, id, { leftoverG: '10', at: new Date(live.time.now).toISOString(), disposal: 'reactive waste' })
     here.startTimers()
     pass(120)
     const marker = await free('After the end', 1)
@@ -204,7 +208,7 @@ describe('the bell of a pot', () => {
   it('stops for good when the pot is emptied', async () => {
     const id = await pot()
     const timer = await ring(id)
-    await closeBatch(live.asScreen(live.shop.boothId, here.hub.wake), id, { leftoverG: '0', at: new Date(live.time.now).toISOString(), disposal: 'reactive waste', weighed: true })
+    await closeBatch(live.asScreen(live.shop.boothId, here.hub.wake), id, { leftoverG: '0', at: new Date(live.time.now).toISOString(), disposal: 'reactive waste' })
     await ear.until(() => timerTold(timer.id, 'done').length === 1)
     expect((await readLive(sprayer, undefined)).alarms.map((alarm) => alarm.id)).not.toContain(timer.id)
     await expect(silenceTimer(sprayer, timer.id, { reason: null })).rejects.toMatchObject({ status: 422, code: 'timer-ended' })
@@ -252,7 +256,7 @@ describe('a timer of one\'s own', () => {
   })
 
   it('is listed page by page in the order of its instant', async () => {
-    const made = []
+    const made: Timer[] = []
     for (const minutes of [50, 40, 60]) made.push(await free(`Paged ${minutes}`, minutes, live.shop.otherBoothId))
     const found: string[] = []
     let cursor: string | undefined
