@@ -9,6 +9,8 @@ export interface BenchHazard {
   part: BenchPart
   /** What to put on for mixing, as the safety data sheet says it; one entry a tap. */
   mixing: string[]
+  /** All that the sheet says of it. */
+  mixingWords: string
   /** What to wear for spraying, as the sheet says it; null where it is silent. */
   spraying: string | null
 }
@@ -24,6 +26,7 @@ export function hazardOf(part: BenchPart): BenchHazard | null {
     kind,
     part,
     mixing: words === null ? SILENT_SHEET : sentenceParts(words),
+    mixingWords: (words ?? 'as the safety data sheet says').replace(/\.$/, ''),
     spraying: part.material.protectionSpraying,
   }
 }
@@ -34,9 +37,9 @@ function kindOf({ material, role }: BenchPart): HazardKind | null {
   return /nitro/.test(material.chemistry) ? 'nitrocellulose' : null
 }
 
-/** `A2-P3 mask, nitrile gloves, eye protection.` → three things to put on, in the sheet's own words. */
+/** `A2-P3 mask, nitrile gloves, eye protection.` → three things to put on, in the sheet's own words; what points to the sheet is none. */
 export function sentenceParts(words: string): string[] {
-  return words.split(/[,;]/).map(part => part.trim().replace(/\.$/, '')).filter(part => part !== '')
+  return words.split(/[,;]/).map(part => part.trim().replace(/\.$/, '')).filter(part => part !== '' && !/data sheet/i.test(part))
 }
 
 /** The hazards of a mix, one of a kind, in its order. */

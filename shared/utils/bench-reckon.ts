@@ -192,12 +192,16 @@ function potOf(
   return { number, plan, batch, areaM2: batch.areaM2, pieceIds, span, startsAfterMin }
 }
 
-/** The smallest cup that takes everything at once; where none does, the one that needs the fewest pots. */
+/** The smallest cup that takes everything at once, the largest where none does. A cup that was chosen by hand stays. */
 export function withFittingCup(setup: BenchSetup, snapshot: BenchSnapshot): BenchSetup {
+  if (setup.cupChosen) return setup
   const cups = [...snapshot.cups].sort((a, b) => new D(a.fillLineMl).comparedTo(b.fillLineMl))
-  const tried = cups.map(({ id }) => ({ ...setup, cupId: id })).map(one => ({ setup: one, pots: reckon(one, snapshot).pots.length }))
-  const best = tried.filter(({ pots }) => pots > 0).reduce<(typeof tried)[number] | null>((least, next) => (least === null || next.pots < least.pots ? next : least), null)
-  return best?.setup ?? { ...setup, cupId: cups.at(-1)?.id ?? setup.cupId }
+  const last = cups.at(-1)
+  if (last === undefined) return setup
+  const { whole, tools } = reckon({ ...setup, cupId: last.id }, snapshot)
+  const holds = (fillLineMl: string): boolean => whole !== null && tools !== null && tools.densityGPerMl !== null
+    && new D(fillLineMl).times(tools.densityGPerMl).gte(whole.targetTotalG)
+  return { ...setup, cupId: (cups.find(({ fillLineMl }) => holds(fillLineMl)) ?? last).id }
 }
 
 /** Today's list with what can be coated now in front; within a kind its order never changes. */

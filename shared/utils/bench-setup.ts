@@ -27,6 +27,8 @@ export interface BenchSetup {
   residueG: string
   paceM2PerH: string
   cupId: string
+  /** The cup was chosen by hand; else the smallest that fits is taken. */
+  cupChosen: boolean
   scaleId: string
   boothId: string
 }
@@ -60,6 +62,7 @@ export function blankSetup(snapshot: BenchSnapshot, home: BenchHome): BenchSetup
     residueG: '',
     paceM2PerH: '',
     cupId: snapshot.cups[0]?.id ?? '',
+    cupChosen: false,
     scaleId: scale?.id ?? '',
     boothId: booth?.id ?? '',
   }

@@ -52,5 +52,7 @@ describe('reckon', () => {
   it('takes the smallest cup that holds everything', () => {
     expect(withFittingCup(setup({ areaM2: '2' }), snapshot()).cupId).toBe(id(46))
     expect(withFittingCup(setup(), snapshot()).cupId).toBe(id(45))
+    expect(withFittingCup(setup({ areaM2: '200' }), snapshot()).cupId).toBe(id(45))
+    expect(withFittingCup(setup({ areaM2: '2', cupChosen: true }), snapshot()).cupId).toBe(id(45))
   })
 })
