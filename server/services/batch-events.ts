@@ -14,7 +14,7 @@ import { mutate, type Mutation } from '../utils/transactions'
 import { windowAfter } from './coat-windows'
 import { notAfter } from './device-clock'
 import { publishPot } from './pot-view'
-import { cancelTimers, setWindowTimers } from './timers'
+import { cancelTimers, endWindowsUnder, setWindowTimers } from './timers'
 
 /**
  * First or last spray from a pot, at the bench or at the booth's screen. The last spray of a pot that belongs to a
@@ -134,6 +134,7 @@ async function writeCoat(ctx: Context, m: Mutation, pot: CurrentBatch, gunId: st
     details: { firstAssumed: pot.firstSprayAt === null, purpose: opened?.purpose ?? null, empty: opened?.window.empty ?? null },
   }, m.now, m.trx)
   if (opened) await setWindowTimers(m, { applicationId: id, boothId: pot.boothId, label: windowLabel(step, coatNumber), ...instantsOf(opened.window) })
+  else await endWindowsUnder(m, id)
   return id
 }
 
