@@ -46,7 +46,7 @@ export interface HistoryReport {
 /** Materials that nobody orders any more, so that shelves run low. */
 const notReordered = new Set(['S-640', 'U-905'])
 /** How many pots a booth begins on a day. */
-const dailyPots: Record<BoothKey, [number, number]> = { 1: [2, 4], 2: [1, 2], 3: [1, 2] }
+const dailyPots: Record<BoothKey, [number, number]> = { 1: [2, 3], 2: [1, 2], 3: [1, 2] }
 const reviewsStayOpenDays = 9
 
 interface Action {
@@ -181,7 +181,7 @@ export class History {
   #plan(day: Day, until: number): PlannedPot[] {
     const quotas = new Map(booths.map(({ key }) => [key, this.#random.between(...dailyPots[key])]))
     const pots = this.#yard.plan(day, quotas, until)
-    if (!this.#random.inThousand(550)) return pots
+    if (!this.#random.inThousand(480)) return pots
     const loose = looseMixes[this.#looseSoFar % looseMixes.length]
     if (!loose) return pots
     this.#looseSoFar++
