@@ -73,7 +73,7 @@ export const apiRoutes: readonly ApiRoute[] = [
   post('/api/batches', 'batches:create', 'Seals a batch into the record', Batch, { body: BatchCreateBody }),
   get('/api/batches/{id}', 'batches:read', 'A batch', Batch, { params: BatchParams }),
   post('/api/batches/{id}/events', 'batches:event', 'First spray, last spray or a note', Batch, { params: BatchParams, body: BatchEventBody }),
-  post('/api/batches/{id}/close', 'batches:close', 'A pot is emptied', Batch, { params: BatchParams, body: BatchCloseBody }),
+  post('/api/batches/{id}/close', 'batches:close', 'A pot is emptied', Batch, { params: BatchParams, body: BatchCloseBody, status: 200 }),
   get('/api/timers', 'timers:read', 'Timers', TimerList, { query: TimerListQuery }),
   post('/api/timers', 'timers:create', 'Sets a free timer', Timer, { body: TimerCreateBody }),
   post('/api/timers/{id}/silence', 'timers:silence', 'Ten minutes of quiet', Timer, { ...byId, body: TimerSilenceBody, status: 200 }),
