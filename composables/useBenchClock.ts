@@ -1,14 +1,13 @@
-import { useIntervalFn } from '@vueuse/core'
-import { computed, ref, type ComputedRef } from 'vue'
+import { computed, type ComputedRef } from 'vue'
+import { useNow } from '~/composables/useNow'
 import { useBenchStore } from '~/stores/bench'
 import { clock } from '~/utils/format'
 
-/** The server's time, ticking once a second for what is counted on the screen. */
+/** The one clock of all screens, for what is counted at the bench; `at` spells an instant as the shop's clock time. */
 export function useBenchClock(): { now: ComputedRef<number>, text: ComputedRef<string>, at: (ms: number) => string } {
   const bench = useBenchStore()
-  const tick = ref(Date.now())
-  useIntervalFn(() => { tick.value = Date.now() }, 1000)
-  const now = computed(() => tick.value + (bench.offsetMs ?? 0))
+  const tick = useNow()
+  const now = computed(() => tick.value + bench.startOffsetMs)
   const at = (ms: number): string => clock(ms, bench.zone)
   return { now, text: computed(() => at(now.value)), at }
 }

@@ -24,6 +24,8 @@ export interface BenchSnapshotKept {
   snapshot: BenchSnapshot
   /** By the server's clock, epoch ms. */
   at: number
+  /** The server's clock less this tablet's, ms. */
+  offsetMs: number | null
 }
 
 interface BenchDb extends DBSchema {

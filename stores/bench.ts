@@ -13,6 +13,7 @@ import { shopDate } from '#shared/utils/zone'
 import { useBenchDisk, type BenchPlanKept } from '~/composables/useBenchDisk'
 import { useOutboxStore } from '~/stores/outbox'
 import { useSessionStore } from '~/stores/session'
+import { useTimersStore } from '~/stores/timers'
 import { callApi, toFailure } from '~/utils/api'
 
 /** Drafts go out this long after the last change; at steps and at the start of a pot life at once. */
@@ -22,6 +23,7 @@ const SAVE_AFTER_MS = 1_500
 export const useBenchStore = defineStore('bench', () => {
   const session = useSessionStore()
   const outbox = useOutboxStore()
+  const timers = useTimersStore()
   const disk = useBenchDisk()
 
   const status = ref<'loading' | 'ready' | 'error'>('loading')
@@ -31,8 +33,10 @@ export const useBenchStore = defineStore('bench', () => {
   const snapshotAt = ref<number | null>(null)
   /** The list is from the tablet's disk: the server did not answer. */
   const isOffline = ref(false)
+  /** The clock's offset of the last time online, for a tablet that starts without network. */
+  const keptOffsetMs = ref<number | null>(null)
   /** The server's clock less this tablet's, ms; null while it was never measured. */
-  const offsetMs = ref<number | null>(null)
+  const offsetMs = computed(() => timers.offsetMs ?? keptOffsetMs.value)
   const setup = ref<BenchSetup | null>(null)
   const plan = shallowRef<BenchPlanKept | null>(null)
   const run = shallowRef<BenchRun | null>(null)
@@ -45,7 +49,9 @@ export const useBenchStore = defineStore('bench', () => {
   const reckoning = computed(() => (setup.value && snapshot.value ? reckon(setup.value, snapshot.value) : null))
   const tools = computed(() => (run.value && snapshot.value ? benchTools(run.value.tools, snapshot.value) : null))
 
-  const now = (): number => Date.now() + (offsetMs.value ?? 0)
+  /** Added to what the one clock of all screens says while that was not measured yet. */
+  const startOffsetMs = computed(() => (timers.offsetMs === null ? keptOffsetMs.value ?? 0 : 0))
+  const now = (): number => timers.serverNow() + startOffsetMs.value
   const today = (): string => shopDate(now(), zone.value)
 
   /** Reads what was left on the tablet, then the shop's present state. */
@@ -72,13 +78,12 @@ export const useBenchStore = defineStore('bench', () => {
   }
 
   async function refresh(): Promise<void> {
-    const askedAt = Date.now()
     try {
       const answer = await callApi<BenchSnapshot>('/api/bench/snapshot')
-      const answeredAt = Date.now()
-      offsetMs.value = Date.parse(answer.serverNow) - (askedAt + answeredAt) / 2
-      take(answer, now(), false)
-      await disk.writeSnapshot({ snapshot: answer, at: now() })
+      await timers.measureClock()
+      const at = Date.parse(answer.serverNow)
+      take(answer, at, false)
+      await disk.writeSnapshot({ snapshot: answer, at, offsetMs: offsetMs.value })
     } catch (error) {
       await readLast(toFailure(error).message, toFailure(error).passing)
     }
@@ -88,7 +93,10 @@ export const useBenchStore = defineStore('bench', () => {
     const kept = isPassing ? await disk.readSnapshot() : undefined
     failure.value = message
     if (kept === undefined) status.value = snapshot.value === null ? 'error' : status.value
-    else take(kept.snapshot, kept.at, true)
+    else {
+      keptOffsetMs.value = kept.offsetMs
+      take(kept.snapshot, kept.at, true)
+    }
   }
 
   function take(next: BenchSnapshot, at: number, offline: boolean): void {
@@ -158,7 +166,7 @@ export const useBenchStore = defineStore('bench', () => {
   })
 
   return {
-    status, failure, snapshot, snapshotAt, isOffline, offsetMs, setup, plan, run, logged, zone, home, reckoning, tools,
+    status, failure, snapshot, snapshotAt, isOffline, offsetMs, startOffsetMs, setup, plan, run, logged, zone, home, reckoning, tools,
     now, today, load, refresh, changeSetup, change, begin, seal, leave,
   }
 })

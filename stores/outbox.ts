@@ -74,7 +74,7 @@ export const useOutboxStore = defineStore('outbox', () => {
   async function setAside(entry: OutboxEntry, error: unknown): Promise<void> {
     const { status, message } = toFailure(error)
     unreachable.value = status === 0
-    const kept = passes(status) ? waited(entry, Date.now()) : refused(entry, status, message)
+    const kept = passes(status) ? waited(entry, Date.now(), Math.random()) : refused(entry, status, message)
     entries.value = entries.value.map(other => (other.id === entry.id ? kept : other))
     await disk.writeOutbox([kept], [])
   }

@@ -1,3 +1,5 @@
+import { backoffMs } from './backoff'
+
 /** Something that waits to be sent. It is written here first, online too, so that there is one path. */
 export interface OutboxEntry {
   id: string
@@ -15,14 +17,6 @@ export interface OutboxEntry {
   nextAt: number
   /** Refused by the server: it does not go by itself any more. */
   refusal: { status: number, message: string } | null
-}
-
-const FIRST_WAIT_MS = 1_000
-const LONGEST_WAIT_MS = 30_000
-
-/** How long to wait after so many failures: doubling from one second, at most half a minute. */
-export function backoffMs(tries: number): number {
-  return Math.min(LONGEST_WAIT_MS, FIRST_WAIT_MS * 2 ** Math.max(0, tries - 1))
 }
 
 /** A newer draft takes the place of one that was not sent yet: only the latest is worth sending. */
@@ -55,10 +49,13 @@ export function nextDueAt(entries: readonly OutboxEntry[]): number | null {
   return due.length === 0 ? null : Math.min(...due)
 }
 
-/** A failure that will pass: the same request again, later. */
-export function waited(entry: OutboxEntry, now: number): OutboxEntry {
+/**
+ * A failure that will pass: the same request again, later.
+ * @param random 0 to 1, so that the tablets of a shop do not all come back at once
+ */
+export function waited(entry: OutboxEntry, now: number, random: number): OutboxEntry {
   const tries = entry.tries + 1
-  return { ...entry, tries, nextAt: now + backoffMs(tries) }
+  return { ...entry, tries, nextAt: now + backoffMs(tries, random) }
 }
 
 export function refused(entry: OutboxEntry, status: number, message: string): OutboxEntry {
