@@ -5,7 +5,7 @@ import * as z from 'zod'
 import { isZone } from '#shared/utils/zone'
 import { databaseClock } from '../server/utils/clock'
 import { newId } from '../server/utils/ids'
-import { hashPassword } from '../server/utils/password'
+import { hashSecret } from '../server/utils/password'
 import { toInstant } from '../server/utils/rows'
 import { mutate } from '../server/utils/transactions'
 import { command, Refused, withConnections, type Connections } from './connections'
@@ -79,7 +79,7 @@ async function create({ admin, app }: Connections, manager: Manager): Promise<vo
   // A demo that was cut off before its people came must not be taken for this shop, and erased with it, later on.
   if ((await readDemoState(admin)) === 'unfinished') await eraseUnfinished(admin)
   await seedReference(admin)
-  const passwordHash = await hashPassword(manager.password)
+  const passwordHash = await hashSecret(manager.password)
   const ctx = { db: app, clock: databaseClock, principal: { kind: 'system', user: null, device: null }, requestId: newId(), wake: () => undefined } as const
   await mutate(ctx, async (m) => {
     const born = { created_at: toInstant(m.now), updated_at: toInstant(m.now) }

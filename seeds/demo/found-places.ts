@@ -1,7 +1,7 @@
 import { demoPassword } from '#shared/utils/demo'
 import { shopDate } from '#shared/utils/zone'
 import { newId } from '../../server/utils/ids'
-import { hashPassword } from '../../server/utils/password'
+import { hashSecret } from '../../server/utils/password'
 import { toInstant } from '../../server/utils/rows'
 import type { Mutation } from '../../server/utils/transactions'
 import { booths, guns, mixingCups, people, scales, shop, workingHours } from './places'
@@ -22,7 +22,7 @@ export async function foundSettings(m: Mutation): Promise<void> {
 
 /** The people; those who may sign in all have the demo's public password. */
 export async function foundPeople(m: Mutation): Promise<DemoShop['users']> {
-  const hashes = await Promise.all(people.map(({ signsIn }) => (signsIn ? hashPassword(demoPassword) : null)))
+  const hashes = await Promise.all(people.map(({ signsIn }) => (signsIn ? hashSecret(demoPassword) : null)))
   const users = new Map(people.map(({ key, email, name, role }) =>
     [key as string, { id: newId(), role, name, initials: key, email, sessionId: '' }]))
   await m.trx('users').insert(people.map((person, index) => ({

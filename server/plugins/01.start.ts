@@ -10,7 +10,7 @@ import { createLog } from '../utils/log'
 export default defineNitroPlugin((nitro) => {
   const config = readConfig(process.env)
   const log = createLog(config.logLevel)
-  const db = createKnex(config.databaseUrl, { poolMax: config.poolMax })
+  const db = createKnex(config.databaseUrl, { poolMax: config.poolMax, log })
   const clock = config.testClock ? movableClock : databaseClock
   const live = startLive({ db, clock, log, redisUrl: config.redisUrl })
   setApp({ config, db, clock, hub: live.hub, log })

@@ -8,7 +8,7 @@ import { forbidden, Refusal } from '../utils/errors'
 import { sha256 } from '../utils/hash'
 import { newId } from '../utils/ids'
 import { signInLimit } from '../utils/limits'
-import { verifyNobody, verifyPassword } from '../utils/password'
+import { verifyNobody, verifySecret } from '../utils/password'
 import { isoOf, toInstant } from '../utils/rows'
 import { mutate } from '../utils/transactions'
 
@@ -89,7 +89,7 @@ async function checkPassword(ctx: Context, { email, password }: SignInBody) {
   const limit = signInLimit(ctx.db, email, ctx.principal.device?.id ?? null)
   await limit.consume()
   const user = await findSignInUser(email, ctx.db)
-  const right = user?.password_hash ? await verifyPassword(user.password_hash, password) : await verifyNobody(password)
+  const right = user?.password_hash ? await verifySecret(user.password_hash, password) : await verifyNobody(password)
   if (!user || !right) throw wrong()
   await limit.clear()
   return user

@@ -12,22 +12,22 @@ const gate = new Gate(2)
 let nobody: Promise<string> | null = null
 
 /** Hashes a password or PIN with a salt of its own, in PHC form. */
-export function hashPassword(password: string): Promise<string> {
+export function hashSecret(password: string): Promise<string> {
   return gate.run(() => scrypt.make(password))
 }
 
 /**
  * Whether the password is the one that was hashed. A hash that is not scrypt's fits no password.
- * @param hash in PHC form, as `hashPassword` gave it
+ * @param hash in PHC form, as `hashSecret` gave it
  */
-export function verifyPassword(hash: string, password: string): Promise<boolean> {
+export function verifySecret(hash: string, password: string): Promise<boolean> {
   return gate.run(async () => scrypt.isValidHash(hash) && scrypt.verify(hash, password))
 }
 
 /** Spends what checking a password costs and says no, so that the time of an answer does not tell who is known. */
 export async function verifyNobody(password: string): Promise<false> {
-  nobody ??= hashPassword(randomBytes(32).toString('base64'))
-  await verifyPassword(await nobody, password)
+  nobody ??= hashSecret(randomBytes(32).toString('base64'))
+  await verifySecret(await nobody, password)
   return false
 }
 

@@ -17,7 +17,7 @@ import { windowsAt } from '../../server/services/windows'
 import { verifyChain } from '../../server/utils/audit'
 import { toldClock } from '../../server/utils/clock'
 import type { Context } from '../../server/utils/context'
-import { verifyPassword } from '../../server/utils/password'
+import { verifySecret } from '../../server/utils/password'
 import { openSchema, type Schema } from './support/schema'
 
 const minuteMs = 60_000
@@ -84,7 +84,7 @@ describe('making the demo shop', () => {
     for (const { email } of demoSignIns) {
       const user = users.find((one) => one.email === email)
       expect(user?.demo_password).toBe(1)
-      expect(await verifyPassword(user?.password_hash ?? '', demoPassword)).toBe(true)
+      expect(await verifySecret(user?.password_hash ?? '', demoPassword)).toBe(true)
     }
     const others = users.filter(({ email }) => !demoSignIns.some((one) => one.email === email))
     expect(others.length).toBeGreaterThanOrEqual(3)
@@ -290,7 +290,7 @@ describe('making a first manager', () => {
     const [user, ...others] = await empty.db('users').select<{ email: string, initials: string, role: string, password_hash: string, demo_password: number }[]>()
     expect(others).toEqual([])
     expect(user).toMatchObject({ email: 'ada@shop.example', initials: 'AL', role: 'manager', demo_password: 0 })
-    expect(await verifyPassword(user?.password_hash ?? '', password)).toBe(true)
+    expect(await verifySecret(user?.password_hash ?? '', password)).toBe(true)
     expect(await readShop(empty.db)).toEqual({ name: 'Lind', zone: 'Europe/Dublin', demo: false })
     expect(await rows('SELECT code FROM hazard_statements WHERE code = \'H226\'', [], empty.db)).toHaveLength(1)
     expect((await verifyChain(empty.db)).ok).toBe(true)

@@ -1,12 +1,12 @@
 import { Scrypt } from '@adonisjs/hash/drivers/scrypt'
 import { describe, expect, it } from 'vitest'
-import { hashPassword, needsRehash, verifyNobody, verifyPassword } from '../../../server/utils/password'
+import { hashSecret, needsRehash, verifyNobody, verifySecret } from '../../../server/utils/password'
 
 const password = 'a pot has a life of its own'
 
 describe('passwords', () => {
   it('are kept as scrypt with the agreed costs and a salt of their own', async () => {
-    const [first, second] = await Promise.all([hashPassword(password), hashPassword(password)])
+    const [first, second] = await Promise.all([hashSecret(password), hashSecret(password)])
     expect(first).toMatch(/^\$scrypt\$n=32768,r=8,p=3\$[^$]{20,}\$[^$]{80,}$/)
     expect(second).not.toBe(first)
     expect(first.length).toBeLessThanOrEqual(255)
@@ -14,27 +14,27 @@ describe('passwords', () => {
   })
 
   it('fit their own hash and no other word does', async () => {
-    const hash = await hashPassword(password)
-    expect(await verifyPassword(hash, password)).toBe(true)
-    expect(await verifyPassword(hash, `${password} `)).toBe(false)
-    expect(await verifyPassword(hash, '')).toBe(false)
+    const hash = await hashSecret(password)
+    expect(await verifySecret(hash, password)).toBe(true)
+    expect(await verifySecret(hash, `${password} `)).toBe(false)
+    expect(await verifySecret(hash, '')).toBe(false)
   })
 
   it.each(['', 'plain', '$scrypt$n=1$x$y', '$argon2id$v=19$m=65536,t=3,p=4$c2FsdA$aGFzaA'])(
     'never fit what is no hash of ours: %j',
-    async (hash) => expect(await verifyPassword(hash, hash)).toBe(false),
+    async (hash) => expect(await verifySecret(hash, hash)).toBe(false),
   )
 
   it('are asked to be hashed anew when the costs have risen', async () => {
     const cheap = await new Scrypt({ cost: 16384, blockSize: 8, parallelization: 1 }).make(password)
     expect(needsRehash(cheap)).toBe(true)
-    expect(await verifyPassword(cheap, password)).toBe(true)
-    expect(needsRehash(await hashPassword(password))).toBe(false)
+    expect(await verifySecret(cheap, password)).toBe(true)
+    expect(needsRehash(await hashSecret(password))).toBe(false)
     expect(needsRehash('plain')).toBe(true)
   })
 
   it('of nobody are refused in about the time of a real refusal', async () => {
-    const hash = await hashPassword(password)
+    const hash = await hashSecret(password)
     await verifyNobody(password)
     const spent = async (check: () => Promise<boolean>) => {
       const start = process.cpuUsage()
@@ -42,7 +42,7 @@ describe('passwords', () => {
       const { user, system } = process.cpuUsage(start)
       return user + system
     }
-    const known = await spent(() => verifyPassword(hash, 'wrong'))
+    const known = await spent(() => verifySecret(hash, 'wrong'))
     const unknown = await spent(() => verifyNobody('wrong'))
     expect(unknown / known).toBeGreaterThan(0.5)
     expect(unknown / known).toBeLessThan(2)
