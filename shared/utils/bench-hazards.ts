@@ -1,7 +1,7 @@
 import type { BenchPart } from './bench-tools'
 
 /** What calls for a word before it is opened. */
-export type HazardKind = 'isocyanates' | 'peroxide' | 'nitrocellulose'
+type HazardKind = 'isocyanates' | 'peroxide' | 'nitrocellulose'
 
 export interface BenchHazard {
   kind: HazardKind
@@ -38,7 +38,7 @@ function kindOf({ material, role }: BenchPart): HazardKind | null {
 }
 
 /** `A2-P3 mask, nitrile gloves, eye protection.` → three things to put on, in the sheet's own words; what points to the sheet is none. */
-export function sentenceParts(words: string): string[] {
+function sentenceParts(words: string): string[] {
   return words.split(/[,;]/).map(part => part.trim().replace(/\.$/, '')).filter(part => part !== '' && !/data sheet/i.test(part))
 }
 

@@ -102,7 +102,7 @@ function earlierG(run: BenchRun, index: number): InstanceType<typeof D> {
 }
 
 /** What a correction asks of one component: add, pour or leave. Grams. */
-export interface CorrectionLine {
+interface CorrectionLine {
   index: number
   part: BenchPart
   inCupG: string
@@ -218,9 +218,4 @@ export function targetWorking(tools: BenchTools, run: BenchRun, index: number, j
     { what: 'most allowed', formula: `${judged.targetG} g + ${print(component.tolerancePct)} %`, value: judged.highG, unit: 'g' },
     { what: 'what the scale can show', formula: '± half a division and its own error', value: judged.uncertaintyG, unit: 'g' },
   ]
-}
-
-/** Grams that everything planned for the cup adds up to now, each target as it stands. */
-export function plannedG(answer: PourAnswer): string {
-  return print(sum(answer.components.map(({ targetG }) => new D(targetG))))
 }

@@ -4,7 +4,7 @@ import type { BenchTools } from './bench-tools'
 import { addMinutes, minutesToMs, toMs } from './instant'
 
 /** Instants of a pot, epoch milliseconds by the server's clock. */
-export interface BenchPotTimes {
+interface BenchPotTimes {
   startsAt: number
   lateAt: number
   endsAt: number

@@ -2,7 +2,7 @@ import { D } from '../engine/decimal'
 import type { BenchLot, BenchSnapshot } from '../schemas/bench'
 
 /** Why a lot is not poured; null where it may be. */
-export type LotRefusal = 'wrong-material' | 'out-of-date' | 'empty' | 'unknown'
+type LotRefusal = 'wrong-material' | 'out-of-date' | 'empty' | 'unknown'
 
 /** Lots of a material that may be poured, the one that expires first in front; those without a date last. */
 export function offeredLots(snapshot: BenchSnapshot, materialId: string, today: string): BenchLot[] {

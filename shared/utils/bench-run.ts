@@ -10,10 +10,10 @@ import type { ScaleReading, ScaleSourceKind } from './bench-scale'
 import type { BenchTools, ToolChoice } from './bench-tools'
 import { toIso } from './instant'
 
-export type BenchStage = 'stir' | 'pour' | 'stand' | 'label' | 'logged'
+type BenchStage = 'stir' | 'pour' | 'stand' | 'label' | 'logged'
 
 /** One thing to do while pouring. `round` 0 is the pour as planned, 1 and on what a correction added. */
-export type BenchWalkStep = { kind: 'pour', index: number, round: number } | { kind: 'stir' }
+type BenchWalkStep = { kind: 'pour', index: number, round: number } | { kind: 'stir' }
 
 /** One weighing that is done with. Grams a plain decimal, `at` ISO by the server's clock. */
 export interface BenchPour {
@@ -26,7 +26,7 @@ export interface BenchPour {
 }
 
 /** What the scale reads of the component at hand, since the last tare. */
-export interface BenchReading {
+interface BenchReading {
   grams: string
   steady: boolean
   /** ISO by the server's clock; null before the first reading. */
@@ -200,7 +200,7 @@ export function baseStirred(run: BenchRun): BenchRun {
 }
 
 /** Where the tablet's clock and the server's stand: `at` by the server, `deviceAt` as the tablet shows it. Epoch ms. */
-export interface BenchMoment {
+interface BenchMoment {
   at: number
   deviceAt: number
 }

@@ -33,10 +33,10 @@ export interface KeypadSource extends ScaleSource {
 }
 
 /** A weight counts after it stood still so long. */
-export const STEADY_MS = 1000
+const STEADY_MS = 1000
 
 /** The clock and the timer that a source runs on, handed in so that a test can hold them. */
-export interface SourceClock {
+interface SourceClock {
   now: () => number
   /** Calls back once after so many milliseconds; answers the function that calls it off. */
   after: (ms: number, call: () => void) => () => void

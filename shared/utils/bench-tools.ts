@@ -85,7 +85,7 @@ function partsOf(mix: BenchMix, snapshot: BenchSnapshot): BenchPart[] | null {
 }
 
 /** The mix as the arithmetic takes it; components keep the order of the revision. */
-export function mixInput(mix: Pick<BenchMix, 'basis'>, parts: readonly BenchPart[]): MixInput {
+function mixInput(mix: Pick<BenchMix, 'basis'>, parts: readonly BenchPart[]): MixInput {
   return {
     basis: mix.basis,
     components: parts.map(part => ({
@@ -110,7 +110,7 @@ function inGrams(ml: string, densityGPerMl: string | null): string | null {
 }
 
 /** What was measured of the pot: °C of the air and of the material in the cup, null where not measured. */
-export interface Warmth {
+interface Warmth {
   airC: string | null
   materialC: string | null
 }
