@@ -13,14 +13,14 @@ export interface BenchPlanKept {
 }
 
 /** What the bench must find again after a reload or a crash. */
-export interface BenchKept {
+interface BenchKept {
   userId: string
   setup: BenchSetup
   plan: BenchPlanKept | null
   run: BenchRun | null
 }
 
-export interface BenchSnapshotKept {
+interface BenchSnapshotKept {
   snapshot: BenchSnapshot
   /** By the server's clock, epoch ms. */
   at: number

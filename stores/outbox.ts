@@ -5,7 +5,7 @@ import { newUuid } from '#shared/utils/uuid'
 import { useBenchDisk } from '~/composables/useBenchDisk'
 import { callApi, toFailure } from '~/utils/api'
 
-export type OutboxWork = Pick<OutboxEntry, 'subject' | 'kind' | 'method' | 'path' | 'body'>
+type OutboxWork = Pick<OutboxEntry, 'subject' | 'kind' | 'method' | 'path' | 'body'>
 type Listener = (entry: OutboxEntry, answer: unknown) => void
 
 /** What this tablet has written and the server has not yet confirmed. It goes by itself, in order, until it is through. */
