@@ -17,7 +17,7 @@ interface Described {
 
 /** Everything that a migration can make, as the database tells it; knex's own tables aside. */
 async function describeSchema(): Promise<Described> {
-  const own = (query: string) => schema.admin.raw<[unknown[]]>(query).then((answer: [unknown[]]) => answer[0])
+  const own = (query: string) => schema.admin.raw<unknown[][]>(query).then(([rows = []]) => rows)
   return {
     columns: await own('SELECT table_name, column_name, column_type, is_nullable, column_default, character_set_name, collation_name FROM information_schema.columns WHERE table_schema = DATABASE() AND table_name NOT LIKE \'knex%\' ORDER BY 1, ordinal_position'),
     indexes: await own('SELECT table_name, index_name, seq_in_index, column_name, non_unique FROM information_schema.statistics WHERE table_schema = DATABASE() AND table_name NOT LIKE \'knex%\' ORDER BY 1, 2, 3'),
