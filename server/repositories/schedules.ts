@@ -10,8 +10,6 @@ export type StoredStep = Omit<ScheduleStep, 'mix' | 'wetFilmUm' | 'dryFilmUm' | 
 
 export type StoredSchedule = Pick<Schedule, 'id' | 'code' | 'name' | 'archived' | 'version' | 'createdAt' | 'updatedAt'>
 
-export type StoredScheduleRevision = Omit<ScheduleRevision, 'steps'>
-
 interface HeadRow {
   id: string
   code: string

@@ -63,7 +63,7 @@ export function densityOf(revision: StoredRevision, mix: EngineMix | null): stri
 }
 
 /** A revision with shares, tolerances in force, density and late limit. */
-export function describeRevision(revision: StoredRevision): MixRevision {
+function describeRevision(revision: StoredRevision): MixRevision {
   const mix = tryMix(revision)
   const late = revision.potLifeMin === null ? null : new D(revision.potLifeMin).times(revision.lateFromPct).div(HUNDRED)
   const densityGPerMl = densityOf(revision, mix)

@@ -6,7 +6,7 @@ import type { Context } from '../utils/context'
 import { pageOf, readCursor, type Page } from './paging'
 
 /** A valid training counts as ending soon from this many days on. Common practice, no source. */
-export const trainingEndsSoonDays = 60
+const trainingEndsSoonDays = 60
 
 /** The present instant and the shop's calendar day. */
 export async function shopDay(ctx: Context): Promise<{ now: number, today: string }> {
@@ -48,7 +48,7 @@ export async function usersPage(ctx: Context, query: Query): Promise<Page<User>>
 }
 
 /** Where a training stands on a day. */
-export function trainingAt(today: string, until: string | null): User['isocyanateTraining'] {
+function trainingAt(today: string, until: string | null): User['isocyanateTraining'] {
   if (until === null) return null
   const left = daysBetween(today, until)
   if (left < 0) return 'over'

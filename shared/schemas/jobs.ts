@@ -45,7 +45,7 @@ export type JobItem = z.infer<typeof JobItem>
 export const JobList = pageOf(JobItem)
 export type JobList = z.infer<typeof JobList>
 
-export const stepStates = ['to-come', 'started', 'done'] as const
+const stepStates = ['to-come', 'started', 'done'] as const
 export const StepState = z.enum(stepStates)
 export type StepState = z.infer<typeof StepState>
 

@@ -10,7 +10,7 @@ export const runsOutWithinDays = 14
 export const lowSharePct = '10'
 
 /** What the record says of a lot. */
-export const lotStates = ['sealed', 'in-use', 'empty', 'blocked'] as const
+const lotStates = ['sealed', 'in-use', 'empty', 'blocked'] as const
 
 /** What that means today, by the shop's date: one word, the most pressing first. */
 export const lotConditions = ['blocked', 'used-up', 'out-of-date', 'runs-out', 'in-use', 'sealed'] as const
@@ -66,7 +66,7 @@ export type LotItem = z.infer<typeof LotItem>
 export const LotList = pageOf(LotItem)
 export type LotList = z.infer<typeof LotList>
 
-export const movementKinds = ['received', 'poured', 'compensation', 'counted', 'wasted', 'split'] as const
+const movementKinds = ['received', 'poured', 'compensation', 'counted', 'wasted', 'split'] as const
 
 /** Grams that came to a lot (above 0) or left it (below 0). */
 export const LotMovement = z.object({

@@ -6,6 +6,6 @@ export const MaterialRole = z.enum(materialRoles, 'Choose a role.')
 export type MaterialRole = z.infer<typeof MaterialRole>
 
 /** The part that a material plays in a mix. */
-export const componentRoles = ['base', 'hardener', 'thinner', 'additive', 'accelerator', 'peroxide'] as const
+const componentRoles = ['base', 'hardener', 'thinner', 'additive', 'accelerator', 'peroxide'] as const
 export const ComponentRole = z.enum(componentRoles, 'Choose a role.')
 export type ComponentRole = z.infer<typeof ComponentRole>

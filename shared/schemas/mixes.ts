@@ -67,7 +67,7 @@ export const MixComponent = z.object({
 })
 export type MixComponent = z.infer<typeof MixComponent>
 
-export const PotLifePoint = z.object({ c: DecimalText, min: DecimalText })
+const PotLifePoint = z.object({ c: DecimalText, min: DecimalText })
 
 /** A revision never changes; a change makes the next one. */
 export const MixRevision = z.object({

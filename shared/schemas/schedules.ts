@@ -3,11 +3,10 @@ import { WorkingLine, pageOf, pageQuery, searchText } from './common'
 import { DecimalText, Flag, InstantText, Uuid } from './fields'
 import { MixPart, PotLifeIs } from './mixes'
 
-export const stepKinds = ['prepare', 'coat', 'sand', 'wait', 'inspect'] as const
-export const StepKind = z.enum(stepKinds)
-export type StepKind = z.infer<typeof StepKind>
+const stepKinds = ['prepare', 'coat', 'sand', 'wait', 'inspect'] as const
+const StepKind = z.enum(stepKinds)
 
-export const facesOf = ['front', 'back', 'both', 'edges', 'all'] as const
+const facesOf = ['front', 'back', 'both', 'edges', 'all'] as const
 export const Faces = z.enum(facesOf)
 export type Faces = z.infer<typeof Faces>
 
