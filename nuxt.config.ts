@@ -44,6 +44,8 @@ export default defineNuxtConfig({
   vite: {
     // An inlined font would break the content security policy.
     build: { assetsInlineLimit: 0 },
+    // Found late, each of these would make the development server reload the page.
+    optimizeDeps: { include: ['decimal.js', 'idb', 'reka-ui', 'zod/mini'] },
   },
   telemetry: false,
   hooks: {
