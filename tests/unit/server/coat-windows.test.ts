@@ -6,7 +6,8 @@ const [first, last] = [1_000 * minute, 1_020 * minute]
 const step = {
   coats: 2, coatIntervalMinMin: '60', coatIntervalMaxMin: '240', overcoatFromMin: '720', overcoatUntilMin: null, sandFromMin: '600', sandUntilMin: null,
 }
-const after = (more: Partial<typeof step> & Record<string, unknown>, coat: number) => windowAfter({ ...step, ...more } as typeof step, coat, first, last)
+type Step = Parameters<typeof windowAfter>[0]
+const after = (more: Partial<Step>, coat: number) => windowAfter({ ...step, ...more }, coat, first, last)
 
 describe('the window after a coat', () => {
   it('leads to the next coat while there are some to come: opens by the last spray, closes by the first', () => {
