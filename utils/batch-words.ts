@@ -1,4 +1,4 @@
-import type { Batch, BatchListItem } from '#shared/schemas/batches'
+import type { Batch, BatchListItem, ReviewCode } from '#shared/schemas/batches'
 import type { StateName } from '~/utils/states'
 import { percent } from '~/utils/format'
 import type { ComponentRole } from '~/utils/roles'
@@ -41,18 +41,15 @@ export const sealedVerdictWords = {
   'cannot-tell': 'Cannot tell on this scale',
 } as const
 
-/** Why a foreman should look at a batch, in words. */
-export const reviewWords: Record<string, string> = {
-  'out-of-tolerance': 'A component is out of tolerance and nobody approved it.',
-  'cannot-tell': 'The scale could not tell whether a component is in tolerance.',
-  'not-complete': 'A component of the mix was not poured.',
-  'expired-lot': 'A lot was out of date.',
-  'blocked-lot': 'A lot was blocked.',
-  'late-entry': 'It was entered more than seven days after it was mixed.',
-  'not-mixed-in-order': 'The components were not poured in the safe order.',
-  'clock-ahead': 'The tablet\'s clock was ahead; the moment was set back to the server\'s.',
-  'over-fill': 'It is more than the cup may hold.',
-  'stock-short': 'More was poured than the lot should have held: count it.',
+/** Why a foreman should look at a batch: a few words for the bench, a sentence for the log. */
+export const reviewWords: Record<ReviewCode, { short: string, long: string }> = {
+  'out-of-tolerance': { short: 'out of tolerance', long: 'A component is out of tolerance and nobody approved it.' },
+  'not-complete': { short: 'not complete', long: 'A component of the mix was not poured.' },
+  'expired-lot': { short: 'lot out of date', long: 'A lot was out of date.' },
+  'blocked-lot': { short: 'blocked lot', long: 'A lot was blocked.' },
+  'late-entry': { short: 'entered late', long: 'It was entered more than seven days after it was mixed.' },
+  'not-mixed-in-order': { short: 'not in the safe order', long: 'The components were not poured in the safe order.' },
+  'clock-ahead': { short: 'clock ahead', long: 'The tablet\'s clock was ahead; the moment was set back to the server\'s.' },
 }
 
 /** A role's pattern in drawings: what is neither base, hardener nor thinner takes the fourth. */
