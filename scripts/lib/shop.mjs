@@ -123,9 +123,9 @@ export function welcome(url, { users, demoUsers }) {
     lines.push(
       '',
       'The demo shop, password "let the pot ring" for all three:',
-      '  sprayer@potbell.example   mixes, pours against the scale and logs batches at the bench',
-      '  foreman@potbell.example   as the sprayer; plans jobs, settles reviews, traces defects',
-      '  manager@potbell.example   as the foreman; people, devices, mixes, schedules and settings',
+      '  sprayer@potbell.example   mixes at the bench, notes sprays, silences and empties pots, reads the log and the plans',
+      '  foreman@potbell.example   as the sprayer; also sees people and approves what a rule forbids',
+      '  manager@potbell.example   as the foreman; also enrols and takes away booth screens and benches',
     )
   }
   if (users === 0) lines.push('', 'Nobody can sign in yet: make the first manager with "npm run db -- create-manager".')
