@@ -4,7 +4,7 @@ import { workingHours } from './places'
 const minuteMs = 60_000
 
 /** Minutes after midnight of `07:30`. */
-export function minutesOf(clock: string): number {
+function minutesOf(clock: string): number {
   const [hours = '', minutes = ''] = clock.split(':')
   return parseInt(hours, 10) * 60 + parseInt(minutes, 10)
 }
@@ -26,7 +26,7 @@ export function workingDays(from: string, to: string): string[] {
 }
 
 /** The first working day after a day. */
-export function nextWorkingDay(day: string): string {
+function nextWorkingDay(day: string): string {
   const next = addDays(day, 1)
   return isWorkingDay(next) ? next : nextWorkingDay(next)
 }

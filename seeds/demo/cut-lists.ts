@@ -1,4 +1,4 @@
-export type Faces = 'front' | 'back' | 'both' | 'edges' | 'all'
+type Faces = 'front' | 'back' | 'both' | 'edges' | 'all'
 
 /** One line of a cut list, in whole millimetres. */
 export interface DemoPiece {

@@ -20,7 +20,7 @@ import { gramsOf, type Tenths } from './weights'
 const secondMs = 1000
 
 /** What the hands need to know of a job's coat. */
-export interface Coat extends Pick<Stage, 'gun' | 'coatsInPot'> {
+interface Coat extends Pick<Stage, 'gun' | 'coatsInPot'> {
   jobStep: { id: string, step: Pick<DemoStep, 'gsm' | 'gsmIs' | 'shape'> }
 }
 
@@ -149,7 +149,7 @@ export class Hands {
 }
 
 /** Loose mixes go through the cup gun of the booth. */
-export function gunOf({ of, booth }: Pick<PotOrder, 'of' | 'booth'>): GunKey {
+function gunOf({ of, booth }: Pick<PotOrder, 'of' | 'booth'>): GunKey {
   if ('stage' in of) return of.stage.gun
   const gun = guns.find((one) => one.booth === booth && one.kind === 'cup-gun')
   if (!gun) throw new Error(`booth ${booth} has no cup gun`)

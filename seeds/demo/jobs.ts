@@ -22,7 +22,7 @@ export interface JobStep {
 }
 
 /** Pieces that travel together; each rack is one pot of every coat. */
-export interface Rack {
+interface Rack {
   pieceIds: string[]
   mm2: number
 }

@@ -1,6 +1,6 @@
 import type { ComponentRole } from '#shared/schemas/material-roles'
 
-export interface DemoPart {
+interface DemoPart {
   material: string
   role: ComponentRole
   parts: string

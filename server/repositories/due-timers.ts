@@ -4,10 +4,10 @@ import { msOrNull, toInstant } from '../utils/rows'
 type Db = Knex | Knex.Transaction
 
 /** A pot whose life is up is called out again after this long, until somebody acknowledges. */
-export const announceAgainMs = 60_000
+const announceAgainMs = 60_000
 
 /** `fire`: its instant has come. `announce`: nobody answered. `unmute`: the quiet is over and the pot still stands. */
-export type DueAction = 'fire' | 'announce' | 'unmute'
+type DueAction = 'fire' | 'announce' | 'unmute'
 
 /** One timer and what is to be done about it. */
 export interface DueWork {

@@ -4,7 +4,7 @@ import type { JobStep } from '../repositories/draft-references'
 import { minutesMs } from './batch-sums'
 
 /** What has to happen next for which a window opens. */
-export type WindowPurpose = 'coat-interval' | 'overcoat' | 'sand'
+type WindowPurpose = 'coat-interval' | 'overcoat' | 'sand'
 
 export interface CoatWindow {
   purpose: WindowPurpose

@@ -1,7 +1,7 @@
 import type { DraftBody, DraftNote } from '#shared/schemas/drafts'
 
 /** A tablet's clock may be ahead by this much without anybody minding, in milliseconds. */
-export const toleratedAheadMs = 2 * 60_000
+const toleratedAheadMs = 2 * 60_000
 
 /** What happened longer ago than this is a late entry, in milliseconds. */
 export const lateEntryMs = 7 * 86_400_000

@@ -20,7 +20,7 @@ import { publishPot } from './pot-view'
 import { setPotTimers } from './timers'
 
 /** A pot's instants as the API tells them. */
-export const toPotLife = (times: PotTimes | null): PotLife => times && {
+const toPotLife = (times: PotTimes | null): PotLife => times && {
   startsAt: isoOf(toInstant(times.startsAt)),
   lateAt: isoOf(toInstant(times.lateAt)),
   endsAt: isoOf(toInstant(times.endsAt)),

@@ -108,7 +108,7 @@ export function createTimer(ctx: Context, body: TimerCreateBody): Promise<Timer>
 }
 
 /** What an alarm shows as the name of who answered it. */
-export const answererName = (principal: Principal): string =>
+const answererName = (principal: Principal): string =>
   principal.user?.name ?? principal.device?.name ?? 'Potbell'
 
 /** A booth's screen answers for its own booth only: who silences an alarm must be able to look into the cup. */

@@ -6,7 +6,7 @@ import { toInstant } from './rows'
 import type { NewEvent } from './transactions'
 
 /** Format of the audited bytes. A later form gets the next number; old entries keep theirs. */
-export const auditFormat = 1
+const auditFormat = 1
 
 /** One thing that was done. Holds ids, never names or addresses. */
 export interface AuditEntry {

@@ -2,7 +2,7 @@ import type { IncomingMessage } from 'node:http'
 import { Refusal } from './errors'
 
 /** Most bytes that a JSON body may have. */
-export const maxBodyBytes = 1_000_000
+const maxBodyBytes = 1_000_000
 
 /** Bytes of an oversized body that are still read, so that the client gets its answer instead of a reset. */
 const maxDrainedBytes = 16_000_000

@@ -69,7 +69,7 @@ export function requirePermission(principal: Principal, action: Action): void {
 }
 
 /** The row of the permission table that holds for this principal. */
-export function roleOf(principal: Principal) {
+function roleOf(principal: Principal) {
   if (principal.kind === 'user') return principal.user.role
   if (principal.kind === 'device') return principal.device.kind
   return principal.kind

@@ -30,9 +30,6 @@ export const notFound = (what: string) => new Refusal(404, 'not-found', `${what}
 
 export const forbidden = (message = 'This needs another role.') => new Refusal(403, 'forbidden', message)
 
-export const conflict = (current: unknown, message = 'Someone changed this meanwhile.') =>
-  new Refusal(409, 'version-conflict', message, [], { current })
-
 export const ruleBroken = (code: string, message: string, fields: FieldFault[] = []) =>
   new Refusal(422, code, message, fields)
 

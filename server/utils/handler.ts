@@ -28,7 +28,7 @@ export interface RouteDefinition<B extends Schema, Q extends Schema, P extends S
   handle: (request: RouteRequest<z.infer<B>, z.infer<Q>, z.infer<P>>) => Promise<A> | A
 }
 
-export interface RouteRequest<B, Q, P> {
+interface RouteRequest<B, Q, P> {
   event: H3Event
   ctx: Context
   body: B

@@ -4,7 +4,7 @@ import { Refusal } from './errors'
 import { sha256 } from './hash'
 
 /** Wrong passwords that an account may have in one window. */
-export const signInAttempts = 10
+const signInAttempts = 10
 const windowS = 15 * 60
 
 /** Requests a second that one session or device may send. */

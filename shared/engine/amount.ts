@@ -7,7 +7,7 @@ import type { WorkingLine } from './working'
 import { line } from './working'
 
 /** Whether the sheet's coat weight is meant on the panel or out of the gun. */
-export type FilmWeightIs = 'deposited' | 'sprayed'
+type FilmWeightIs = 'deposited' | 'sprayed'
 
 /** Exactly one of `areaM2`, `totalG` and `available`. Decimals are plain strings. */
 export interface AmountInput {

@@ -16,7 +16,7 @@ export interface DewPointAnswer {
 }
 
 /** From metal painting; on wood it warns of condensation and blushing. */
-export const DEW_POINT_MARGIN_K = '3'
+const DEW_POINT_MARGIN_K = '3'
 
 /** Magnus over water, WMO-No. 8 Annex 4.B: b = 17.62, c = 243.12 °C, for −45 to 60 °C. */
 const MAGNUS_B = new D('17.62')

@@ -25,7 +25,7 @@ export interface Judged {
 export type CorrectionCause = 'reactive-too-much' | 'thinner-too-much' | 'short-at-end'
 
 /** Keeping what was poured, offered before a correction when only something that does not react is too much. */
-export interface KeepOffer {
+interface KeepOffer {
   index: number
   /** Parts as poured, in the mix's own basis. */
   partsAsPoured: Dec

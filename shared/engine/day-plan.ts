@@ -13,7 +13,7 @@ export interface DayStep {
 }
 
 /** A stretch of working time, resolved from the shop's calendar and zone. `to` is no longer part of it. */
-export interface WorkingInterval {
+interface WorkingInterval {
   from: number
   to: number
 }
@@ -28,7 +28,7 @@ export interface DayPlanInput {
   todayUntil?: number | undefined
 }
 
-export interface PlacedStep {
+interface PlacedStep {
   step: number
   startsAt: number
   endsAt: number
@@ -37,7 +37,7 @@ export interface PlacedStep {
   closesAt: number | null
 }
 
-export interface BrokenWindow {
+interface BrokenWindow {
   /** Position of the step that cannot be placed, from 0. */
   step: number
   window: { opensAt: number, closesAt: number | null }

@@ -49,7 +49,7 @@ export function calculateFilm(input: FilmInput): FilmAnswer {
 }
 
 /** VS·100 ÷ (100 + t), t in per cent by volume on the unthinned material. */
-export function volumeSolidsAppliedPct(volumeSolidsPct: Dec, thinnerPct: Dec): Dec {
+function volumeSolidsAppliedPct(volumeSolidsPct: Dec, thinnerPct: Dec): Dec {
   return volumeSolidsPct.times(HUNDRED).div(HUNDRED.plus(thinnerPct))
 }
 

@@ -22,7 +22,7 @@ export interface PotLifeInput {
 }
 
 /** `sheet`: its own value; `table`: on or between its rows; `held`: colder, not lengthened; `rule`: halved. */
-export type PotLifeBasis = 'sheet' | 'table' | 'held' | 'rule'
+type PotLifeBasis = 'sheet' | 'table' | 'held' | 'rule'
 
 export interface PotLifeAnswer {
   potLifeMin: string
@@ -32,13 +32,13 @@ export interface PotLifeAnswer {
   basis: PotLifeBasis
 }
 
-export interface PotLife {
+interface PotLife {
   minutes: Dec
   basis: PotLifeBasis
 }
 
 /** 75 %: a published eight-hour pot life is "ideally used in six hours" (TM 55-1500-345-23). */
-export const DEFAULT_LATE_FROM_PCT = '75'
+const DEFAULT_LATE_FROM_PCT = '75'
 /** Halves per +10 °C (UFGS 09971 §3.7.1.3). A sheet's own table wins. */
 export const DEFAULT_HALVES_PER_C = '10'
 
@@ -47,7 +47,7 @@ export const DEFAULT_HALVES_PER_C = '10'
  * below the coldest held. A single value halves above its temperature and is never lengthened below it.
  * @throws EngineError `pot-life-missing`, `table-…`
  */
-export function readPotLife(input: Omit<PotLifeInput, 'lateFromPct' | 'inductionMin'>): PotLife {
+function readPotLife(input: Omit<PotLifeInput, 'lateFromPct' | 'inductionMin'>): PotLife {
   const temperatureC = readCelsius(input.temperatureC, 'temperatureC')
   const stepC = readPositive(input.halvesPerC ?? DEFAULT_HALVES_PER_C, 'halvesPerC', '100')
   if (input.table !== undefined) {

@@ -40,7 +40,7 @@ export function usableMin(input: {
 }
 
 /** Minutes to spray an area once at a pace in m²/h. */
-export function sprayTimeMin(areaM2: Dec, paceM2PerH: Dec): Dec {
+function sprayTimeMin(areaM2: Dec, paceM2PerH: Dec): Dec {
   return areaM2.times(60).div(paceM2PerH)
 }
 

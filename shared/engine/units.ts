@@ -50,7 +50,7 @@ export function convertUnit(value: string, from: Unit, to: Unit): string {
 }
 
 /** As {@link convertUnit}, not yet rounded. */
-export function convertDecimal(value: Dec, from: Unit, to: Unit): Dec {
+function convertDecimal(value: Dec, from: Unit, to: Unit): Dec {
   const source: UnitRecord = UNITS[from]
   const target: UnitRecord = UNITS[to]
   if (source.quantity !== target.quantity) {

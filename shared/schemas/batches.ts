@@ -6,7 +6,7 @@ import { Cursor, DateText, DecimalText, Flag, GramsText, InstantText, Limit, Uui
 export const batchStates = ['fresh', 'closing', 'life-up', 'emptied', 'stopped', 'no-pot-life'] as const
 
 /** Why a foreman should look at a batch: what is in the cup is kept as a fact. */
-export const reviewCodes = [
+const reviewCodes = [
   'out-of-tolerance', 'not-complete', 'not-mixed-in-order', 'expired-lot', 'blocked-lot', 'late-entry', 'clock-ahead',
 ] as const
 export type ReviewCode = (typeof reviewCodes)[number]
@@ -100,7 +100,7 @@ export type BatchListItem = z.infer<typeof BatchListItem>
 export const BatchList = z.strictObject({ items: z.array(BatchListItem), nextCursor: z.nullable(z.string()) })
 export type BatchList = z.infer<typeof BatchList>
 
-export const BatchPour = z.strictObject({
+const BatchPour = z.strictObject({
   lotId: Uuid,
   lotNumber: z.string(),
   grams: GramsText,
@@ -128,13 +128,13 @@ export const BatchComponent = z.strictObject({
 })
 export type BatchComponent = z.infer<typeof BatchComponent>
 
-export const WorkingLines = z.array(z.strictObject({
+const WorkingLines = z.array(z.strictObject({
   what: z.string(), formula: z.string(), value: z.string(), unit: z.string(),
 }))
 
-export const batchEventKinds = ['first-spray', 'last-spray', 'emptied', 'review-settled', 'note'] as const
+const batchEventKinds = ['first-spray', 'last-spray', 'emptied', 'review-settled', 'note'] as const
 
-export const BatchEvent = z.strictObject({
+const BatchEvent = z.strictObject({
   id: Uuid,
   kind: z.enum(batchEventKinds),
   at: InstantText,
@@ -144,9 +144,8 @@ export const BatchEvent = z.strictObject({
   boothName: z.nullable(z.string()),
   details: z.record(z.string(), z.unknown()),
 })
-export type BatchEvent = z.infer<typeof BatchEvent>
 
-export const BatchAmendment = z.strictObject({
+const BatchAmendment = z.strictObject({
   id: Uuid,
   field: z.string(),
   from: z.nullable(z.string()),

@@ -106,7 +106,7 @@ export type BenchBooth = z.infer<typeof BenchBooth>
 export const BenchPerson = z.object({ id: z.uuid(), name: z.string(), initials: z.string() })
 export type BenchPerson = z.infer<typeof BenchPerson>
 
-export const benchReadiness = ['ready', 'mixing', 'wait', 'sand', 'held', 'done'] as const
+const benchReadiness = ['ready', 'mixing', 'wait', 'sand', 'held', 'done'] as const
 
 /** A coat of a running job that stands next. */
 export const BenchStep = z.object({

@@ -19,7 +19,7 @@ const component = z.strictObject({
 })
 
 /** A mix as every calculation takes it. */
-export const CalculationMix = z.strictObject({
+const CalculationMix = z.strictObject({
   basis: z.enum(['weight', 'volume'], 'By weight or by volume.'),
   components: z.array(component, 'List the components.').check(z.minLength(1, 'A mix has 1 to 8 components.'), z.maxLength(8, 'A mix has 1 to 8 components.')),
 })

@@ -73,7 +73,7 @@ export const DayPlanCalculationAnswer = z.object({
 export type DayPlanCalculationAnswer = z.infer<typeof DayPlanCalculationAnswer>
 
 /** The cups that a reading may name. */
-export const cups = ['iso-3', 'iso-4', 'iso-5', 'iso-6', 'ford-2', 'ford-3', 'ford-4', 'ford-5', 'din-4', 'zahn-1', 'zahn-2', 'zahn-3', 'zahn-4', 'zahn-5'] as const
+const cups = ['iso-3', 'iso-4', 'iso-5', 'iso-6', 'ford-2', 'ford-3', 'ford-4', 'ford-5', 'din-4', 'zahn-1', 'zahn-2', 'zahn-3', 'zahn-4', 'zahn-5'] as const
 
 export const ViscosityCalculationBody = z.strictObject({
   cup: z.enum(cups, 'Name the cup.'),

@@ -5,7 +5,7 @@ import { CelsiusText, DecimalText, GramsText, InstantText, PercentText, SignedGr
 export const pourSources = ['typed', 'scale', 'simulated', 'bridge'] as const
 
 /** One weighing out of one tin. */
-export const DraftPour = z.strictObject({
+const DraftPour = z.strictObject({
   lotId: Uuid,
   /** Grams poured; the rule refuses what is below nothing. */
   grams: SignedGramsText,
@@ -16,7 +16,7 @@ export const DraftPour = z.strictObject({
 })
 
 /** What is in the cup of one component of the mix; `index` is its place in the mix revision, from 0. */
-export const DraftComponent = z.strictObject({
+const DraftComponent = z.strictObject({
   index: z.int().check(z.minimum(0), z.maximum(7)),
   pours: z.array(DraftPour).check(z.maxLength(40)),
 })
@@ -128,7 +128,7 @@ export type DraftInput = z.input<typeof DraftBody>
 
 export const DraftParams = z.strictObject({ id: Uuid })
 
-export const potLifeBases = ['sheet', 'table', 'held', 'rule'] as const
+const potLifeBases = ['sheet', 'table', 'held', 'rule'] as const
 
 /** The instants of a pot's life, or null where nothing in the cup reacts (yet). */
 export const PotLife = z.nullable(z.strictObject({
@@ -140,13 +140,13 @@ export const PotLife = z.nullable(z.strictObject({
 }))
 export type PotLife = z.infer<typeof PotLife>
 
-export const draftStates = ['open', 'sealed', 'stopped', 'discarded'] as const
+const draftStates = ['open', 'sealed', 'stopped', 'discarded'] as const
 
 /**
  * What the server saw or changed. `clock-ahead`: the moment lay up to 2 min in the future and was set to now;
  * `clock-far-ahead`: more than that; `late-entry`: older than 7 days; `taken-over`: another person went on with it.
  */
-export const draftNotes = ['clock-ahead', 'clock-far-ahead', 'late-entry', 'taken-over'] as const
+const draftNotes = ['clock-ahead', 'clock-far-ahead', 'late-entry', 'taken-over'] as const
 export type DraftNote = (typeof draftNotes)[number]
 
 /** Answer of `PUT` and `GET /api/batch-drafts/:id`: the body as stored, with what the server knows of it. */

@@ -6,7 +6,7 @@ import { Timer } from './timers'
 /** Instants are ISO 8601 UTC with milliseconds, quantities decimal strings, everywhere below. */
 const instant = z.nullable(z.string())
 
-export const potStates = ['fresh', 'closing', 'life-up', 'emptied', 'stopped', 'no-pot-life'] as const
+const potStates = ['fresh', 'closing', 'life-up', 'emptied', 'stopped', 'no-pot-life'] as const
 
 /** A batch while it lives: being mixed, or sealed and in a gun. */
 export const LivePot = z.object({

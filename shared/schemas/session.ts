@@ -17,24 +17,22 @@ export const SignInBody = z.strictObject({
 export type SignInBody = z.infer<typeof SignInBody>
 
 /** The signed-in person, as far as screens need to know. */
-export const SessionUser = z.object({
+const SessionUser = z.object({
   id: z.uuid(),
   name: z.string(),
   initials: z.string(),
   email: z.string(),
   role: z.enum(roles),
 })
-export type SessionUser = z.infer<typeof SessionUser>
 
 /** What this browser was made to be. */
-export const SessionDevice = z.object({
+const SessionDevice = z.object({
   id: z.uuid(),
   kind: z.enum(['bench', 'screen']),
   name: z.string(),
   boothId: z.nullable(z.uuid()),
   scaleId: z.nullable(z.uuid()),
 })
-export type SessionDevice = z.infer<typeof SessionDevice>
 
 /** Who this browser is: a person, an enrolled screen or bench, both, or nobody. */
 export const Session = z.object({

@@ -2,10 +2,10 @@ import * as z from 'zod/mini'
 import { pageOf, pageQuery } from './common'
 import { Uuid, words } from './fields'
 
-export const timerKinds = [
+const timerKinds = [
   'pot-late', 'pot-up', 'window-opens', 'window-closing', 'window-closes', 'clearance', 'dry-sand', 'dry-stack', 'dry-pack', 'free',
 ] as const
-export const timerStates = ['waiting', 'fired', 'acknowledged', 'done', 'cancelled'] as const
+const timerStates = ['waiting', 'fired', 'acknowledged', 'done', 'cancelled'] as const
 
 export type TimerKind = (typeof timerKinds)[number]
 export type TimerState = (typeof timerStates)[number]

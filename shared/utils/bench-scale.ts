@@ -12,7 +12,7 @@ export interface ScaleReading {
   at: number
 }
 
-export interface ScaleSource {
+interface ScaleSource {
   readonly kind: ScaleSourceKind
   state: () => ScaleSourceState
   connect: () => Promise<void>

@@ -16,7 +16,7 @@ export interface ClockOffset {
 export const clockQuestions = 5
 
 /** The server is further off than this: the own clock was set, or the machine slept. */
-export const clockJumpMs = 1_000
+const clockJumpMs = 1_000
 
 /** The offset of one question: the server's instant lies in the middle of the way, give or take half of it. */
 export function offsetOf({ askedAt, answeredAt, serverNow }: ClockSample): ClockOffset {

@@ -1,5 +1,5 @@
 /** Years that finishing records are kept, and of those on site: 40 CFR 63.806 with 63.10(b)(1). */
-export const RECORD_YEARS = 5
+const RECORD_YEARS = 5
 export const RECORD_YEARS_ON_SITE = 2
 
 /**

@@ -130,7 +130,7 @@ export class Station {
   }
 }
 
-export interface LogLine {
+interface LogLine {
   level: 'error' | 'warn' | 'info'
   message: string
 }

@@ -24,8 +24,8 @@ import { flammableLiquidLabels, hazardText } from '#shared/reference/hazard-stat
 import { RECORD_YEARS_ON_SITE, keepUntil } from '#shared/utils/retention'
 
 /** Inputs of an entry as plain decimals. */
-export type Inputs = (name: string) => string
-export type Answer = Record<string, string | boolean>
+type Inputs = (name: string) => string
+type Answer = Record<string, string | boolean>
 type Answerer = (input: Inputs, list: (name: string) => string[]) => Answer
 
 const ROLES = ['base', 'hardener', 'thinner'] as const
