@@ -1,4 +1,5 @@
 import Decimal from 'decimal.js'
+import { wallTime } from '#shared/utils/zone'
 
 /**
  * Grams, minutes and dates for the eye. Everything here makes text; nothing here decides.
@@ -93,28 +94,6 @@ export function over(ms: number): string {
   return `+${duration(Math.floor(Math.max(0, ms) / MINUTE) * MINUTE)}`
 }
 
-interface ZonedParts { year: number, month: number, day: number, hour: string, minute: string, second: string }
-
-const formats = new Map<string, Intl.DateTimeFormat>()
-
-/** Building a formatter is dear; a list of batches would build hundreds. */
-function formatIn(zone: string): Intl.DateTimeFormat {
-  const known = formats.get(zone)
-  if (known) return known
-  const made = new Intl.DateTimeFormat('en-GB', {
-    timeZone: zone, hourCycle: 'h23', year: 'numeric', month: '2-digit', day: '2-digit', hour: '2-digit', minute: '2-digit', second: '2-digit',
-  })
-  formats.set(zone, made)
-  return made
-}
-
-function zoned(ms: number, zone: string): ZonedParts {
-  const found: Record<string, string> = {}
-  for (const part of formatIn(zone).formatToParts(ms)) found[part.type] = part.value
-  const { year = '', month = '', day = '', hour = '', minute = '', second = '' } = found
-  return { year: Number(year), month: Number(month), day: Number(day), hour, minute, second }
-}
-
 function dayText(year: number, month: number, day: number, withYear: boolean): string {
   const weekday = WEEKDAYS[new Date(Date.UTC(year, month - 1, day)).getUTCDay()]
   return `${weekday} ${day} ${MONTHS[month - 1]}${withYear ? ` ${year}` : ''}`
@@ -122,37 +101,30 @@ function dayText(year: number, month: number, day: number, withYear: boolean): s
 
 /** Clock time of the shop, 24 hours: `07:54`. `zone` is an IANA name. */
 export function clock(ms: number, zone: string): string {
-  const { hour, minute } = zoned(ms, zone)
-  return `${hour}:${minute}`
+  const { hour, minute } = wallTime(ms, zone)
+  return `${two(hour)}:${two(minute)}`
 }
 
 /** Clock time with seconds, for a last good reading: `07:54:20`. */
 export function clockSeconds(ms: number, zone: string): string {
-  const { hour, minute, second } = zoned(ms, zone)
-  return `${hour}:${minute}:${second}`
+  return `${clock(ms, zone)}:${two(wallTime(ms, zone).second)}`
 }
 
 /** A day in the shop's zone: `Tue 17 Nov`, with the year only when it is not the year of `nowMs`. */
 export function day(ms: number, zone: string, nowMs: number): string {
-  const at = zoned(ms, zone)
-  return dayText(at.year, at.month, at.day, at.year !== zoned(nowMs, zone).year)
+  const at = wallTime(ms, zone)
+  return dayText(at.year, at.month, at.day, at.year !== wallTime(nowMs, zone).year)
 }
 
 /** Weekday of an instant in the shop's zone: `Tue`. */
 export function weekday(ms: number, zone: string): string {
-  const at = zoned(ms, zone)
+  const at = wallTime(ms, zone)
   return dayText(at.year, at.month, at.day, false).slice(0, 3)
 }
 
 /** Day and clock time: `Tue 17 Nov 07:54`. */
 export function dayClock(ms: number, zone: string, nowMs: number): string {
   return `${day(ms, zone, nowMs)} ${clock(ms, zone)}`
-}
-
-/** The shop's calendar day of an instant as `YYYY-MM-DD`, for grouping and date fields. */
-export function isoDay(ms: number, zone: string): string {
-  const at = zoned(ms, zone)
-  return `${at.year}-${two(at.month)}-${two(at.day)}`
 }
 
 /** A calendar day without a time, such as a use-by date, always with its year: '2027-03-31' → `Wed 31 Mar 2027`. */

@@ -1,7 +1,6 @@
 import type { Knex } from 'knex'
+import type { BatchState } from '#shared/schemas/batch-states'
 import { msOrNull, toInstant } from '../utils/rows'
-
-export type BatchState = 'fresh' | 'closing' | 'life-up' | 'emptied' | 'stopped' | 'no-pot-life'
 
 /** What a batch is when it is sealed. Instants are epoch milliseconds. */
 export interface NewCurrent {

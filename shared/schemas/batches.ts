@@ -1,9 +1,7 @@
 import * as z from 'zod/mini'
+import { BatchState } from './batch-states'
 import { DraftCorrection, DraftPlan, PotLife, pourSources } from './drafts'
 import { Cursor, DateText, DecimalText, Flag, GramsText, InstantText, Limit, Uuid, words } from './fields'
-
-/** Of a sealed batch. `no-pot-life`: nothing in it reacts, so nothing runs. */
-export const batchStates = ['fresh', 'closing', 'life-up', 'emptied', 'stopped', 'no-pot-life'] as const
 
 /** Why a foreman should look at a batch: what is in the cup is kept as a fact. */
 const reviewCodes = [
@@ -27,7 +25,7 @@ export const BatchListQuery = z.strictObject({
   /** Any component's material. */
   materialId: z.optional(Uuid),
   lotId: z.optional(Uuid),
-  state: z.optional(z.enum(batchStates)),
+  state: z.optional(BatchState),
   mixedBy: z.optional(Uuid),
   boothId: z.optional(Uuid),
   from: z.optional(DateText),
@@ -46,7 +44,7 @@ const named = {
   id: Uuid,
   code: z.string(),
   outcome: z.enum(['mixed', 'stopped']),
-  state: z.enum(batchStates),
+  state: BatchState,
   potNumber: z.int(),
   potCount: z.int(),
   mixCode: z.string(),

@@ -1,6 +1,7 @@
 import * as z from 'zod/mini'
 import { Figure, MinutesText, Moment } from './calculation-fields'
 import { DecimalText, InstantText, words } from './fields'
+import { ViscosityCup } from './viscosity-cups'
 
 export const PotLifeCalculationBody = z.strictObject({
   referenceMin: z.optional(MinutesText),
@@ -72,13 +73,10 @@ export const DayPlanCalculationAnswer = z.object({
 })
 export type DayPlanCalculationAnswer = z.infer<typeof DayPlanCalculationAnswer>
 
-/** The cups that a reading may name. */
-const cups = ['iso-3', 'iso-4', 'iso-5', 'iso-6', 'ford-2', 'ford-3', 'ford-4', 'ford-5', 'din-4', 'zahn-1', 'zahn-2', 'zahn-3', 'zahn-4', 'zahn-5'] as const
-
 export const ViscosityCalculationBody = z.strictObject({
-  cup: z.enum(cups, 'Name the cup.'),
+  cup: ViscosityCup,
   seconds: DecimalText,
-  toCup: z.optional(z.enum(cups, 'Name the cup.')),
+  toCup: z.optional(ViscosityCup),
 })
 
 export const ViscosityCalculationAnswer = z.object({

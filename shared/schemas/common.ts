@@ -11,6 +11,9 @@ export type WorkingLine = z.infer<typeof WorkingLine>
 /** What every list takes beside its filters. */
 export const pageQuery = { cursor: z.optional(Cursor), limit: Limit }
 
+/** What everything with revisions has, whatever revision is in force. */
+export const namedHead = { id: Uuid, code: z.string(), name: z.string(), archived: z.boolean(), version: z.number() }
+
 /** Words to search for, in code and name. */
 export const searchText = z.optional(
   z.string('Search for words.').check(z.trim(), z.minLength(1, 'Search for at least one letter.'), z.maxLength(80, 'Search for at most 80 letters.')),

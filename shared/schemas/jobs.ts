@@ -1,4 +1,5 @@
 import * as z from 'zod/mini'
+import { BatchState } from './batch-states'
 import { WorkingLine, pageOf, pageQuery, searchText } from './common'
 import { DateText, DecimalText, InstantText, Uuid } from './fields'
 import { LiveWindow } from './live'
@@ -75,7 +76,7 @@ export const JobBatch = z.object({
   jobStepId: z.nullable(Uuid),
   mixedAt: InstantText,
   pouredTotalG: DecimalText,
-  state: z.enum(['fresh', 'closing', 'life-up', 'emptied', 'stopped', 'no-pot-life']),
+  state: BatchState,
   mixedByName: z.string(),
 })
 export type JobBatch = z.infer<typeof JobBatch>

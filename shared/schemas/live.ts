@@ -1,4 +1,5 @@
 import * as z from 'zod/mini'
+import { BatchState } from './batch-states'
 import { ClimateReading } from './climate'
 import { Uuid } from './fields'
 import { Timer } from './timers'
@@ -6,14 +7,12 @@ import { Timer } from './timers'
 /** Instants are ISO 8601 UTC with milliseconds, quantities decimal strings, everywhere below. */
 const instant = z.nullable(z.string())
 
-const potStates = ['fresh', 'closing', 'life-up', 'emptied', 'stopped', 'no-pot-life'] as const
-
 /** A batch while it lives: being mixed, or sealed and in a gun. */
 export const LivePot = z.object({
   id: z.uuid(),
   code: z.string(),
   stage: z.enum(['mixing', 'sealed']),
-  state: z.enum(potStates),
+  state: BatchState,
   boothId: z.nullable(z.uuid()),
   boothName: z.nullable(z.string()),
   gunId: z.nullable(z.uuid()),

@@ -1,5 +1,5 @@
 import * as z from 'zod/mini'
-import { WorkingLine, pageOf, pageQuery, searchText } from './common'
+import { WorkingLine, namedHead, pageOf, pageQuery, searchText } from './common'
 import { DecimalText, Flag, InstantText, Uuid } from './fields'
 import { ComponentRole } from './material-roles'
 import { chemistryText } from './materials'
@@ -21,16 +21,8 @@ export type MixListQuery = z.infer<typeof MixListQuery>
 export const MixPart = z.object({ parts: DecimalText, partsMax: z.nullable(DecimalText) })
 export type MixPart = z.infer<typeof MixPart>
 
-const head = {
-  id: Uuid,
-  code: z.string(),
-  name: z.string(),
-  archived: z.boolean(),
-  version: z.number(),
-}
-
 export const MixItem = z.object({
-  ...head,
+  ...namedHead,
   currentRevisionId: z.nullable(Uuid),
   revisionNumber: z.nullable(z.number()),
   basis: z.nullable(z.enum(['weight', 'volume'])),
@@ -120,7 +112,7 @@ export const MixRevisionLine = z.object({
 export type MixRevisionLine = z.infer<typeof MixRevisionLine>
 
 export const Mix = z.object({
-  ...head,
+  ...namedHead,
   current: z.nullable(MixRevision),
   revisions: z.array(MixRevisionLine),
   schedules: z.array(z.object({ id: Uuid, code: z.string(), name: z.string() })),

@@ -1,5 +1,5 @@
 import * as z from 'zod/mini'
-import { WorkingLine, pageOf, pageQuery, searchText } from './common'
+import { WorkingLine, namedHead, pageOf, pageQuery, searchText } from './common'
 import { DecimalText, Flag, InstantText, Uuid } from './fields'
 import { MixPart, PotLifeIs } from './mixes'
 
@@ -24,16 +24,8 @@ export type ScheduleQuery = z.infer<typeof ScheduleQuery>
 
 const revisionState = z.enum(['draft', 'released', 'superseded'])
 
-const head = {
-  id: Uuid,
-  code: z.string(),
-  name: z.string(),
-  archived: z.boolean(),
-  version: z.number(),
-}
-
 export const ScheduleItem = z.object({
-  ...head,
+  ...namedHead,
   /** The released revision; where none is, the latest draft. */
   revisionId: z.nullable(Uuid),
   revisionNumber: z.nullable(z.number()),
@@ -103,30 +95,29 @@ export const ScheduleStep = z.object({
 })
 export type ScheduleStep = z.infer<typeof ScheduleStep>
 
-export const ScheduleRevision = z.object({
+const revisionHead = {
   id: Uuid,
   number: z.number(),
   state: revisionState,
   notes: z.nullable(z.string()),
   releasedAt: z.nullable(InstantText),
   releasedByName: z.nullable(z.string()),
+}
+
+export const ScheduleRevision = z.object({
+  ...revisionHead,
   steps: z.array(ScheduleStep),
 })
 export type ScheduleRevision = z.infer<typeof ScheduleRevision>
 
 export const ScheduleRevisionLine = z.object({
-  id: Uuid,
-  number: z.number(),
-  state: revisionState,
-  notes: z.nullable(z.string()),
-  releasedAt: z.nullable(InstantText),
-  releasedByName: z.nullable(z.string()),
+  ...revisionHead,
   jobCount: z.number(),
 })
 export type ScheduleRevisionLine = z.infer<typeof ScheduleRevisionLine>
 
 export const Schedule = z.object({
-  ...head,
+  ...namedHead,
   revision: z.nullable(ScheduleRevision),
   revisions: z.array(ScheduleRevisionLine),
   /** Jobs planned or running by the revision shown. */

@@ -1,3 +1,4 @@
+/** Building a formatter is dear; a list of batches would build hundreds. */
 const formats = new Map<string, Intl.DateTimeFormat>()
 
 function formatOf(zone: string): Intl.DateTimeFormat {
@@ -12,11 +13,25 @@ function formatOf(zone: string): Intl.DateTimeFormat {
 
 const dayMs = 86_400_000
 
-/** Milliseconds by which the zone's wall clock is ahead of UTC at an instant. */
-function offsetMs(ms: number, zone: string): number {
+/** What calendar and wall clock of a zone show. */
+interface WallTime { year: number, month: number, day: number, hour: number, minute: number, second: number }
+
+/**
+ * What the calendar and the wall clock of a zone show at an instant.
+ * @param ms epoch milliseconds
+ * @param zone IANA name
+ * @throws RangeError for an unknown zone
+ */
+export function wallTime(ms: number, zone: string): WallTime {
   const part: Record<string, number> = {}
   for (const { type, value } of formatOf(zone).formatToParts(ms)) part[type] = Number(value)
   const { year = 0, month = 1, day = 1, hour = 0, minute = 0, second = 0 } = part
+  return { year, month, day, hour, minute, second }
+}
+
+/** Milliseconds by which the zone's wall clock is ahead of UTC at an instant. */
+function offsetMs(ms: number, zone: string): number {
+  const { year, month, day, hour, minute, second } = wallTime(ms, zone)
   return Date.UTC(year, month - 1, day, hour, minute, second) - Math.floor(ms / 1000) * 1000
 }
 

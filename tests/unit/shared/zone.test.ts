@@ -10,6 +10,7 @@ describe('shopDate', () => {
     ['2026-11-30T22:59:59.999Z', 'Europe/Copenhagen', '2026-11-30'],
     ['2026-11-30T23:00:00.000Z', 'Europe/Copenhagen', '2026-12-01'],
     ['2026-07-01T22:00:00.000Z', 'Europe/Copenhagen', '2026-07-02'],
+    ['2026-07-01T22:05:00.000Z', 'Europe/Copenhagen', '2026-07-02'],
     ['2026-12-01T04:59:59.000Z', 'America/New_York', '2026-11-30'],
     ['2026-12-31T10:00:00.000Z', 'Pacific/Kiritimati', '2027-01-01'],
   ])('%s in %s is %s', (iso, zone, day) => {
