@@ -1,5 +1,6 @@
 import type { Knex } from 'knex'
 import type { Clock } from '../utils/clock'
+import { Housekeeper } from './housekeeper'
 import { EventHub } from './hub'
 import type { LiveLog } from './loop'
 import { EventPump } from './pump'
@@ -21,20 +22,22 @@ export interface Live {
   stop(): Promise<void>
 }
 
-/** Starts hub, pump and scheduler. It may be called before the database answers: each keeps trying. */
+/** Starts hub, pump, scheduler and housekeeper. It may be called before the database answers: each keeps trying. */
 export function startLive({ db, clock, log, redisUrl }: LiveOptions): Live {
   const hub = new EventHub()
   const pump = new EventPump({ db, clock, hub, log })
   const redis = redisUrl ? new RedisWake(redisUrl, hub, () => pump.wake(), log) : null
   const scheduler = new Scheduler({ db, clock, log, wake: hub.wake })
+  const housekeeper = new Housekeeper({ db, clock, log })
   pump.start()
   scheduler.start()
+  housekeeper.start()
   return {
     hub,
     pump,
     async stop() {
       hub.close()
-      await scheduler.stop()
+      await Promise.all([scheduler.stop(), housekeeper.stop()])
       redis?.close()
       await pump.stop()
     },
