@@ -3,6 +3,7 @@ import { calculateDewPoint } from '#shared/engine/climate'
 import { D } from '#shared/engine/decimal'
 import type { ClimateCreateBody, ClimateList, ClimateListQuery, ClimateReading } from '#shared/schemas/climate'
 import { toMs } from '#shared/utils/instant'
+import { audienceOf } from '../live/audience'
 import { insertReading, latestReadings, listReadings, type StoredReading } from '../repositories/climate'
 import { isActive } from '../repositories/devices'
 import { userIdOf, type Context } from '../utils/context'
@@ -42,11 +43,16 @@ export function recordClimate(ctx: Context, body: ClimateCreateBody): Promise<Cl
   })
 }
 
-/** Readings of one booth or all, newest first. */
+/**
+ * Readings of one booth or all, newest first. A booth's screen sees those of its booth.
+ *
+ * @throws Refusal 400 for a cursor of another list, 403 when a screen asks for another booth
+ */
 export async function listClimate(ctx: Context, query: ClimateListQuery): Promise<ClimateList> {
-  const [at, id] = query.cursor ? decodeCursor(query.cursor, ['number', 'string']) : []
+  const { boothId } = audienceOf(ctx.principal, query.boothId)
+  const [at, id] = query.cursor ? decodeCursor(query.cursor, ['instant', 'id']) : []
   const after = at === undefined ? undefined : { at: Number(at), id: String(id) }
-  const rows = await listReadings({ boothId: query.boothId, after, limit: query.limit + 1 }, ctx.db)
+  const rows = await listReadings({ boothId: boothId ?? undefined, after, limit: query.limit + 1 }, ctx.db)
   const items = rows.slice(0, query.limit).map(describe)
   const last = rows.length > query.limit ? items.at(-1) : undefined
   return { items, nextCursor: last ? encodeCursor([toMs(last.at), last.id]) : null }

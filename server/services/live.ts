@@ -53,7 +53,7 @@ const running = ['waiting', 'fired', 'acknowledged'] as const
 /** Timers by the instant they are due. A booth's screen sees those of its booth. */
 export async function readTimers(ctx: Context, query: TimerListQuery): Promise<TimerList> {
   const { boothId } = audienceOf(ctx.principal, query.boothId)
-  const [at, id] = query.cursor ? decodeCursor(query.cursor, ['number', 'string']) : []
+  const [at, id] = query.cursor ? decodeCursor(query.cursor, ['instant', 'id']) : []
   const states = query.state === 'running' ? running : query.state && [query.state]
   const rows = await listTimers({
     boothId: boothId ?? undefined, kind: query.kind, states, limit: query.limit + 1,

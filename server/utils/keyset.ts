@@ -9,14 +9,13 @@ export function encodeCursor(values: KeysetValues): string {
 }
 
 /** Kind of a value in a cursor. `instant`: epoch milliseconds that a DATETIME can hold; `id`: a UUID. */
-export type KeysetKind = 'string' | 'number' | 'instant' | 'id'
+export type KeysetKind = 'string' | 'instant' | 'id'
 
 const lastInstant = Date.UTC(9999, 11, 31)
 const uuidPattern = /^[0-9a-f]{8}(?:-[0-9a-f]{4}){3}-[0-9a-f]{12}$/
 
 const fitting: Record<KeysetKind, (value: unknown) => boolean> = {
   string: (value) => typeof value === 'string',
-  number: (value) => Number.isSafeInteger(value),
   instant: (value) => Number.isSafeInteger(value) && Number(value) >= 0 && Number(value) < lastInstant,
   id: (value) => typeof value === 'string' && uuidPattern.test(value),
 }

@@ -1,6 +1,6 @@
 import { randomUUID } from 'node:crypto'
 import { describe, expect, it } from 'vitest'
-import { Client, enrolled, signedIn } from './support/http'
+import { type Client, enrolled, signedIn } from './support/http'
 
 interface Named { id: string; name: string }
 const firstBooth = async (client: Client) => (await client.get<{ items: Named[] }>('/api/booths')).body.items[0]!

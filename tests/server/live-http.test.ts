@@ -182,6 +182,24 @@ describe('climate over HTTP', () => {
     expect(list.items).toEqual([body])
   })
 
+  it('tells a booth\'s screen of its own booth only', async () => {
+    const [own, other] = booths.map(({ id }) => id)
+    const screen = await enrolled('screen', own ?? '')
+    await sprayer.post('/api/climate-readings', { boothId: own, airC: '20', rhPct: '50' })
+    await sprayer.post('/api/climate-readings', { boothId: other, airC: '21', rhPct: '50' })
+    expect((await screen.get(`/api/climate-readings?boothId=${other}`)).status).toBe(403)
+    const { body } = await screen.get<{ items: { boothId: string }[] }>('/api/climate-readings')
+    expect(body.items.length).toBeGreaterThan(0)
+    expect(body.items.every(({ boothId }) => boothId === own)).toBe(true)
+  })
+
+  it.each(['/api/climate-readings', '/api/timers'])('%s refuses a cursor with an instant that there is not', async (path) => {
+    for (const values of [[Number.MAX_SAFE_INTEGER, randomUUID()], [-1, randomUUID()], [0, 'no id']]) {
+      const cursor = Buffer.from(JSON.stringify(values)).toString('base64url')
+      expect(await sprayer.get(`${path}?cursor=${cursor}`)).toMatchObject({ status: 400, body: { fields: [{ path: 'cursor' }] } })
+    }
+  })
+
   it('refuses an unknown booth and air that is none', async () => {
     expect(await sprayer.post('/api/climate-readings', { boothId: randomUUID(), airC: '20', rhPct: '50' })).toMatchObject({ status: 400, body: { fields: [{ path: 'boothId' }] } })
     expect(await sprayer.post('/api/climate-readings', { boothId: booths[0]?.id, airC: '400', rhPct: '50' })).toMatchObject({ status: 400, body: { fields: [{ path: 'airC' }] } })
