@@ -1,7 +1,6 @@
-import { createHmac } from 'node:crypto'
 import { useApp } from './app'
 import { principalName, type Context } from './context'
-import { randomToken } from './hash'
+import { keyedHash, randomToken } from './hash'
 
 /**
  * The token of a device that is being enrolled. It is derived from the request's idempotency key under the session
@@ -9,7 +8,5 @@ import { randomToken } from './hash'
  */
 export function deviceTokenFor(ctx: Context): string {
   if (!ctx.idempotency) return randomToken()
-  return createHmac('sha256', useApp().config.sessionSecret)
-    .update(`device:${principalName(ctx.principal)}:${ctx.idempotency.key}`)
-    .digest('hex')
+  return keyedHash(useApp().config.sessionSecret, `device:${principalName(ctx.principal)}:${ctx.idempotency.key}`)
 }

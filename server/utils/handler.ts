@@ -9,7 +9,7 @@ import { canonicalJson, type Canonical } from './canonical'
 import type { Context, Idempotency, Principal } from './context'
 import { principalName, requirePermission } from './context'
 import { fromEngine, invalid, Refusal } from './errors'
-import { sha256 } from './hash'
+import { keyedHash } from './hash'
 import { countRequest } from './limits'
 
 type Schema = z.ZodMiniType
@@ -52,9 +52,9 @@ export function defineRoute<B extends Schema, Q extends Schema, P extends Schema
       const params = parse(route.params, getRouterParams(event, { decode: true }), 'params')
       const query = parse(route.query, getQuery(event), 'query')
       const sent = event.method === 'GET' || event.method === 'HEAD' ? undefined : await readJsonBody(event.node.req)
-      const idempotency = route.idempotent === false || event.method !== 'POST' ? undefined : readKey(event, sent, route.status ?? 200)
+      const key = route.idempotent === false || event.method !== 'POST' ? null : readKey(event)
       const body = parse(route.body, sent, 'body')
-      const ctx = contextFor(principal, event.context.requestId, idempotency)
+      const ctx = contextFor(principal, event.context.requestId, key === null ? undefined : claim(event, key, sent, route.status ?? 200))
       const answer = await route.handle({ event, ctx, body, query, params })
       setResponseHeader(event, 'Cache-Control', 'no-store')
       setResponseStatus(event, route.status ?? 200)
@@ -75,13 +75,21 @@ function admit(event: H3Event, permission: Action | 'public'): Principal {
   return principal
 }
 
-function readKey(event: H3Event, body: unknown, status: number): Idempotency {
+function readKey(event: H3Event): string {
   const key = getRequestHeader(event, 'idempotency-key')
   if (!key || !uuidPattern.test(key)) {
     throw new Refusal(400, 'idempotency-key-missing', 'Send an Idempotency-Key header with a UUID.')
   }
-  const route = `POST ${event.path.split('?')[0]}`
-  return { key: key.toLowerCase(), route, status, bodyHash: sha256(canonicalJson(plain(body))) }
+  return key.toLowerCase()
+}
+
+/**
+ * The body is hashed under the session secret: some bodies hold a password, which a plain hash in the database would
+ * let somebody guess. Only a body that has passed its schema is hashed, since one nested too deep would end the walk.
+ */
+function claim(event: H3Event, key: string, body: unknown, status: number): Idempotency {
+  const bodyHash = keyedHash(useApp().config.sessionSecret, canonicalJson(plain(body)))
+  return { key, route: `POST ${event.path.split('?')[0]}`, status, bodyHash }
 }
 
 /** Bodies may hold fractions as JSON numbers where the schema will refuse them; hash them as text. */

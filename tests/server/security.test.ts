@@ -75,6 +75,12 @@ describe('bodies', () => {
     expect(Object.keys(body).sort()).toEqual(['code', 'fields', 'message'])
   })
 
+  it.each(['/api/timers', '/api/approvals', '/api/batches'])('a body nested a hundred thousand deep is 400 for %s', async (path) => {
+    const manager = await signedIn('manager')
+    const raw = `{"name":${'['.repeat(100_000)}${']'.repeat(100_000)}}`
+    expect((await manager.post(path, undefined, { raw })).status).toBe(400)
+  })
+
   it('a POST without an idempotency key is 400', async () => {
     const manager = await signedIn('manager')
     const { status, body } = await manager.post('/api/timers', { name: 'x', minutes: 5 }, { headers: { 'idempotency-key': undefined } })
