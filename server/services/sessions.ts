@@ -22,7 +22,7 @@ const wrong = () =>
   ])
 
 /**
- * Checks a person's password and opens a session.
+ * Checks a person's password and opens a session. One that this browser had before ends with it.
  *
  * @param token random value that goes into the cookie; only its hash is stored
  * @throws Refusal 401 for wrong words, 429 after too many of them
@@ -35,10 +35,15 @@ export async function signIn(ctx: Context, body: SignInBody, token: string): Pro
     id: user.id, name: user.name, initials: user.initials, email: user.email, role: user.role, sessionId,
   }
   const asUser: Context = { ...ctx, principal: { kind: 'user', user: principal, device: ctx.principal.device } }
-  await mutate(asUser, async ({ trx, now, audit }) => {
+  const replaced = ctx.principal.user
+  await mutate(asUser, async ({ trx, now, audit, publish }) => {
     const expiresAt = now + sessionHours * hourMs
     await insertSession({ id: sessionId, userId: user.id, deviceId, now, expiresAt }, trx)
-    audit({ action: 'session.started', subject: `user:${user.id}`, facts: { deviceId } })
+    if (replaced) {
+      await endSession(replaced.sessionId, 'replaced', now, trx)
+      publish(sessionEnded(replaced.sessionId))
+    }
+    audit({ action: 'session.started', subject: `user:${user.id}`, facts: { deviceId, replacedUserId: replaced?.id ?? null } })
     return null
   })
   return describeSession(asUser)
@@ -51,10 +56,12 @@ export async function signOut(ctx: Context): Promise<void> {
   await mutate(ctx, async ({ trx, now, audit, publish }) => {
     await endSession(user.sessionId, 'signed-out', now, trx)
     audit({ action: 'session.ended', subject: `user:${user.id}`, facts: { reason: 'signed-out' } })
-    publish({ type: 'session-ended', subject: `session:${user.sessionId}`, boothId: null, payload: {} })
+    publish(sessionEnded(user.sessionId))
     return null
   })
 }
+
+const sessionEnded = (id: string) => ({ type: 'session-ended', subject: `session:${id}`, boothId: null, payload: {} })
 
 /** Who this browser is. */
 export async function describeSession(ctx: Pick<Context, 'db' | 'principal'>): Promise<Session> {

@@ -1,6 +1,8 @@
 import { randomUUID } from 'node:crypto'
 import { afterAll, describe, expect, it } from 'vitest'
 import { createKnex } from '../../server/database/connection'
+import { canonicalJson } from '../../server/utils/canonical'
+import { sha256 } from '../../server/utils/hash'
 import { Client, signedIn } from './support/http'
 
 const admin = createKnex(process.env.DATABASE_ADMIN_URL ?? '')
@@ -55,6 +57,16 @@ describe('signing in', () => {
   })
 })
 
+describe('signing in where somebody is signed in', () => {
+  it('ends the session that the browser had before, whoever\'s it was', async () => {
+    const client = await signedIn('sprayer')
+    const before = client.copy()
+    expect((await client.post('/api/session', { email: 'foreman@potbell.example', password: 'let the pot ring' })).status).toBe(201)
+    expect((await before.get('/api/batches')).status).toBe(401)
+    expect((await client.get('/api/session')).body).toMatchObject({ user: { role: 'foreman' } })
+  })
+})
+
 describe('signing out', () => {
   it('ends the session at once: the same cookie is nobody afterwards', async () => {
     const client = await signedIn('sprayer')
@@ -104,6 +116,17 @@ describe('approving at someone else\'s screen', () => {
     expect(row && row.expires_at.getTime() - row.created_at.getTime()).toBe(300_000)
     expect(row?.used_at).toBeNull()
     expect((await sprayer.get('/api/session')).body).toMatchObject({ user: { role: 'sprayer' } })
+  })
+
+  it('keeps nothing by which the password could be guessed', async () => {
+    const sprayer = await signedIn('sprayer')
+    const sent = approval('foreman')
+    const key = randomUUID()
+    await sprayer.post('/api/approvals', sent, { headers: { 'idempotency-key': key } })
+    const row = await admin('idempotency_keys').where({ idempotency_key: key }).first<{ body_hash: string; answer: string }>()
+    expect(row?.body_hash).toMatch(/^[0-9a-f]{64}$/)
+    expect(row?.body_hash).not.toBe(sha256(canonicalJson(sent)))
+    expect(row?.answer).not.toContain(sent.password)
   })
 
   it('is refused to a sprayer and to a wrong password', async () => {
