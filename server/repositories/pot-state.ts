@@ -6,9 +6,10 @@ export type PotFate = 'sealed' | 'draft' | 'over'
 
 /** Looks the pot up and locks its state until the transaction ends. */
 export async function lockPotFate(batchId: string, trx: Knex.Transaction): Promise<PotFate> {
+  // The draft first: a batch that is being sealed at this moment has its row only after that.
+  const draft = await trx('batch_drafts').where('id', batchId).forUpdate().first<{ state: string } | undefined>('state')
   const current = await trx('batch_current').where('batch_id', batchId).forUpdate().first<{ state: string } | undefined>('state')
   if (current) return ['fresh', 'closing', 'life-up'].includes(current.state) ? 'sealed' : 'over'
-  const draft = await trx('batch_drafts').where('id', batchId).first<{ state: string } | undefined>('state')
   return draft?.state === 'open' ? 'draft' : 'over'
 }
 
