@@ -222,6 +222,12 @@ export function tared(run: BenchRun): BenchRun {
   return { ...run, taredG: weighingG(run), reading: { ...NO_READING, source: run.reading.source, at: run.reading.at } }
 }
 
+/** Up to so many grams next to nothing stands on the scale, and a tare wipes nothing worth asking about. */
+const ASK_ABOVE_G = '5'
+
+/** True when a tare would wipe a reading that somebody may still need. */
+export const asksBeforeTare = (run: BenchRun): boolean => new D(run.reading.grams || '0').gt(ASK_ABOVE_G)
+
 export function chooseLot(run: BenchRun, index: number, lotId: string): BenchRun {
   return { ...run, lots: run.lots.map((lot, place) => (place === index ? lotId : lot)) }
 }

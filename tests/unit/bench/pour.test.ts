@@ -2,7 +2,7 @@ import { describe, expect, it } from 'vitest'
 import { acceptCorrection, correctionLines, judgeRun, keepAsPoured } from '#shared/utils/bench-judge'
 import { draftOf } from '#shared/utils/bench-draft'
 import { reckon } from '#shared/utils/bench-reckon'
-import { acceptUndecided, baseStirred, canEmpty, nextStep, poursOf, pouredG, startRun, stopRun, takeReading, tared } from '#shared/utils/bench-run'
+import { acceptUndecided, asksBeforeTare, baseStirred, canEmpty, nextStep, poursOf, pouredG, startRun, stopRun, takeReading, tared } from '#shared/utils/bench-run'
 import type { BenchRun } from '#shared/utils/bench-run'
 import { DraftBody } from '#shared/schemas/drafts'
 import { id, setup, snapshot, tools } from './shop'
@@ -124,5 +124,12 @@ describe('the draft that is sent', () => {
     const run = stopRun(read(begin(), '100'), { at: new Date(at).toISOString(), reason: 'Spilled', disposal: 'paint waste' })
     expect(DraftBody.parse(draftOf({ ...run, seq: 1 }, new Date(at).toISOString(), null)).stopped?.reason).toBe('Spilled')
     expect(poursOf(run)).toHaveLength(1)
+  })
+})
+
+describe('a tare', () => {
+  it.each([['', false], ['5', false], ['5.1', true], ['1000', true]])('asks with %j g on the scale: %s', (grams, asks) => {
+    const run = begin()
+    expect(asksBeforeTare({ ...run, reading: { ...run.reading, grams } })).toBe(asks)
   })
 })
