@@ -1,0 +1,39 @@
+import { randomUUID } from 'node:crypto'
+import { afterAll, beforeAll, describe, expect, it } from 'vitest'
+import { findTimerOf } from '../../server/repositories/timers'
+import { saveDraft } from '../../server/services/drafts'
+import { settleDue } from '../../server/services/due-timers'
+import { draftBody, poured } from '../factories/drafts'
+import { openLiveShop, type LiveShop } from './support/live'
+
+let live: LiveShop
+beforeAll(async () => { live = await openLiveShop('due') }, 120_000)
+afterAll(() => live.drop())
+
+/** Resolves when a transaction of this database waits for a lock. */
+async function somebodyWaits(): Promise<void> {
+  const late = AbortSignal.timeout(10_000)
+  for (;;) {
+    late.throwIfAborted()
+    const waiting = await live.admin('information_schema.innodb_trx').where('trx_state', 'LOCK WAIT').first('trx_id')
+    if (waiting) return
+  }
+}
+
+describe('a timer that comes due while its batch is being sealed', () => {
+  it('waits for the end of that and then looks at what the pot is', async () => {
+    const id = randomUUID()
+    const at = new Date(live.time.now).toISOString()
+    const components = (poured(live.shop, ['100', '50', '20']) ?? []).map((one) => ({ ...one, pours: one.pours.map((pour) => ({ ...pour, at })) }))
+    await saveDraft(live.as('sprayer'), id, draftBody(live.shop, { components, reactiveAt: at, plan: { totalG: '170', scaleDivisionG: '0.1' } }))
+    const timer = await findTimerOf('pot-up', 'batch', id, live.db)
+    live.time.now += 121 * 60_000
+    const sealing = await live.admin.transaction()
+    await sealing('batch_drafts').where({ id }).update({ state: 'stopped' })
+    const settling = settleDue(live.as('sprayer'), { id: timer?.id ?? '', action: 'fire' })
+    await somebodyWaits()
+    await sealing.commit()
+    expect(await settling).toBe(true)
+    expect(await findTimerOf('pot-up', 'batch', id, live.db)).toMatchObject({ state: 'cancelled' })
+  })
+})
