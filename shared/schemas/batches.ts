@@ -1,5 +1,6 @@
 import * as z from 'zod/mini'
 import { BatchState } from './batch-states'
+import { WorkingLine } from './common'
 import { DraftCorrection, DraftPlan, PotLife, pourSources } from './drafts'
 import { Cursor, DateText, DecimalText, Flag, GramsText, InstantText, Limit, Uuid, words } from './fields'
 
@@ -126,10 +127,6 @@ export const BatchComponent = z.strictObject({
 })
 export type BatchComponent = z.infer<typeof BatchComponent>
 
-const WorkingLines = z.array(z.strictObject({
-  what: z.string(), formula: z.string(), value: z.string(), unit: z.string(),
-}))
-
 const batchEventKinds = ['first-spray', 'last-spray', 'emptied', 'review-settled', 'note'] as const
 
 const BatchEvent = z.strictObject({
@@ -185,7 +182,7 @@ export const Batch = z.strictObject({
   corrections: z.array(DraftCorrection),
   stopped: z.nullable(z.strictObject({ at: InstantText, reason: z.string(), disposal: z.string() })),
   /** Every sum behind the figures, as reckoned when the batch was sealed. */
-  working: WorkingLines,
+  working: z.array(WorkingLine),
   engineVersion: z.string(),
   pieces: z.array(z.strictObject({
     id: Uuid, position: z.int(), label: z.string(), quantity: z.int(), areaM2: DecimalText, rack: z.nullable(z.string()),
