@@ -18,6 +18,7 @@ async function main(direction: string | undefined): Promise<void> {
       process.stdout.write(`${JSON.stringify({ rolledBack: names })}\n`)
       return
     }
+    await demandAnswer(knex)
     await demandDurableCommits(knex)
     const [, applied] = await knex.migrate.latest(knexConfig.migrations) as [number, string[]]
     await applyGrants(knex, decodeURIComponent(new URL(databaseUrl).username))
@@ -25,6 +26,17 @@ async function main(direction: string | undefined): Promise<void> {
   }
   finally {
     await knex.destroy()
+  }
+}
+
+/** @throws {Error} that names the setting when the database does not answer or does not let the admin in */
+async function demandAnswer(knex: ReturnType<typeof createKnex>): Promise<void> {
+  try {
+    await knex.raw('SELECT 1')
+  }
+  catch (error) {
+    const why = error instanceof Error && 'code' in error ? String(error.code) : String(error).split('\n')[0]
+    throw new Error(`DATABASE_ADMIN_URL leads to no database that lets the admin in (${why}).`, { cause: error })
   }
 }
 

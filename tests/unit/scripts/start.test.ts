@@ -10,6 +10,8 @@ import { runNode, temporaryFolder } from './helpers'
 
 const script = fileURLToPath(new URL('../../../scripts/start.mjs', import.meta.url))
 
+const migrations = fileURLToPath(new URL('../../../scripts/migrate.ts', import.meta.url))
+
 const start = (env: Record<string, string>) => runNode([script], env).ended
 
 describe('npm start', () => {
@@ -34,6 +36,17 @@ describe('npm start', () => {
   ])('stops on %j with the name of the setting', async (env, output) => {
     expect(await start({ POTBELL_DATA_DIR: temporaryFolder(), ...env })).toEqual({ code: 1, output })
   })
+
+  it('names the setting when the database of one\'s own does not answer', async () => {
+    const server = createServer()
+    await new Promise<void>(done => server.listen(0, '127.0.0.1', done))
+    const { port } = server.address() as AddressInfo
+    await new Promise<void>(done => server.close(() => done()))
+    const url = `mysql://a:b@127.0.0.1:${port}/shop`
+    const { code, output } = await runNode(['--import', 'tsx', migrations, 'latest'], { DATABASE_URL: url, DATABASE_ADMIN_URL: url }).ended
+    expect(code).toBe(1)
+    expect(output).toContain('DATABASE_ADMIN_URL leads to no database that lets the admin in (ECONNREFUSED).')
+  }, 30_000)
 
   it('leaves a data folder to the run that works on it', async () => {
     const folder = temporaryFolder()
