@@ -43,6 +43,10 @@ function database(): Promise<IDBPDatabase<BenchDb>> {
       db.createObjectStore('snapshot')
       db.createObjectStore('outbox', { keyPath: 'id' }).createIndex('createdAt', 'createdAt')
     },
+  }).catch((error: unknown) => {
+    // A disk that could not be opened once is tried again at the next call.
+    opened = null
+    throw error
   })
   return opened
 }
