@@ -30,6 +30,13 @@ export async function setUpLooseMix(page: Page, mixName: string, areaM2: string)
   await page.getByRole('region', { name: 'Pour' }).waitFor()
 }
 
+/** The code that the server gave to the pot at hand, once it has come. */
+export async function codeOf(page: Page): Promise<string> {
+  const code = /B-\d{4,}/
+  await page.getByRole('main').filter({ hasText: code }).waitFor()
+  return code.exec(await page.getByRole('main').innerText())?.[0] ?? ''
+}
+
 /** Confirms what has to be worn, one tap a thing, where a sheet asks. */
 export async function putOnWhatIsAsked(page: Page): Promise<void> {
   const asked = page.getByRole('dialog').getByRole('button', { pressed: false })

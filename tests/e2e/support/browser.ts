@@ -37,12 +37,17 @@ interface VisitorOptions {
   clockOffMs?: number
   /** Answers of the API that are expected to fail, so that the browser's own line about them is no fault. */
   expectedStatuses?: number[]
+  /** Cookies of somebody who has signed in already, as `signedInAs` gives them. */
+  as?: SignedIn
+  /** The network is going to be cut: the browser's own lines about that are no fault. */
+  losesNetwork?: boolean
 }
 
 /** Opens a page that collects its faults. Check them with `expect(visitor.faults).toEqual([])`. */
 export async function visit(browser: Browser, options: VisitorOptions = {}): Promise<Visitor> {
   const context = await browser.newContext({
     viewport: screens[options.screen ?? 'office'],
+    ...(options.as ? { storageState: options.as } : {}),
     reducedMotion: options.reducedMotion ? 'reduce' : 'no-preference',
     locale: 'en-GB',
   })
@@ -58,25 +63,51 @@ export async function visit(browser: Browser, options: VisitorOptions = {}): Pro
   page.on('console', (message) => {
     const text = message.text()
     const isFault = message.type() === 'error' || /hydration|content security policy/i.test(text)
-    if (isFault && !expected.some((status) => text.includes(`status of ${status}`))) faults.push(`${message.type()}: ${text}`)
+    const isExpected = expected.some((status) => text.includes(`status of ${status}`)) || (options.losesNetwork && /net::ERR_/.test(text))
+    if (isFault && !isExpected) faults.push(`${message.type()}: ${text}`)
   })
   page.on('pageerror', (error) => faults.push(`thrown: ${error.message}`))
   return { context, page, faults, close: () => context.close() }
 }
 
-/** Signs in through the form, as a person would. */
-export async function signIn(page: Page, role: 'sprayer' | 'foreman' | 'manager', to = '/'): Promise<void> {
-  await page.goto(`${baseUrl}/sign-in${to === '/' ? '' : `?to=${encodeURIComponent(to)}`}`)
+/** Waits until the page that the server drew answers to presses. */
+export async function alive(page: Page): Promise<void> {
   await page.waitForFunction(() => '__vue_app__' in (document.querySelector('#__nuxt') ?? {}))
+}
+
+/** Signs in through the form, as a person would. */
+export async function signIn(page: Page, role: 'sprayer' | 'foreman' | 'manager', to = '/', server = baseUrl): Promise<void> {
+  await page.goto(`${server}/sign-in${to === '/' ? '' : `?to=${encodeURIComponent(to)}`}`)
+  await alive(page)
   await page.getByLabel('E-mail').fill(`${role}@potbell.example`)
   await page.getByLabel('Password', { exact: true }).fill(demoPassword)
   await page.getByRole('button', { name: 'Sign in', exact: true }).click()
   await page.waitForURL((url) => !url.pathname.startsWith('/sign-in'))
 }
 
-/** What axe finds on the page as it stands: rule and the elements that break it. WCAG 2.2 A and AA. */
-export async function axeFaults(page: Page): Promise<string[]> {
-  const { violations } = await new AxeBuilder({ page }).withTags(['wcag2a', 'wcag2aa', 'wcag21a', 'wcag21aa', 'wcag22aa']).analyze()
+/** Cookies of one signed-in person, for pages that are not about signing in. */
+export type SignedIn = Awaited<ReturnType<BrowserContext['storageState']>>
+
+export async function signedInAs(browser: Browser, role: 'sprayer' | 'foreman' | 'manager'): Promise<SignedIn> {
+  const { context, page, close } = await visit(browser)
+  await signIn(page, role)
+  const state = await context.storageState()
+  await close()
+  return state
+}
+
+/**
+ * What axe finds on the page as it stands: rule and the elements that break it. WCAG 2.2 A and AA.
+ *
+ * @param options.colours false leaves the slowest rule out, where the same page was looked at in the same colours
+ */
+export async function axeFaults(page: Page, { colours = true }: { colours?: boolean } = {}): Promise<string[]> {
+  const builder = new AxeBuilder({ page }).options({
+    resultTypes: ['violations'],
+    runOnly: ['wcag2a', 'wcag2aa', 'wcag21a', 'wcag21aa', 'wcag22aa'],
+    rules: { 'color-contrast': { enabled: colours } },
+  })
+  const { violations } = await builder.analyze()
   return violations.flatMap(({ id, nodes }) => nodes.map(({ target }) => `${id}: ${target.join(' ')}`))
 }
 

@@ -1,0 +1,117 @@
+import { afterAll, beforeAll, describe, expect, it } from 'vitest'
+import { createKnex } from '../../server/database/connection'
+import { alive, axeFaults, baseUrl, overflowsSideways, screens, signIn } from './support/browser'
+import { useVisitors } from './support/visitors'
+
+const admin = createKnex(process.env.DATABASE_ADMIN_URL ?? '', { poolMax: 1 })
+const { visit, visitAs } = useVisitors()
+afterAll(() => admin.destroy())
+
+/** Tables whose newest row has a page of its own. */
+const things = ['batches', 'jobs', 'materials', 'lots', 'mixes', 'schedules'] as const
+const ids = new Map<string, string>()
+
+beforeAll(async () => {
+  for (const table of things) {
+    const row = await admin(table).orderBy('id').first<{ id: string }>('id')
+    ids.set(table, row.id)
+  }
+})
+
+const pages = [...things.map((table) => `/${table}`), ...things.map((table) => `/${table}/:id`), '/shop']
+
+describe('office pages', () => {
+  it.each(pages)('%s has a heading, fits desk and phone, and axe finds nothing', async (path) => {
+    const { page } = await visitAs('manager')
+    await page.goto(baseUrl + path.replace(':id', ids.get(path.split('/')[1] ?? '') ?? ''))
+    await page.getByRole('heading', { level: 1 }).waitFor()
+    expect(await overflowsSideways(page)).toBe(false)
+    expect(await axeFaults(page)).toEqual([])
+    await page.setViewportSize(screens.phone)
+    expect(await overflowsSideways(page)).toBe(false)
+    expect(await axeFaults(page, { colours: false })).toEqual([])
+  })
+})
+
+describe('signing in', () => {
+  it('says what is wrong beside the field, keeps what was typed, and axe finds nothing', async () => {
+    const { page } = await visit({ screen: 'phone', expectedStatuses: [401] })
+    await page.goto(`${baseUrl}/sign-in`)
+    await alive(page)
+    await page.getByRole('button', { name: 'Sign in', exact: true }).click()
+    expect(await page.getByLabel('E-mail').getAttribute('aria-invalid')).toBe('true')
+    await page.getByLabel('E-mail').fill('foreman@potbell.example')
+    await page.getByLabel('Password', { exact: true }).fill('not this')
+    await page.getByRole('button', { name: 'Sign in', exact: true }).click()
+    await page.getByText('This e-mail address and password do not go together.').waitFor()
+    expect(await page.getByLabel('E-mail').inputValue()).toBe('foreman@potbell.example')
+    expect(await axeFaults(page)).toEqual([])
+    expect(await overflowsSideways(page)).toBe(false)
+  })
+
+  it('leads back to the page that was asked for, and never to another site', async () => {
+    const { page } = await visit()
+    await page.goto(`${baseUrl}/jobs?state=done`)
+    await page.waitForURL((url) => url.pathname === '/sign-in')
+    await signIn(page, 'foreman', '/jobs?state=done')
+    expect(new URL(page.url()).pathname + new URL(page.url()).search).toBe('/jobs?state=done')
+    const other = await visit()
+    await signIn(other.page, 'foreman', '//elsewhere.example/')
+    expect(new URL(other.page.url()).origin).toBe(baseUrl)
+  })
+})
+
+describe('a list', () => {
+  it('says when nothing fits its filters and clears them', async () => {
+    const { page } = await visitAs('foreman')
+    await page.goto(`${baseUrl}/batches?from=2001-01-01&to=2001-01-02`)
+    await alive(page)
+    await page.getByRole('heading', { name: 'No batch fits these filters' }).waitFor()
+    await page.getByRole('main').getByRole('button', { name: 'Clear the filters' }).last().click()
+    await page.getByRole('row').nth(5).waitFor()
+    expect(new URL(page.url()).search).toBe('')
+  })
+
+  it('says when the server does not answer, and reads again when asked', async () => {
+    const { page } = await visitAs('foreman', { expectedStatuses: [503] })
+    await page.goto(`${baseUrl}/batches`)
+    await alive(page)
+    await page.route('**/api/batches?*', (route) => route.fulfill({ status: 503, json: { code: 'away', message: 'Away for a moment.', fields: [] } }))
+    await page.getByText('Deviations only').click()
+    await page.getByText('Away for a moment.').waitFor()
+    await page.unroute('**/api/batches?*')
+    await page.getByRole('button', { name: 'Try again' }).click()
+    await page.getByRole('row').nth(2).waitFor()
+  })
+
+  it('goes by keyboard: arrows move, Enter opens, and older rows come below', async () => {
+    const { page } = await visitAs('foreman')
+    await page.goto(`${baseUrl}/batches`)
+    await alive(page)
+    const rows = page.locator('tr[data-row]')
+    const first = await rows.count()
+    await page.getByRole('button', { name: 'Show older batches' }).click()
+    await rows.nth(first).waitFor()
+    await rows.first().focus()
+    await page.keyboard.press('ArrowDown')
+    await page.keyboard.press('Enter')
+    await page.waitForURL((url) => /^\/batches\/[0-9a-f-]{36}$/.test(url.pathname))
+  })
+
+  it('shows the sum behind a total when it is opened', async () => {
+    const { page } = await visitAs('foreman')
+    await page.goto(`${baseUrl}/batches/${ids.get('batches')}`)
+    await alive(page)
+    await page.getByRole('button', { name: /show the sum/ }).first().click()
+    await page.getByRole('dialog', { name: 'How the grams were reckoned' }).waitFor()
+  })
+})
+
+describe('the error page', () => {
+  it('says in plain words that there is nothing at an address', async () => {
+    const { page } = await visitAs('foreman', { expectedStatuses: [404] })
+    await page.goto(`${baseUrl}/no-such-page`)
+    await page.getByRole('heading', { name: 'There is nothing at this address' }).waitFor()
+    expect(await axeFaults(page)).toEqual([])
+  })
+})

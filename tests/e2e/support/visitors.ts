@@ -1,0 +1,42 @@
+import type { Browser } from 'playwright-core'
+import { afterAll, afterEach, beforeAll, expect } from 'vitest'
+import { launch, signedInAs, visit, type SignedIn, type Visitor } from './browser'
+
+interface Visitors {
+  /** Opens a browser of somebody of their own. */
+  visit: (options?: Parameters<typeof visit>[1]) => Promise<Visitor>
+  /** Opens one in which the person is signed in already. */
+  visitAs: (role: 'sprayer' | 'foreman' | 'manager', options?: Parameters<typeof visit>[1]) => Promise<Visitor>
+}
+
+/**
+ * Gives a test file its browser and browsers of people, and fails a test in which any of them saw a console error, a
+ * hydration fault, a policy report or a thrown error.
+ */
+export function useVisitors(): Visitors {
+  let browser: Browser
+  const known = new Map<string, SignedIn>()
+  const open: Visitor[] = []
+  beforeAll(async () => {
+    browser = await launch()
+  })
+  afterEach(async () => {
+    const faults = open.flatMap((visitor) => visitor.faults)
+    for (const visitor of open.splice(0)) await visitor.close()
+    expect(faults).toEqual([])
+  })
+  afterAll(() => browser.close())
+  async function opened(options?: Parameters<typeof visit>[1]): Promise<Visitor> {
+    const visitor = await visit(browser, options)
+    open.push(visitor)
+    return visitor
+  }
+  return {
+    visit: opened,
+    async visitAs(role, options) {
+      const as = known.get(role) ?? await signedInAs(browser, role)
+      known.set(role, as)
+      return opened({ ...options, as })
+    },
+  }
+}
