@@ -2,7 +2,7 @@ import type { Knex } from 'knex'
 import type { Page } from 'playwright-core'
 
 /** Grams as a screen prints them, as the keypad takes them: the first number, without thin spaces. */
-export const gramsIn = (text: string): string => (/[\d\u2009\u202f ]+(?:\.\d+)?/.exec(text)?.[0] ?? '').replace(/[^\d.]/g, '')
+const gramsIn = (text: string): string => (/[\d\u2009\u202f ]+(?:\.\d+)?/.exec(text)?.[0] ?? '').replace(/[^\d.]/g, '')
 
 /** A polyurethane mix of the shop whose life is neither very short nor very long and that needs no standing time. */
 export async function reactingMix(admin: Knex): Promise<{ name: string; potLifeMin: number }> {
