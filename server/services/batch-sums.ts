@@ -95,16 +95,16 @@ export interface BatchSums {
 
 /**
  * Reckons a batch anew from what was planned and poured. The base is judged for the record only: the others follow it,
- * so its own distance from the plan spoils no ratio.
+ * so its own distance from the plan spoils no ratio. Where a correction was taken, it is what was meant from then on.
  *
  * @throws EngineError for a plan that cannot be
  */
-export function judgeBatch(revision: MixRevision, body: Pick<DraftBody, 'plan' | 'components'>, scale: ScaleRecord | null): BatchSums {
+export function judgeBatch(revision: MixRevision, body: Pick<DraftBody, 'plan' | 'components' | 'corrections'>, scale: ScaleRecord | null): BatchSums {
   const plan = planOf(revision, body.plan, scale)
   const { divisionG, mpeG, ...record } = scaleInputOf(scale, body.plan)
   const mix = mixInputOf(revision, body.plan)
   const poured = pouredOf(body)
-  const pour = calculatePour({ mix, scaleDivisionG: divisionG, scaleMpeG: mpeG, targetTotalG: plan.exactTotalG, poured }, { scale: record })
+  const pour = calculatePour({ mix, scaleDivisionG: divisionG, scaleMpeG: mpeG, targetTotalG: meantTotalG(plan, body.corrections), poured }, { scale: record })
   const baseIndex = readMix(mix).baseIndex
   const followers = pour.components.filter((_, index) => index !== baseIndex)
   const deviations = followers.flatMap(({ deviationPct }) => (deviationPct === null ? [] : [new D(deviationPct)]))
@@ -117,6 +117,12 @@ export function judgeBatch(revision: MixRevision, body: Pick<DraftBody, 'plan' |
     outOfTolerance: followers.some(({ verdict }) => verdict === 'short' || verdict === 'too-much'),
     working: [...plan.working, ...pourWorking(mix, poured, pour, baseIndex)],
   }
+}
+
+/** The plan's total, or that of the last correction that was taken, grams. */
+function meantTotalG(plan: BatchPlan, corrections: DraftBody['corrections']): string {
+  const taken = corrections.filter(({ accepted }) => accepted).at(-1)
+  return taken ? print(sum(taken.newTargets.map((grams) => new D(grams)))) : plan.exactTotalG
 }
 
 function pourWorking(mix: MixInput, poured: { index: number; pouredG: string }[], pour: PourAnswer, baseIndex: number): WorkingLine[] {

@@ -1,7 +1,7 @@
 import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { D } from '#shared/engine/decimal'
-import type { DraftPlan } from '#shared/schemas/drafts'
+import type { DraftBody, DraftPlan } from '#shared/schemas/drafts'
 import type { ScaleRecord } from '../../../server/repositories/draft-references'
 import type { MixRevision, RevisionComponent } from '../../../server/repositories/mix-revisions'
 import {
@@ -24,6 +24,7 @@ const poured = (...grams: string[][]) => ({
   components: grams.map((pours, index) => ({ index, pours: pours.map((one) => ({ lotId: 'l', grams: one, at, source: 'typed' as const, round: 0 })) })),
 })
 const now = Date.parse(at)
+const judged = (body: ReturnType<typeof poured>, corrections: DraftBody['corrections'] = []) => judgeBatch(revision, { plan, ...body, corrections }, null)
 
 describe('a plan', () => {
   it('is for this mix when it names none, or the same within its ranges', () => {
@@ -72,7 +73,7 @@ describe('what was poured', () => {
   })
 
   it('is judged against the base as poured', () => {
-    const sums = judgeBatch(revision, { plan, ...poured(['1003'], ['501.5'], ['200']) }, null)
+    const sums = judged(poured(['1003'], ['501.5'], ['200']))
     expect(sums.pour.components.map(({ targetG, verdict }) => [targetG, verdict])).toEqual([['1000', 'in-tolerance'], ['501.5', 'in-tolerance'], ['200.6', 'in-tolerance']])
     expect(sums).toMatchObject({ pouredTotalG: '1704.5', outOfTolerance: false })
     expect(sums.worstDeviationPct).toBe('-0.299102691924')
@@ -80,19 +81,26 @@ describe('what was poured', () => {
   })
 
   it('is out of tolerance by what follows the base, never by the base itself', () => {
-    expect(judgeBatch(revision, { plan, ...poured(['1200'], ['600'], ['240']) }, null).outOfTolerance).toBe(false)
-    expect(judgeBatch(revision, { plan, ...poured(['1000'], ['520'], ['200']) }, null)).toMatchObject({ outOfTolerance: true, worstDeviationPct: '4' })
-    expect(judgeBatch(revision, { plan, ...poured(['1000'], ['500'], ['180']) }, null)).toMatchObject({ outOfTolerance: true, worstDeviationPct: '-10' })
+    expect(judged(poured(['1200'], ['600'], ['240'])).outOfTolerance).toBe(false)
+    expect(judged(poured(['1000'], ['520'], ['200']))).toMatchObject({ outOfTolerance: true, worstDeviationPct: '4' })
+    expect(judged(poured(['1000'], ['500'], ['180']))).toMatchObject({ outOfTolerance: true, worstDeviationPct: '-10' })
+  })
+
+  it('measures the base by the correction that was taken, and by the plan where one was declined', () => {
+    const correction = { at, cause: 'reactive-too-much', newTargets: ['1200', '600', '240'], reason: null, approvalId: null }
+    const cup = poured(['1000', '200'], ['600'], ['240'])
+    expect(judged(cup, [{ ...correction, accepted: true }]).pour.components[0]).toMatchObject({ targetG: '1200', verdict: 'in-tolerance', deviationPct: '0' })
+    expect(judged(cup, [{ ...correction, accepted: false }]).pour.components[0]).toMatchObject({ targetG: '1000', verdict: 'too-much' })
   })
 
   it('has no ratio while the base is missing', () => {
-    expect(judgeBatch(revision, { plan, ...poured([], ['500']) }, null)).toMatchObject({ worstDeviationPct: null, pouredTotalG: '500' })
+    expect(judged(poured([], ['500']))).toMatchObject({ worstDeviationPct: null, pouredTotalG: '500' })
   })
 
   it('adds up to its parts, whatever was poured', () => {
     const tenths = fc.integer({ min: 1, max: 20_000 }).map((n) => new D(n).div(10).toString())
     fc.assert(fc.property(fc.array(tenths, { minLength: 1, maxLength: 5 }), fc.array(tenths, { maxLength: 5 }), tenths, (base, hardener, thinner) => {
-      const { pouredTotalG, pour } = judgeBatch(revision, { plan, ...poured(base, hardener, [thinner]) }, null)
+      const { pouredTotalG, pour } = judged(poured(base, hardener, [thinner]))
       const whole = [...base, ...hardener, thinner].reduce((total, one) => total.plus(one), new D(0))
       expect(pouredTotalG).toBe(whole.toString())
       expect(pour.components.reduce((total, one) => total.plus(one.pouredG ?? 0), new D(0)).toString()).toBe(pouredTotalG)
