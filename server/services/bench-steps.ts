@@ -1,7 +1,8 @@
 import type { Knex } from 'knex'
 import { D, sum } from '#shared/engine/decimal'
-import type { BenchDraft, BenchStep } from '#shared/schemas/bench'
+import type { BenchStep } from '#shared/schemas/bench'
 import { listPieceFacts, listStepFacts, listTreatments, type PieceFacts, type StepFacts, type Treatment } from '../repositories/bench-steps'
+import { listMixedPots, type MixedPot } from '../repositories/mixed-pots'
 import { findWindows, type OpenWindow } from '../repositories/windows'
 import { stateOf } from './windows'
 
@@ -14,13 +15,11 @@ export interface BenchFacts {
   pieces: PieceFacts[]
   treatments: Treatment[]
   windows: OpenWindow[]
-  drafts: Pick<BenchDraft, 'code' | 'jobStepId' | 'mixedByName'>[]
+  pots: MixedPot[]
 }
 
 /** Reads the facts in one transaction's view. */
-export async function readBenchFacts(
-  moment: { now: number; today: string; dayStart: number }, drafts: BenchDraft[], trx: Knex.Transaction,
-): Promise<BenchFacts> {
+export async function readBenchFacts(moment: { now: number; today: string; dayStart: number }, trx: Knex.Transaction): Promise<BenchFacts> {
   const steps = await listStepFacts(moment.today, trx)
   const jobIds = [...new Set(steps.map(({ jobId }) => jobId))]
   return {
@@ -30,7 +29,7 @@ export async function readBenchFacts(
     pieces: await listPieceFacts(jobIds, trx),
     treatments: await listTreatments(jobIds, trx),
     windows: await findWindows({ jobIds }, trx),
-    drafts,
+    pots: await listMixedPots(jobIds, trx),
   }
 }
 
@@ -46,10 +45,15 @@ type Verdict = Pick<BenchStep, 'ready' | 'reason' | 'until'>
 interface JudgedPiece {
   piece: PieceFacts
   verdict: Verdict
+  /** Pots for this piece in this step. */
+  pots: MixedPot[]
+  coatsLeft: number
+  /** It could be coated, and all its coats are mixed or being mixed. */
+  isMixed: boolean
 }
 
 /** Which verdict speaks for a step whose pieces differ: what can be done first, then what comes soonest. */
-const loudest = ['ready', 'wait', 'sand', 'held', 'done'] as const
+const loudest = ['ready', 'mixing', 'wait', 'sand', 'held', 'done'] as const
 
 /**
  * The coats that stand next, one row a step: each piece's next coat is the first that it has not got, and it may be
@@ -64,7 +68,7 @@ export function benchSteps(facts: BenchFacts): BenchStep[] {
     steps: facts.steps.filter((step) => step.jobId === jobId),
     pieces: facts.pieces.filter((piece) => piece.jobId === jobId),
     windows: facts.windows.filter((window) => window.jobId === jobId),
-    drafts: facts.drafts,
+    pots: facts.pots,
     treatments,
   }))
 }
@@ -73,13 +77,29 @@ function stepsOfJob(facts: JobFacts): BenchStep[] {
   const byStep = new Map<string, JudgedPiece[]>()
   for (const piece of facts.pieces) {
     for (const { step, verdict } of judgePiece(piece, facts)) {
-      byStep.set(step.id, [...(byStep.get(step.id) ?? []), { piece, verdict }])
+      byStep.set(step.id, [...(byStep.get(step.id) ?? []), withPots(step, piece, verdict, facts)])
     }
   }
   return facts.steps.flatMap((step) => {
     const judged = byStep.get(step.id)
-    return judged ? [toBenchStep(step, judged, facts)] : []
+    return judged ? [toBenchStep(step, judged)] : []
   })
+}
+
+/** What is mixed for a piece already, and what that leaves of its verdict: nothing has to be mixed twice. */
+function withPots(step: StepFacts, piece: PieceFacts, verdict: Verdict, facts: JobFacts): JudgedPiece {
+  const pots = facts.pots.filter(({ jobStepId, pieceIds }) => jobStepId === step.id && (pieceIds.length === 0 || pieceIds.includes(piece.id)))
+  const coatsLeft = Math.max(0, step.coats - Math.max(coatsMixed(pots), treatment(step, piece, facts)?.times ?? 0))
+  if (verdict.ready !== 'ready' || coatsLeft > 0) return { piece, verdict, pots, coatsLeft, isMixed: false }
+  const ready = pots.some(({ state }) => state !== 'over') ? 'mixing' : 'done'
+  return { piece, verdict: { ready, reason: null, until: null }, pots, coatsLeft, isMixed: true }
+}
+
+/** Pots of one plan lay the same coats, so that a plan counts once for a piece. */
+function coatsMixed(pots: readonly MixedPot[]): number {
+  const byPlan = new Map<string, number>()
+  for (const { planId, coats } of pots) byPlan.set(planId, Math.max(byPlan.get(planId) ?? 0, coats))
+  return [...byPlan.values()].reduce((all, coats) => all + coats, 0)
 }
 
 /** The piece's next coat, and the coat that it got today. */
@@ -129,21 +149,31 @@ function isLeftToDo(step: StepFacts, piece: PieceFacts, facts: JobFacts): boolea
   return treatment(step, piece, facts) === undefined
 }
 
-function toBenchStep(step: StepFacts, judged: JudgedPiece[], facts: JobFacts): BenchStep {
+function toBenchStep(step: StepFacts, judged: JudgedPiece[]): BenchStep {
   const ready = loudest.find((word) => judged.some(({ verdict }) => verdict.ready === word)) ?? 'done'
   const speaking = judged.filter(({ verdict }) => verdict.ready === ready)
-  const verdict = speaking.map((one) => one.verdict).reduce(soonest)
-  const draft = ready === 'done' ? undefined : facts.drafts.find(({ jobStepId }) => jobStepId === step.id)
-  const mixing = draft && ({ ready: 'mixing', reason: `${draft.code} is being mixed by ${draft.mixedByName}.`, until: null } as const)
-  const shown = judged.filter(({ verdict: own }) => own.ready === ready || own.ready === 'held')
+  const shown = judged.filter(({ verdict, isMixed }) => verdict.ready === ready || verdict.ready === 'held' || isMixed)
+  const toMix = speaking.filter(({ piece, coatsLeft }) => piece.heldReason === null && coatsLeft > 0)
   const { id: jobStepId, position: stepPosition, title: stepTitle, jobId, jobCode, jobTitle } = step
   const { mixId, mixRevisionId, filmWeightGsm, filmWeightIs, coats, gunShape, boothId, gunId } = step
   return {
     jobStepId, jobId, jobCode, jobTitle, stepPosition, stepTitle, mixId, mixRevisionId, filmWeightGsm, filmWeightIs, coats, gunShape, boothId, gunId,
-    pieces: shown.map(({ piece: { id, label, areaM2, quantity, faces, rack, heldReason } }) => ({ id, label, areaM2, quantity, faces, rack, heldReason })),
-    areaM2: sum(speaking.filter(({ piece }) => piece.heldReason === null).map(({ piece }) => new D(piece.areaM2))).toString(),
-    ...(mixing ?? verdict),
+    pieces: shown.map(({ piece: { id, label, areaM2, quantity, faces, rack, heldReason }, coatsLeft }) =>
+      ({ id, label, areaM2, quantity, faces, rack, heldReason, coatsLeft })),
+    areaM2: sum(toMix.map(({ piece }) => new D(piece.areaM2))).toString(),
+    ...(ofPots(ready, speaking) ?? speaking.map(({ verdict }) => verdict).reduce(soonest)),
   }
+}
+
+/** What the pots say where they decide: who is mixing, what stands mixed, or that all is mixed. */
+function ofPots(ready: Verdict['ready'], speaking: readonly JudgedPiece[]): Verdict | null {
+  if (ready === 'ready') return null
+  const pots = [...new Set(speaking.filter(({ isMixed }) => isMixed || ready !== 'done').flatMap((one) => one.pots))]
+  const draft = pots.find(({ state }) => state === 'mixing')
+  if (draft) return { ready: 'mixing', reason: `${draft.code} is being mixed by ${draft.mixedByName}.`, until: null }
+  const codes = (of: readonly MixedPot[]) => of.map(({ code }) => code).join(', ')
+  if (ready === 'mixing') return { ready, reason: `Mixed, to be sprayed: ${codes(pots.filter(({ state }) => state === 'standing'))}.`, until: null }
+  return ready === 'done' && pots.length > 0 ? { ready, reason: `All pieces are mixed: ${codes(pots)}.`, until: null } : null
 }
 
 /** Of equal verdicts the one whose instant comes first; one with an instant says more than one without. */

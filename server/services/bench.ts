@@ -26,7 +26,6 @@ export function readBench(ctx: Context): Promise<BenchSnapshot> {
     const now = await ctx.clock.now(trx)
     const { zone } = await readShop(trx)
     const today = shopDate(now, zone)
-    const drafts = await listOpenDrafts(trx)
     return {
       serverNow: isoOf(toInstant(now)),
       lastSeq,
@@ -38,8 +37,8 @@ export function readBench(ctx: Context): Promise<BenchSnapshot> {
       cups: await listBenchCups(trx),
       booths: await benchBooths(now, trx),
       people: await listBenchPeople(trx),
-      today: benchSteps(await readBenchFacts({ now, today, dayStart: startOfShopDay(today, zone) }, drafts, trx)),
-      drafts,
+      today: benchSteps(await readBenchFacts({ now, today, dayStart: startOfShopDay(today, zone) }, trx)),
+      drafts: await listOpenDrafts(trx),
     }
   })
 }

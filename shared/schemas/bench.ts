@@ -133,8 +133,10 @@ export const BenchStep = z.object({
     faces: z.enum(['front', 'back', 'both', 'edges', 'all']),
     rack: nullableString,
     heldReason: nullableString,
+    /** Coats of this step that are neither sprayed nor mixed nor being mixed for it; 0 where all are. */
+    coatsLeft: z.number(),
   })),
-  /** Sum over the pieces that are not held. */
+  /** Sum over the pieces that are not held and have coats left, of those that the readiness speaks of. */
   areaM2: z.string(),
   ready: z.enum(benchReadiness),
   /** Why it cannot be sprayed now, in words; null when it can. */

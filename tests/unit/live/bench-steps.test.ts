@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest'
 import type { PieceFacts, StepFacts } from '../../../server/repositories/bench-steps'
+import type { MixedPot } from '../../../server/repositories/mixed-pots'
 import type { OpenWindow } from '../../../server/repositories/windows'
 import { benchSteps, type BenchFacts } from '../../../server/services/bench-steps'
 
@@ -20,9 +21,11 @@ const treated = (jobStepId: string, pieceIds: string[], minutesAgo = 290, times 
   pieceIds.map((pieceId) => ({ jobStepId, pieceId, times, lastAt: now - minutesAgo * 60_000 }))
 
 const shop = (more: Partial<BenchFacts> = {}): BenchFacts => ({
-  now, dayStart: now - 10 * 3_600_000, drafts: [], windows: [], treatments: [], pieces: [piece('a'), piece('b', { areaM2: '0.6' })],
+  now, dayStart: now - 10 * 3_600_000, pots: [], windows: [], treatments: [], pieces: [piece('a'), piece('b', { areaM2: '0.6' })],
   steps: [step('sand-wood', 1, { kind: 'sand', title: 'Sand P150', state: 'done' }), step('seal', 2), step('top', 3)], ...more,
 })
+const pot = (code: string, pieceIds: string[], more: Partial<MixedPot> = {}): MixedPot =>
+  ({ code, planId: code, jobStepId: 'seal', pieceIds, coats: 1, mixedByName: 'Ada', state: 'standing', ...more })
 const rows = (facts: BenchFacts) => benchSteps(facts).map(({ jobStepId, ready, reason, areaM2, pieces }) =>
   ({ jobStepId, ready, reason, areaM2, pieces: pieces.map(({ id }) => id) }))
 
@@ -74,11 +77,52 @@ describe('the bench\'s list', () => {
   })
 
   it('says who is mixing for it', () => {
-    const drafts = [{ code: 'B-0042', jobStepId: 'seal', mixedByName: 'Ada' }]
-    expect(rows(shop({ drafts }))).toMatchObject([{ ready: 'mixing', reason: 'B-0042 is being mixed by Ada.' }])
+    const pots = [pot('B-0042', [], { state: 'mixing' })]
+    expect(rows(shop({ pots }))).toMatchObject([{ ready: 'mixing', reason: 'B-0042 is being mixed by Ada.', areaM2: '0' }])
+    expect(rows(shop({ pots, steps: [step('sand-wood', 1, { kind: 'sand', title: 'Sand P150' }), step('seal', 2)] })))
+      .toMatchObject([{ ready: 'mixing', reason: 'B-0042 is being mixed by Ada.' }])
   })
 
   it('has nothing for a job whose coats are all on', () => {
     expect(rows(shop({ treatments: [...treated('seal', ['a', 'b'], 3_000), ...treated('top', ['a', 'b'], 2_000)] }))).toEqual([])
+  })
+})
+
+describe('what is mixed already', () => {
+  const left = (facts: BenchFacts) => benchSteps(facts).map(({ ready, areaM2, pieces }) => [ready, areaM2, pieces.map(({ id, coatsLeft }) => `${id} ${coatsLeft}`).join()])
+
+  it('leaves the pieces that no pot was mixed for', () => {
+    expect(left(shop({ pots: [pot('B-1', ['a'])] }))).toEqual([['ready', '0.6', 'a 0,b 1']])
+    expect(left(shop({ pots: [pot('B-1', ['a'], { state: 'mixing' })] }))).toEqual([['ready', '0.6', 'a 0,b 1']])
+    expect(left(shop({ pots: [pot('B-1', ['a', 'b'], { jobStepId: 'top' })] }))).toEqual([['ready', '1', 'a 1,b 1']])
+  })
+
+  it('names the pots that stand mixed, and says when the last of them is over', () => {
+    const told = (...states: MixedPot['state'][]) => benchSteps(shop({ pots: states.map((state, index) => pot(`B-${index + 1}`, [index === 0 ? 'a' : 'b'], { state })) }))
+    expect(told('standing', 'standing')).toMatchObject([{ ready: 'mixing', reason: 'Mixed, to be sprayed: B-1, B-2.', areaM2: '0' }])
+    expect(told('over', 'standing')).toMatchObject([{ ready: 'mixing', reason: 'Mixed, to be sprayed: B-2.' }])
+    expect(told('over', 'over')).toMatchObject([{ ready: 'done', reason: 'All pieces are mixed: B-1, B-2.', until: null }])
+  })
+
+  it('counts the coats of each pot, and those of one plan once', () => {
+    const steps = [step('seal', 2, { coats: 2 })]
+    expect(left(shop({ steps, pots: [pot('B-1', ['a', 'b'])] }))).toEqual([['ready', '1', 'a 1,b 1']])
+    expect(left(shop({ steps, pots: [pot('B-1', ['a']), pot('B-2', ['a'])] }))).toEqual([['ready', '0.6', 'a 0,b 2']])
+    expect(left(shop({ steps, pots: [pot('B-1', [], { planId: 'plan' }), pot('B-2', [], { planId: 'plan' })] }))).toEqual([['ready', '1', 'a 1,b 1']])
+    expect(left(shop({ steps, pots: [pot('B-1', [], { coats: 2 })] }))).toEqual([['mixing', '0', 'a 0,b 0']])
+  })
+
+  it('takes off what was sprayed, with or without a pot of it', () => {
+    const steps = [step('seal', 2, { coats: 3 })]
+    const treatments = treated('seal', ['a'], 1_000, 2)
+    expect(left(shop({ steps, treatments }))).toEqual([['ready', '1', 'a 1,b 3']])
+    expect(left(shop({ steps, treatments, pots: [pot('B-1', ['a'], { coats: 2, state: 'over' })] }))).toEqual([['ready', '1', 'a 1,b 3']])
+  })
+
+  it('goes on to what waits when the rest is mixed and over', () => {
+    const facts = { windows: [window(['b'], 20, 500)], treatments: treated('seal', ['a', 'b'], 1_000) }
+    const pots = (state: MixedPot['state']) => [pot('B-1', ['a'], { jobStepId: 'top', state })]
+    expect(left(shop({ ...facts, pots: pots('standing') }))).toEqual([['mixing', '0', 'a 0']])
+    expect(left(shop({ ...facts, pots: pots('over') }))).toEqual([['wait', '0.6', 'a 0,b 1']])
   })
 })
