@@ -4,9 +4,9 @@ import type { Batch } from '#shared/schemas/batches'
 import type { BenchSnapshot } from '#shared/schemas/bench'
 import type { Draft } from '#shared/schemas/drafts'
 import { draftOf } from '#shared/utils/bench-draft'
-import { reckon } from '#shared/utils/bench-reckon'
+import { reckon, withFittingCup } from '#shared/utils/bench-reckon'
 import type { BenchRun } from '#shared/utils/bench-run'
-import { blankSetup, type BenchHome, type BenchSetup } from '#shared/utils/bench-setup'
+import { blankSetup, setupAfterPot, type BenchHome, type BenchSetup } from '#shared/utils/bench-setup'
 import { benchTools } from '#shared/utils/bench-tools'
 import { toIso } from '#shared/utils/instant'
 import { shopDate } from '#shared/utils/zone'
@@ -149,12 +149,13 @@ export const useBenchStore = defineStore('bench', () => {
     await outbox.put({ subject: next.id, kind: 'seal', method: 'POST', path: '/api/batches', body: { draftId: next.id } })
   }
 
-  /** Leaves the cup that is in the log; the form stands for the next one. */
+  /** Leaves the cup that is in the log; the form stands for what is left to mix. */
   async function leave(): Promise<void> {
     run.value = null
     logged.value = null
     await keep()
     await refresh()
+    if (setup.value && snapshot.value) await changeSetup(withFittingCup(setupAfterPot(setup.value, snapshot.value, home.value), snapshot.value))
   }
 
   outbox.listen((entry, answer) => {

@@ -212,8 +212,3 @@ export function byReadiness(steps: readonly BenchStep[]): BenchStep[] {
   const rank: Record<BenchStep['ready'], number> = { ready: 0, mixing: 1, wait: 2, sand: 3, held: 4, done: 5 }
   return [...steps].sort((a, b) => rank[a.ready] - rank[b.ready])
 }
-
-/** Exact sum of the chosen pieces, m². */
-export function areaOfPieces(step: BenchStep, pieceIds: readonly string[]): string {
-  return print(sum(step.pieces.filter(({ id }) => pieceIds.includes(id)).map(({ areaM2 }) => new D(areaM2))))
-}

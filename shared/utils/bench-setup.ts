@@ -1,3 +1,4 @@
+import { D, print, sum } from '../engine/decimal'
 import type { BenchMix, BenchSnapshot, BenchStep } from '../schemas/bench'
 import type { GunShape, ToolChoice } from './bench-tools'
 
@@ -68,16 +69,26 @@ export function blankSetup(snapshot: BenchSnapshot, home: BenchHome): BenchSetup
   }
 }
 
+/** What of a coat is still to be mixed: its pieces, the coats that all of them still need, and their exact area, m². */
+function toMix(step: BenchStep): Pick<BenchSetup, 'pieceIds' | 'coats' | 'areaM2'> {
+  const open = step.pieces.filter(({ heldReason, coatsLeft }) => heldReason === null && coatsLeft > 0)
+  const pieceIds = open.map(({ id }) => id)
+  if (open.length === 0) return { pieceIds, coats: step.coats, areaM2: '' }
+  return { pieceIds, coats: Math.min(...open.map(({ coatsLeft }) => coatsLeft)), areaM2: areaOfPieces(step, pieceIds) }
+}
+
+/** Exact sum of the chosen pieces, m². */
+export function areaOfPieces(step: BenchStep, pieceIds: readonly string[]): string {
+  return print(sum(step.pieces.filter(({ id }) => pieceIds.includes(id)).map(({ areaM2 }) => new D(areaM2))))
+}
+
 /** A row of today's list: material, pieces, coat weight, booth and gun as the schedule has them. */
 export function setupForStep(step: BenchStep, snapshot: BenchSnapshot, home: BenchHome, before: BenchSetup): BenchSetup {
-  const free = step.pieces.filter(({ heldReason }) => heldReason === null)
   const setup: BenchSetup = {
     ...blankSetup(snapshot, home),
     stepId: step.jobStepId,
     mixId: step.mixId ?? '',
-    areaM2: step.areaM2,
-    pieceIds: free.map(({ id }) => id),
-    coats: step.coats,
+    ...toMix(step),
     filmWeightGsm: step.filmWeightGsm ?? '',
     filmWeightIs: step.filmWeightIs,
     shape: step.gunShape,
@@ -85,6 +96,16 @@ export function setupForStep(step: BenchStep, snapshot: BenchSnapshot, home: Ben
   }
   const boothId = step.boothId ?? setup.boothId
   return chooseGun({ ...setup, boothId }, gunFor(snapshot, step.gunId, boothId), snapshot)
+}
+
+/**
+ * The form after a pot of it went into the log: gun, cup and coat weight stand, the pieces are those that are left.
+ * A coat that has left the list leaves an empty form.
+ */
+export function setupAfterPot(setup: BenchSetup, snapshot: BenchSnapshot, home: BenchHome): BenchSetup {
+  if (setup.stepId === null) return setup
+  const step = snapshot.today.find(({ jobStepId }) => jobStepId === setup.stepId)
+  return step === undefined ? { ...blankSetup(snapshot, home), scaleId: setup.scaleId } : { ...setup, ...toMix(step) }
 }
 
 /** The form for a mix without a job: its purpose has to be said. */
