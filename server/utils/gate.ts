@@ -2,11 +2,19 @@
 export class Gate {
   #free: number
   readonly #waiting: (() => void)[] = []
+  readonly #most: number
+  readonly #full: () => Error
 
-  /** @param width how many may run at once, at least 1 */
-  constructor(width: number) {
+  /**
+   * @param width how many may run at once, at least 1
+   * @param options.most how many may wait; without it, as many as come
+   * @param options.full what the next one gets when so many wait already
+   */
+  constructor(width: number, { most = Infinity, full = () => new Error('too many are waiting') }: { most?: number; full?: () => Error } = {}) {
     if (!Number.isSafeInteger(width) || width < 1) throw new RangeError('a gate needs a width of at least 1')
     this.#free = width
+    this.#most = most
+    this.#full = full
   }
 
   /** Runs `work` when there is room, and makes room again whether it succeeds or fails. */
@@ -24,6 +32,7 @@ export class Gate {
       this.#free--
       return Promise.resolve()
     }
+    if (this.#waiting.length >= this.#most) return Promise.reject(this.#full())
     return new Promise((resolve) => this.#waiting.push(resolve))
   }
 

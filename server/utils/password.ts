@@ -1,12 +1,17 @@
 import { randomBytes } from 'node:crypto'
 import { Scrypt } from '@adonisjs/hash/drivers/scrypt'
+import { Refusal } from './errors'
 import { Gate } from './gate'
 
 /** 32 MiB and about 0.1 s a hash; Node refuses this cost without the higher `maxMemory`. */
 const scrypt = new Scrypt({ cost: 32768, blockSize: 8, parallelization: 3, maxMemory: 67108864 })
 
 /** More at once would take the memory and the cores that running pots need. */
-const gate = new Gate(2)
+const gate = new Gate(2, {
+  // A flood of sign-ins is turned away instead of keeping everybody waiting for minutes.
+  most: 40,
+  full: () => new Refusal(503, 'busy', 'Too many people sign in at once. Try again in a moment.', [], { retryAfterS: 5 }),
+})
 
 /** One hash of a password that nobody has, for `verifyNobody`. */
 let nobody: Promise<string> | null = null

@@ -11,6 +11,19 @@ function piece(log: string[], name: string) {
 }
 
 describe('gate', () => {
+  it('turns away who comes when as many wait as may', async () => {
+    const gate = new Gate(1, { most: 1, full: () => new Error('full') })
+    const log: string[] = []
+    const [a, b, c] = ['a', 'b', 'c'].map((name) => piece(log, name))
+    const first = gate.run(a!.work)
+    const second = gate.run(b!.work)
+    await expect(gate.run(c!.work)).rejects.toThrow('full')
+    a?.end()
+    b?.end()
+    expect(await Promise.all([first, second])).toEqual(['a', 'b'])
+    expect(log).toEqual(['a', 'b'])
+  })
+
   it('lets two through and keeps the third and fourth waiting in their order', async () => {
     const gate = new Gate(2)
     const log: string[] = []
