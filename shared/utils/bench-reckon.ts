@@ -1,6 +1,6 @@
 import { planBatch } from '../engine/batch'
 import type { BatchPlan } from '../engine/batch'
-import { D, print, sum } from '../engine/decimal'
+import { D, print, readNonNegative, readPositive, sum } from '../engine/decimal'
 import { EngineError } from '../engine/error'
 import { calculatePots } from '../engine/pots'
 import type { PlannedPot, PotBound, PotsCaution } from '../engine/pots'
@@ -70,11 +70,11 @@ export function faultOf(error: EngineError): BenchFault {
 /** Targets, working and pots for the form as it stands. Never throws for what was typed: faults stand beside their fields. */
 export function reckon(setup: BenchSetup, snapshot: BenchSnapshot): BenchReckoning {
   const nothing: BenchReckoning = {
-    faults: missing(setup), tools: null, whole: null, pots: [], boundBy: 'one-pot', cautions: [], totalG: null,
+    faults: [...missing(setup), ...unreadable(setup)], tools: null, whole: null, pots: [], boundBy: 'one-pot', cautions: [], totalG: null,
   }
   try {
     const tools = benchTools(toolChoice(setup), snapshot)
-    if (tools === null || nothing.faults.some(({ field }) => BLOCKING.has(field))) return { ...nothing, tools }
+    if (tools === null || nothing.faults.some(({ field, kind }) => kind === 'refused' || BLOCKING.has(field))) return { ...nothing, tools }
     return { ...nothing, ...plans(setup, snapshot, tools) }
   }
   catch (error) {
@@ -102,6 +102,24 @@ function missing(setup: BenchSetup): BenchFault[] {
   need(setup.cupId !== '', 'cupId', 'Choose a cup.')
   need(setup.scaleId !== '', 'scaleId', 'Choose a scale.')
   return faults
+}
+
+/** Numbers in use that cannot be read, each beside its own field, whatever else is still missing. */
+function unreadable(setup: BenchSetup): BenchFault[] {
+  const amount = ({ area: 'areaM2', total: 'totalG', tin: 'tinG' } as const)[setup.way]
+  const fields = [[amount, readPositive], ['filmWeightGsm', readPositive], ['residueG', readNonNegative]] as const
+  return fields.flatMap(([field, read]) => setup[field] === '' ? [] : refusalOf(field, () => read(setup[field], field)))
+}
+
+function refusalOf(field: keyof BenchSetup, read: () => unknown): BenchFault[] {
+  try {
+    read()
+    return []
+  }
+  catch (error) {
+    if (!(error instanceof EngineError)) throw error
+    return [{ field, message: error.message, kind: 'refused' }]
+  }
 }
 
 type Film = Pick<DraftPlan, 'filmWeightGsm' | 'filmWeightIs' | 'coats' | 'transferEfficiencyPct'>

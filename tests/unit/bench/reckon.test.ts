@@ -43,6 +43,22 @@ describe('reckon', () => {
     else expect(faults).toContainEqual(expect.objectContaining({ field, kind }))
   })
 
+  it('names every number that cannot be read at once, while others are still missing', () => {
+    const started = { purpose: '', gunId: '', mixId: '' }
+    const refused = (change: Parameters<typeof setup>[0]) => reckon(setup({ ...started, ...change }), snapshot()).faults.filter(({ kind }) => kind === 'refused')
+    const message = 'Give a plain number with a point'
+    expect(refused({ areaM2: 'abc', filmWeightGsm: '' })).toEqual([{ field: 'areaM2', message, kind: 'refused' }])
+    expect(refused({ areaM2: 'abc', filmWeightGsm: 'x', residueG: '-1' })).toEqual([
+      { field: 'areaM2', message, kind: 'refused' }, { field: 'filmWeightGsm', message, kind: 'refused' }, { field: 'residueG', message: 'Must be at least 0', kind: 'refused' },
+    ])
+    expect(refused({ way: 'tin', areaM2: 'abc', tinG: '1 kg' })).toEqual([{ field: 'tinG', message, kind: 'refused' }])
+    expect(refused({ way: 'total', areaM2: 'abc', totalG: '500' })).toEqual([])
+  })
+
+  it('names a number once when nothing else is missing', () => {
+    expect(reckon(setup({ areaM2: 'abc' }), snapshot())).toMatchObject({ faults: [{ field: 'areaM2', kind: 'refused' }], whole: null, pots: [] })
+  })
+
   it('reckons what is left in the tin, down to the scale', () => {
     const { pots } = reckon(setup({ way: 'tin', tinG: '500.07', filmWeightGsm: '' }), snapshot())
     expect(pots[0]?.batch.components[0]?.targetG).toBe('500')
