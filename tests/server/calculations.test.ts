@@ -1,11 +1,11 @@
 import { beforeAll, describe, expect, it } from 'vitest'
 import * as z from 'zod/mini'
 import { calculations, type CalculationName } from '#shared/schemas/calculations'
-import { Client, enrolled, signedIn } from './support/http'
+import { Client, enrolled, signedInOften } from './support/http'
 
 let sprayer: Client
 beforeAll(async () => {
-  sprayer = await signedIn('sprayer')
+  sprayer = await signedInOften('sprayer')
 })
 
 const mix = { basis: 'weight', components: [{ name: 'base', parts: '100', densityGPerMl: '1.25' }, { name: 'hardener', parts: '25' }] }

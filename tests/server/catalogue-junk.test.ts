@@ -2,11 +2,11 @@ import fc from 'fast-check'
 import { beforeAll, describe, expect, it } from 'vitest'
 import { encodeCursor } from '../../server/utils/keyset'
 import { apiRoutes } from '../../server/utils/openapi-routes'
-import { signedIn, type Client } from './support/http'
+import { signedInOften, type Client } from './support/http'
 
 let manager: Client
 beforeAll(async () => {
-  manager = await signedIn('manager')
+  manager = await signedInOften('manager')
 })
 
 const names = ['q', 'state', 'role', 'chemistry', 'limit', 'cursor', 'order', 'low', 'usable', 'materialId', 'mixId', 'revisionId', 'expiresWithinDays', 'inactive', 'archived', '__proto__', 'constructor']

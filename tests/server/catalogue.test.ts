@@ -8,7 +8,7 @@ import { Mix, MixList } from '#shared/schemas/mixes'
 import { Schedule, ScheduleList } from '#shared/schemas/schedules'
 import { BoothList, GunList, MixingCupList, ScaleList, UserList } from '#shared/schemas/shop'
 import { D } from '../../shared/engine/decimal'
-import { Client, signedIn } from './support/http'
+import { Client, signedInOften } from './support/http'
 
 interface Page<T> {
   items: T[]
@@ -18,8 +18,8 @@ interface Page<T> {
 let manager: Client
 let sprayer: Client
 beforeAll(async () => {
-  manager = await signedIn('manager')
-  sprayer = await signedIn('sprayer')
+  manager = await signedInOften('manager')
+  sprayer = await signedInOften('sprayer')
 })
 
 /** Lists with the shape of their answer. */

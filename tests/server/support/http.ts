@@ -104,3 +104,24 @@ export async function enrolled(kind: 'screen' | 'bench', boothId: string, scaleI
   client.dropCookie('potbell_session')
   return client
 }
+
+/** Several sessions of one person that take turns, for more requests than one session may send in a second. */
+class Crowd extends Client {
+  private turn = 0
+
+  constructor(private readonly members: readonly Client[]) {
+    super()
+  }
+
+  override send<T = Record<string, unknown>>(method: string, path: string, body: unknown, options: Options = {}): Promise<Answer<T>> {
+    const member = this.members[this.turn++ % this.members.length]
+    if (!member) throw new Error('a crowd has members')
+    return member.send<T>(method, path, body, options)
+  }
+}
+
+/** As `signedIn`, for a file that asks faster than one session may. */
+export async function signedInOften(role: DemoRole): Promise<Client> {
+  const sessions = 12
+  return new Crowd(await Promise.all(Array.from({ length: sessions }, () => signedIn(role))))
+}
