@@ -123,5 +123,8 @@ class Crowd extends Client {
 /** As `signedIn`, for a file that asks faster than one session may. */
 export async function signedInOften(role: DemoRole): Promise<Client> {
   const sessions = 12
-  return new Crowd(await Promise.all(Array.from({ length: sessions }, () => signedIn(role))))
+  const members: Client[] = []
+  // One after the other: tries at one account that come at once count as guessing.
+  while (members.length < sessions) members.push(await signedIn(role))
+  return new Crowd(members)
 }
