@@ -15,6 +15,7 @@ import { correctedReactiveAt, notAfter } from './device-clock'
 import { readReferences, type DraftReferences } from './draft-references'
 import { approvalActionOf, factAfterMs, lotFaultsOf, newPoursOf, refuseImpossible, refuseLot } from './draft-rules'
 import { requireMixer } from './mixers'
+import { claimCode, notYours } from './number-blocks'
 import { takeNumber } from './numbers'
 import { publishPot } from './pot-view'
 import { setPotTimers } from './timers'
@@ -63,9 +64,10 @@ export async function listDrafts(ctx: Pick<Context, 'db'>, { boothId }: DraftLis
  * Stores a batch being made, by its sequence number: a lower or equal one than the stored changes nothing and answers
  * the stored draft. The first one gives the batch its code. Once something reactive is together with something else
  * the pot's timers run; that moment may be corrected to an earlier one, never to a later one.
+ * A bench that works without network names a code of its own block of numbers.
  *
  * @throws Refusal 400 for references that lead nowhere and plans that cannot be, 403 for another person's batch,
- * 409 `already-sealed`, 422 for what cannot be true and for lots that may not be poured
+ * 409 `already-sealed`, 422 `code-not-yours`, 422 for what cannot be true and for lots that may not be poured
  */
 export async function saveDraft(ctx: Context, id: string, body: DraftBody): Promise<Draft> {
   try {
@@ -92,13 +94,20 @@ function saveOnce(ctx: Context, id: string, body: DraftBody): Promise<Draft> {
     const approved = await checkApprovals(m, id, body, stored, references)
     const extras: DraftExtras = { notes: notesOf(body, stored, moment.note), approved }
     const draft = { id, deviceId: ctx.principal.device?.id ?? stored?.deviceId ?? null, reactiveAt: moment.at, body, extras }
-    const code = stored?.code ?? (await takeNumber('batch', m.trx))
+    const code = await codeFor(m, ctx, id, body, stored)
     await (stored ? updateDraft(draft, m.now, m.trx) : insertDraft(draft, code, m.now, m.trx))
     await runTimers(m, id, code, body, moment.at, references.revision)
     m.audit({ action: 'draft.saved', subject: `batch:${id}`, facts: auditedFacts(code, body, moment.at, extras) })
     await publishPot(m, id)
     return readDraft(id, m.trx)
   })
+}
+
+/** The code that the batch has, the one that its bench chose, or the next of the series. */
+async function codeFor(m: Mutation, ctx: Context, id: string, { code }: DraftBody, stored: StoredDraft | null): Promise<string> {
+  if (stored && code !== undefined && code !== stored.code) throw notYours()
+  if (stored) return stored.code
+  return code === undefined ? takeNumber('batch', m.trx) : claimCode(m, ctx.principal, id, code)
 }
 
 interface Moment {

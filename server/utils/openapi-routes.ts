@@ -11,6 +11,7 @@ import { EventsQuery, LiveQuery, LiveSnapshot, ServerTime } from '#shared/schema
 import { Lot, LotList, LotListQuery } from '#shared/schemas/lots'
 import { Material, MaterialList, MaterialListQuery } from '#shared/schemas/materials'
 import { Mix, MixList, MixListQuery } from '#shared/schemas/mixes'
+import { NumberBlock, NumberBlockVoidBody } from '#shared/schemas/number-blocks'
 import { OpenApiDocument } from '#shared/schemas/openapi'
 import { Schedule, ScheduleList, ScheduleListQuery, ScheduleQuery } from '#shared/schemas/schedules'
 import { Approval, ApprovalBody, Session, SignInBody } from '#shared/schemas/session'
@@ -69,6 +70,8 @@ export const apiRoutes: readonly ApiRoute[] = [
   get('/api/batch-drafts', 'drafts:read', 'Batches being made', DraftList, { query: DraftListQuery }),
   get('/api/batch-drafts/{id}', 'drafts:read', 'A batch being made', Draft, { params: DraftParams }),
   put('/api/batch-drafts/{id}', 'drafts:write', 'Saves a batch being made', Draft, { params: DraftParams, body: DraftBody }),
+  post('/api/number-blocks', 'numbers:take', 'Numbers that a bench holds for work without network', NumberBlock),
+  post('/api/number-blocks/{id}/void', 'numbers:void', 'Closes a block of numbers with a reason', NumberBlock, { ...byId, body: NumberBlockVoidBody, status: 200 }),
   get('/api/batches', 'batches:read', 'The log of batches', BatchList, { query: BatchListQuery }),
   post('/api/batches', 'batches:create', 'Seals a batch into the record', Batch, { body: BatchCreateBody }),
   get('/api/batches/{id}', 'batches:read', 'A batch', Batch, { params: BatchParams }),

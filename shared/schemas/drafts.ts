@@ -72,6 +72,8 @@ export type DraftPlan = z.infer<typeof DraftPlan>
 export const DraftBody = z.strictObject({
   /** Counts the client's steps; a lower or equal number than the stored one changes nothing. */
   seq: z.int().check(z.minimum(1), z.maximum(1_000_000_000)),
+  /** Of the bench's own block of numbers; left out, the series gives the code. Once given it stays. */
+  code: z.optional(z.string().check(z.regex(/^B-\d{4,9}$/, 'Give a code like B-0421.'))),
   planId: Uuid,
   potNumber: z.int().check(z.minimum(1), z.maximum(999)),
   potCount: z.int().check(z.minimum(1), z.maximum(999)),

@@ -13,6 +13,8 @@ const permissions = {
   'bench:read': [...people, 'bench'],
   'drafts:read': [...people, 'bench'],
   'drafts:write': [...people, 'bench'],
+  'numbers:take': [...people, 'bench'],
+  'numbers:void': seniors,
   'batches:read': [...people, 'bench', 'screen'],
   'batches:create': [...people, 'bench'],
   'batches:event': everyone,
