@@ -122,6 +122,11 @@ export function weekday(ms: number, zone: string): string {
   return dayText(at.year, at.month, at.day, false).slice(0, 3)
 }
 
+/** Clock time, with its weekday where it is not the day of `nowMs`: `07:54`, `Fri 07:54`. */
+export function clockNear(ms: number, zone: string, nowMs: number): string {
+  return day(ms, zone, ms) === day(nowMs, zone, ms) ? clock(ms, zone) : `${weekday(ms, zone)} ${clock(ms, zone)}`
+}
+
 /** Day and clock time: `Tue 17 Nov 07:54`. */
 export function dayClock(ms: number, zone: string, nowMs: number): string {
   return `${day(ms, zone, nowMs)} ${clock(ms, zone)}`

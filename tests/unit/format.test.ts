@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import { area, calendarDay, clock, clockSeconds, day, dayClock, decimalsOf, duration, grams, numberParts, over, percent, ratio, weekday } from '~/utils/format'
+import { area, calendarDay, clock, clockNear, clockSeconds, day, dayClock, decimalsOf, duration, grams, numberParts, over, percent, ratio, weekday } from '~/utils/format'
 
 const SECOND = 1000
 const MIN = 60 * SECOND
@@ -131,5 +131,17 @@ describe('clock and dates in the shop’s zone', () => {
     expect(calendarDay('2027-03-31')).toBe('Wed 31 Mar 2027')
     expect(calendarDay('2026-09-01')).toBe('Tue 1 Sep 2026')
     expect(() => calendarDay('31.03.2027')).toThrow(RangeError)
+  })
+})
+
+describe('clock time near now', () => {
+  const now = Date.UTC(2026, 10, 17, 12, 0)
+  it.each([
+    ['the same day', Date.UTC(2026, 10, 17, 6, 54), '07:54'],
+    ['the next day in the shop, the same in UTC', Date.UTC(2026, 10, 17, 23, 30), 'Wed 00:30'],
+    ['three days on', Date.UTC(2026, 10, 20, 9, 25), 'Fri 10:25'],
+    ['the same weekday of another week', Date.UTC(2026, 10, 24, 6, 54), 'Tue 07:54'],
+  ])('%s', (_, at, words) => {
+    expect(clockNear(at, 'Europe/Copenhagen', now)).toBe(words)
   })
 })
