@@ -79,6 +79,11 @@ interface JobStepRow {
   sand_until_min: string | null
 }
 
+/** Holds a job's step until the transaction ends. */
+export async function lockJobStep(id: string, db: Db): Promise<void> {
+  await db('job_steps').where({ id }).forUpdate().first('id')
+}
+
 export async function findJobStep(id: string, db: Db): Promise<JobStep | null> {
   const row = await db('job_steps as s')
     .join('jobs as j', 'j.id', 's.job_id')

@@ -4,7 +4,7 @@ import { batchPieceIds, coatsOn, insertCoat } from '../repositories/applications
 import { lockCurrent, updateCurrent, type CurrentBatch, type CurrentChange } from '../repositories/batch-current'
 import { findBatch } from '../repositories/batch-page'
 import { insertBatchEvent, insertWaste } from '../repositories/batches'
-import { findJobStep, isThere, pieceIdsOf, type JobStep } from '../repositories/draft-references'
+import { findJobStep, isThere, lockJobStep, pieceIdsOf, type JobStep } from '../repositories/draft-references'
 import { findDraft } from '../repositories/drafts'
 import { userIdOf, type Context } from '../utils/context'
 import { invalid, notFound, Refusal, ruleBroken } from '../utils/errors'
@@ -44,7 +44,7 @@ export function recordBatchEvent(ctx: Context, id: string, body: BatchEventBody)
  * A pot is empty: its timers end, what was left is waste. Nothing lengthens a pot's life, and nothing closes it twice.
  *
  * @throws Refusal 404 (also for another booth's screen), 409 `not-sealed`, `stopped` or `already-closed`,
- * 422 for more left than was mixed or a moment before the mix
+ * 422 for more left than was mixed or a moment before the mix or the last spray
  */
 export function closeBatch(ctx: Context, id: string, body: BatchCloseBody): Promise<Batch> {
   return mutate(ctx, async (m) => {
@@ -54,6 +54,7 @@ export function closeBatch(ctx: Context, id: string, body: BatchCloseBody): Prom
     if (body.leftoverG !== null && new D(body.leftoverG).gt(pot.pouredTotalG)) throw broken('leftover-over-poured', 'leftoverG', 'More cannot be left than was mixed.')
     const at = body.at === null ? m.now : notAfter(body.at, m.now)
     if (at < pot.mixedAt) throw broken('before-mixed', 'at', 'That is before it was mixed.')
+    if (pot.lastSprayAt !== null && at < pot.lastSprayAt) throw broken('before-last-spray', 'at', 'That is before its last spray.')
     const disposal = body.disposal ?? (pot.reactiveAt === null ? 'solvent waste' : 'reactive waste')
     const weighed = body.leftoverG !== null
     await updateCurrent(id, { state: 'emptied', closedAt: at, leftoverG: body.leftoverG, leftoverWeighed: weighed, disposal }, m.now, m.trx)
@@ -122,6 +123,8 @@ async function writeCoat(ctx: Context, m: Mutation, pot: CurrentBatch, gunId: st
   const named = await batchPieceIds(pot.id, m.trx)
   // Without chosen pieces the pot was for all of the job.
   const pieceIds = named.length > 0 ? named : await pieceIdsOf(step.jobId, m.trx)
+  // Coats on the same pieces are counted one after the other, or two pots would write the same coat.
+  await lockJobStep(step.id, m.trx)
   const before = await coatsOn(step.id, pieceIds, pot.planId, m.trx)
   const coatNumber = Math.min(before + (pot.coats ?? 1), 255)
   // The careful side where nobody tapped the first spray: the window closes by it.

@@ -137,6 +137,15 @@ describe('first and last spray', () => {
     expect(await spray(id, 'last-spray', 29)).toMatchObject({ state: 'emptied', lastSprayAt: minutesIn(29) })
   })
 
+  it('write one coat after the other where two pots end on the same pieces at once', async () => {
+    const pieces = await newPieces(2)
+    const pots = [await pot({ ...pieces, planId: randomUUID() }), await pot({ ...pieces, planId: randomUUID() })]
+    later(20)
+    await Promise.all(pots.map((id) => spray(id, 'last-spray', null)))
+    const coats = await work.admin('applications as a').join('application_batches as b', 'b.application_id', 'a.id').whereIn('b.batch_id', pots).pluck<number[]>('a.coat_number')
+    expect(coats.sort()).toEqual([1, 2])
+  })
+
   it('name a gun that is there', async () => {
     const id = await pot(loose)
     await expect(recordBatchEvent(work.as('sprayer'), id, { kind: 'first-spray', gunId: randomUUID(), at: null })).rejects.toMatchObject({ status: 400, fields: [{ path: 'gunId' }] })
@@ -144,6 +153,14 @@ describe('first and last spray', () => {
 })
 
 describe('emptying a pot', () => {
+  it('cannot have come before its last spray', async () => {
+    const id = await pot(loose)
+    later(40)
+    await spray(id, 'last-spray', 30)
+    await expect(closeBatch(work.as('sprayer'), id, { leftoverG: '0', at: minutesIn(20) })).rejects.toMatchObject({ status: 422, code: 'before-last-spray' })
+    expect(await close(id, '0')).toMatchObject({ state: 'emptied' })
+  })
+
   it('ends its timers and books what was left as waste', async () => {
     const id = await pot(loose)
     later(50)
