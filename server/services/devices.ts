@@ -7,7 +7,7 @@ import { newId } from '../utils/ids'
 import { mutate } from '../utils/transactions'
 
 /**
- * Enrols the asking browser. Only the token's hash is stored; the token itself goes into a cookie and nowhere else,
+ * Enrols the asking browser; what it was before, it is no more. Only the token's hash is stored; the token itself goes into a cookie and nowhere else,
  * so the caller makes it and hands it in.
  *
  * @throws Refusal 400 when a screen has no booth, a bench has no scale, or the one named is not there
@@ -20,8 +20,13 @@ export function enrolDevice(ctx: Context, body: DeviceCreateBody, token: string)
     if (body.scaleId && !(await isActive('scales', body.scaleId, trx))) faults.push({ path: 'scaleId', message: 'There is no such scale.' })
     if (faults.length > 0) throw invalid(faults)
     const id = newId()
+    const replaced = ctx.principal.device?.id ?? null
+    if (replaced !== null && (await revokeDevice(replaced, now, trx)) > 0) {
+      publish({ type: 'device-ended', subject: `device:${replaced}`, boothId: null, payload: { id: replaced } })
+    }
     await insertDevice(id, body, sha256(token), now, trx)
-    audit({ action: 'device.enrolled', subject: `device:${id}`, facts: { kind: body.kind, boothId: body.boothId, scaleId: body.scaleId } })
+    const { kind, boothId, scaleId } = body
+    audit({ action: 'device.enrolled', subject: `device:${id}`, facts: { kind, boothId, scaleId, replaced } })
     publish({ type: 'device', subject: `device:${id}`, boothId: body.boothId, payload: { id } })
     const device = await getDevice(id, trx)
     if (!device) throw notFound('The device')

@@ -43,6 +43,18 @@ describe('enrolling a browser', () => {
     expect((await manager.get('/api/session')).body).toMatchObject({ device: { name: 'Sent twice' } })
   })
 
+  it('takes the place of what the browser was before', async () => {
+    const manager = await signedIn('manager')
+    const booth = await firstBooth(manager)
+    const ask = (name: string) => manager.post<Named>('/api/devices', { kind: 'screen', name, boothId: booth.id, scaleId: null })
+    const before = await ask(`Before ${randomUUID().slice(0, 8)}`)
+    const after = await ask(`After ${randomUUID().slice(0, 8)}`)
+    const { body } = await manager.get<{ items: Named[] }>('/api/devices')
+    const ids = body.items.map(({ id }) => id)
+    expect(ids).toContain(after.body.id)
+    expect(ids).not.toContain(before.body.id)
+  })
+
   it('is for managers only', async () => {
     const foreman = await signedIn('foreman')
     const booth = await firstBooth(foreman)
