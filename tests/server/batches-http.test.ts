@@ -5,7 +5,7 @@ import { Batch, BatchList } from '#shared/schemas/batches'
 import type { BenchLot, BenchMix, BenchSnapshot } from '#shared/schemas/bench'
 import { Draft } from '#shared/schemas/drafts'
 import { createKnex } from '../../server/database/connection'
-import { Client, enrolled, signedIn } from './support/http'
+import { Client, enrolled, signedIn, signedInOften } from './support/http'
 
 const admin = createKnex(process.env.DATABASE_ADMIN_URL ?? '')
 afterAll(() => admin.destroy())
@@ -18,7 +18,7 @@ let place: { boothId: string; otherBoothId: string; gunId: string; scaleId: stri
 
 /** The first mix of the demo's bench that hardens and whose every component has a lot with enough in it. */
 beforeAll(async () => {
-  sprayer = await signedIn('sprayer')
+  sprayer = await signedInOften('sprayer')
   foreman = await signedIn('foreman')
   const { body: snapshot } = await sprayer.get<BenchSnapshot>('/api/bench/snapshot')
   const plenty = new Map(snapshot.lots.filter(({ stockG }) => stockG.split('.')[0]!.length >= 4 && !stockG.startsWith('-')).map((lot) => [lot.materialId, lot]))
