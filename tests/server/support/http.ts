@@ -114,9 +114,17 @@ class Crowd extends Client {
   }
 
   override send<T = Record<string, unknown>>(method: string, path: string, body: unknown, options: Options = {}): Promise<Answer<T>> {
+    return this.next().send<T>(method, path, body, options)
+  }
+
+  override copy(): Client {
+    return this.next().copy()
+  }
+
+  private next(): Client {
     const member = this.members[this.turn++ % this.members.length]
     if (!member) throw new Error('a crowd has members')
-    return member.send<T>(method, path, body, options)
+    return member
   }
 }
 
