@@ -4,6 +4,7 @@ import { createKnex } from '../../server/database/connection'
 import { labelAndLog, pourToTargets, reactingMix, setUpLooseMix } from './support/bench'
 import { axeFaults, signIn } from './support/browser'
 import { advanceClock } from './support/clock'
+import { emptyAllBut } from './support/pots'
 import { useVisitors } from './support/visitors'
 
 /**
@@ -59,6 +60,7 @@ describe('the whole thread', () => {
     const typed = await pourToTargets(bench.page)
     const code = await labelAndLog(bench.page)
     const batch = await batchOf(code)
+    await emptyAllBut(code)
 
     // What was typed is what stands in the record, to the gram.
     const poured = await admin('batch_components').where({ batch_id: batch.id }).orderBy('component_index').pluck<string[]>('poured_g')

@@ -1,8 +1,10 @@
 import type { Page } from 'playwright-core'
-import { afterAll, describe, expect, it } from 'vitest'
+import { afterAll, beforeAll, describe, expect, it } from 'vitest'
 import { createKnex } from '../../server/database/connection'
+import { labelAndLog, pourToTargets, reactingMix, setUpLooseMix } from './support/bench'
 import { axeFaults, baseUrl, signIn } from './support/browser'
 import { openLine } from './support/line'
+import { emptyAllBut } from './support/pots'
 import { useVisitors } from './support/visitors'
 
 const admin = createKnex(process.env.DATABASE_ADMIN_URL ?? '', { poolMax: 1 })
@@ -11,18 +13,25 @@ afterAll(() => admin.destroy())
 
 const hourMs = 3_600_000
 
-async function liveBooth(): Promise<{ booth_id: string; code: string }> {
-  const row = await admin('batch_current as c').join('batches as b', 'b.id', 'c.batch_id').whereIn('c.state', ['fresh', 'closing']).whereNotNull('c.booth_id')
-    .orderBy('c.ends_at', 'desc').first<{ booth_id: string; code: string } | undefined>('c.booth_id', 'b.code')
-  if (!row) throw new Error('no pot is live')
-  return row
-}
+/** The one pot that these walls show, mixed for them; whatever else lived in the shop is emptied. */
+let pot: { boothId: string; code: string }
+
+beforeAll(async () => {
+  const { page } = await visitAs('sprayer', { screen: 'bench' })
+  await page.goto(`${baseUrl}/bench`)
+  await setUpLooseMix(page, (await reactingMix(admin)).name, '1.5')
+  await pourToTargets(page)
+  const code = await labelAndLog(page)
+  const { booth_id: boothId } = await admin('batches').where({ code }).first<{ booth_id: string }>('booth_id')
+  pot = { boothId, code }
+  await emptyAllBut(code)
+}, 120_000)
 
 const remaining = (page: Page, code: string) => page.locator(`[data-pot="${code}"] [role=timer] .sr-only`).innerText()
 
 describe('walls of one booth', () => {
   it('show the same remaining time whatever their own clocks say', async () => {
-    const { booth_id: boothId, code } = await liveBooth()
+    const { boothId, code } = pot
     const pages: Page[] = []
     for (const clockOffMs of [-24 * hourMs, -hourMs, 7 * 60_000, 50_000, 0]) {
       const { page } = await visitAs('foreman', { screen: 'booth', clockOffMs })
@@ -38,7 +47,7 @@ describe('walls of one booth', () => {
   })
 
   it('keep counting and say so when the server is lost, and are live again without a touch', async () => {
-    const { booth_id: boothId, code } = await liveBooth()
+    const { boothId, code } = pot
     const line = await openLine()
     const { page } = await visit({ screen: 'booth', losesNetwork: true })
     await signIn(page, 'foreman', `/screen/${boothId}`, line.url)
@@ -67,7 +76,7 @@ describe('walls of one booth', () => {
   })
 
   it('flash only where motion is welcome', async () => {
-    const { booth_id: boothId } = await liveBooth()
+    const { boothId } = pot
     const { page } = await visitAs('foreman', { screen: 'booth', reducedMotion: true })
     await page.goto(`${baseUrl}/screen/${boothId}`)
     await page.getByText('Connected').waitFor()
