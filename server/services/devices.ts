@@ -7,10 +7,10 @@ import { newId } from '../utils/ids'
 import { mutate } from '../utils/transactions'
 
 /**
- * Enrols the asking browser; what it was before, it is no more. Only the token's hash is stored; the token itself goes into a cookie and nowhere else,
- * so the caller makes it and hands it in.
+ * Enrols the asking browser; what it was before, it is no more. Only the token's hash is stored; the token itself goes
+ * into a cookie and nowhere else, so the caller makes it and hands it in.
  *
- * @throws Refusal 400 when a screen has no booth, a bench has no scale, or the one named is not there
+ * @throws Refusal 400 when a screen has no booth, or a booth or scale that is named is not there
  */
 export function enrolDevice(ctx: Context, body: DeviceCreateBody, token: string): Promise<Device> {
   return mutate(ctx, async ({ trx, now, audit, publish }) => {
