@@ -16,7 +16,7 @@ interface Options {
   /** Overrides or adds headers; undefined removes one that is sent by default. */
   headers?: Record<string, string | undefined>
   /** Sent as it is instead of JSON. */
-  raw?: string
+  raw?: string | Uint8Array<ArrayBuffer>
   key?: string
 }
 
