@@ -49,7 +49,7 @@ export async function foundPlaces(m: Mutation): Promise<Pick<DemoShop, 'booths' 
     residue_g: gun.residue, smallest_fill_g: gun.fill, flow_g_per_min: gun.flow, pace_m2_per_h: gun.pace, ...born(m.now),
   })))
   await m.trx('scales').insert(scales.map((scale) => ({
-    id: the(made.scales, scale.key), name: scale.name, division_g: scale.division, capacity_g: scale.capacity, mpe_g: scale.mpe,
+    id: the(made.scales, scale.key), name: scale.name, source: scale.source, division_g: scale.division, capacity_g: scale.capacity, mpe_g: scale.mpe,
     accuracy_class: scale.class, verification_interval_g: scale.interval, next_check_on: dayAfter(m.now, scale.checkDays + 84), ...born(m.now),
   })))
   await m.trx('mixing_cups').insert(mixingCups.map(({ name, capacity, fillLine }) => ({

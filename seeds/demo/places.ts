@@ -39,8 +39,9 @@ export const guns = [
 export type GunKey = (typeof guns)[number]['key']
 
 export const scales = [
-  { key: 'fine', name: 'Bench 1 scale', division: '0.1', capacity: '6200', mpe: null, class: 'II', interval: '0.1', checkDays: 96 },
-  { key: 'coarse', name: 'Bench 2 scale', division: '1', capacity: '15000', mpe: '1', class: null, interval: null, checkDays: 12 },
+  { key: 'fine', name: 'Bench 1 scale', source: 'keypad', division: '0.1', capacity: '6200', mpe: null, class: 'II', interval: '0.1', checkDays: 96 },
+  { key: 'coarse', name: 'Bench 2 scale', source: 'keypad', division: '1', capacity: '15000', mpe: '1', class: null, interval: null, checkDays: 12 },
+  { key: 'practice', name: 'Practice scale', source: 'simulated', division: '0.1', capacity: '6200', mpe: null, class: null, interval: null, checkDays: 180 },
 ] as const
 export type ScaleKey = (typeof scales)[number]['key']
 

@@ -90,6 +90,7 @@ const toGun = (row: GunRow): Gun => ({
 })
 
 interface ScaleRow extends Head {
+  source: Scale['source']
   division_g: string
   capacity_g: string
   mpe_g: string | null
@@ -103,6 +104,7 @@ export async function listScales(options: NamePage, db: Db): Promise<Omit<Scale,
   const rows: ScaleRow[] = await page(db('scales').select('scales.*'), 'scales', options)
   return rows.map(row => ({
     ...headOf(row),
+    source: row.source,
     divisionG: decimalOf(row.division_g),
     capacityG: decimalOf(row.capacity_g),
     mpeG: decimalOrNull(row.mpe_g),

@@ -33,7 +33,7 @@ export function readBench(ctx: Context): Promise<BenchSnapshot> {
       materials: await listBenchMaterials(trx),
       lots: await listOfferedLots(today, trx),
       guns: (await listGuns(all, trx)).map(toBenchGun),
-      scales: (await listScales(all, trx)).map(({ id, name, divisionG, capacityG, mpeG }) => ({ id, name, divisionG, capacityG, mpeG })),
+      scales: (await listScales(all, trx)).map(({ id, name, source, divisionG, capacityG, mpeG }) => ({ id, name, source, divisionG, capacityG, mpeG })),
       cups: await listBenchCups(trx),
       booths: await benchBooths(now, trx),
       people: await listBenchPeople(trx),

@@ -1,4 +1,5 @@
 import * as z from 'zod/mini'
+import { scaleSources } from './shop'
 
 /** Instants are ISO 8601 UTC with milliseconds, days `YYYY-MM-DD`, quantities decimal strings. */
 const nullableString = z.nullable(z.string())
@@ -86,6 +87,7 @@ export type BenchGun = z.infer<typeof BenchGun>
 export const BenchScale = z.object({
   id: z.uuid(),
   name: z.string(),
+  source: z.enum(scaleSources),
   divisionG: z.string(),
   capacityG: z.string(),
   mpeG: nullableString,

@@ -41,8 +41,12 @@ export type Gun = z.infer<typeof Gun>
 export const GunList = pageOf(Gun)
 export type GunList = z.infer<typeof GunList>
 
+/** Where a scale's weights come from: typed by hand, or made up by the bench for practice. */
+export const scaleSources = ['keypad', 'simulated'] as const
+
 export const Scale = z.object({
   ...head,
+  source: z.enum(scaleSources),
   divisionG: DecimalText,
   capacityG: DecimalText,
   mpeG: z.nullable(DecimalText),

@@ -41,7 +41,7 @@ export function snapshot(more: Partial<BenchSnapshot> = {}): BenchSnapshot {
       id: id(31), name: 'Gun 2', kind: 'cup-gun', boothId: id(51), efficiencyPct: { flat: '60', frames: '50', sticks: '35' }, efficiencyMeasured: true, residueG: '150',
       smallestFillG: '100', flowGPerMin: null, paceM2PerH: '4.2',
     }],
-    scales: [{ id: id(41), name: 'Scale 2', divisionG: '0.1', capacityG: '6000', mpeG: null }],
+    scales: [{ id: id(41), name: 'Scale 2', source: 'keypad', divisionG: '0.1', capacityG: '6000', mpeG: null }],
     cups: [{ id: id(45), name: '2.5 L', capacityMl: '2500', fillLineMl: '1900' }, { id: id(46), name: '1 L', capacityMl: '1000', fillLineMl: '800' }],
     booths: [{ id: id(51), name: 'Booth 1', climate: null }],
     people: [],
