@@ -36,6 +36,10 @@ export class Client {
     return this.send<T>('PUT', path, body, options)
   }
 
+  patch<T = Record<string, unknown>>(path: string, body?: unknown, options: Options = {}) {
+    return this.send<T>('PATCH', path, body, options)
+  }
+
   delete<T = Record<string, unknown>>(path: string, options: Options = {}) {
     return this.send<T>('DELETE', path, undefined, options)
   }
