@@ -1,5 +1,6 @@
 import type { Knex } from 'knex'
 import type { Page } from 'playwright-core'
+import { pointer, type Hand } from './hand'
 
 /** Grams as a screen prints them, as the keypad takes them: the first number, without thin spaces. */
 const gramsIn = (text: string): string => (/[\d\u2009\u202f ]+(?:\.\d+)?/.exec(text)?.[0] ?? '').replace(/[^\d.]/g, '')
@@ -19,14 +20,14 @@ export async function reactingMix(admin: Knex): Promise<{ name: string; potLifeM
 }
 
 /** Sets a loose mix up and stirs: the page then waits for the first weight. */
-export async function setUpLooseMix(page: Page, mixName: string, areaM2: string): Promise<void> {
-  await page.getByRole('button', { name: 'Loose mix, no job' }).click()
-  await page.getByLabel('What is it for').fill('Browser test panels')
-  await page.getByLabel('Material', { exact: true }).selectOption({ label: mixName })
-  await page.getByLabel('Panel area', { exact: true }).last().fill(areaM2)
-  await page.getByLabel('Wet coat weight', { exact: true }).fill('120')
-  await page.getByRole('button', { name: /^Start (this pot|pot 1)/ }).click()
-  await page.getByRole('button', { name: /^It is stirred/ }).click()
+export async function setUpLooseMix(page: Page, mixName: string, areaM2: string, hand: Hand = pointer): Promise<void> {
+  await hand.press(page.getByRole('button', { name: 'Loose mix, no job' }))
+  await hand.fill(page.getByLabel('What is it for'), 'Browser test panels')
+  await hand.choose(page.getByLabel('Material', { exact: true }), mixName)
+  await hand.fill(page.getByLabel('Panel area', { exact: true }).last(), areaM2)
+  await hand.fill(page.getByLabel('Wet coat weight', { exact: true }), '120')
+  await hand.press(page.getByRole('button', { name: /^Start (this pot|pot 1)/ }))
+  await hand.press(page.getByRole('button', { name: /^It is stirred/ }))
   await page.getByRole('region', { name: 'Pour' }).waitFor()
 }
 
@@ -38,15 +39,15 @@ export async function codeOf(page: Page): Promise<string> {
 }
 
 /** Confirms what has to be worn, one tap a thing, where a sheet asks. */
-export async function putOnWhatIsAsked(page: Page): Promise<void> {
+export async function putOnWhatIsAsked(page: Page, hand: Hand = pointer): Promise<void> {
   const asked = page.getByRole('dialog').getByRole('button', { pressed: false })
-  while (await asked.count() > 0) await asked.first().click()
+  while (await asked.count() > 0) await hand.press(asked.first())
 }
 
 /** Types a weight as the scale would say it and takes it as settled. */
-export async function weigh(page: Page, grams: string): Promise<void> {
+export async function weigh(page: Page, grams: string, hand: Hand = pointer): Promise<void> {
   const reading = page.getByLabel(/^Grams of .* on the scale/)
-  await reading.fill(grams)
+  await hand.fill(reading, grams)
   await reading.press('Enter')
 }
 
@@ -54,31 +55,31 @@ export async function weigh(page: Page, grams: string): Promise<void> {
 export const targetOf = async (page: Page): Promise<string> => gramsIn(await page.getByRole('region', { name: 'Pour', exact: true }).getByRole('button', { name: /show the sum: Target of/ }).innerText())
 
 /** Goes on to what comes next; the button wakes when the weight is in tolerance. */
-export const next = (page: Page): Promise<void> => page.getByRole('button', { name: /^Next component/ }).click()
+export const next = (page: Page, hand: Hand = pointer): Promise<void> => hand.press(page.getByRole('button', { name: /^Next component/ }))
 
 /** Pours every component to its target, as it follows the base. Returns what was typed. */
-export async function pourToTargets(page: Page): Promise<string[]> {
+export async function pourToTargets(page: Page, hand: Hand = pointer): Promise<string[]> {
   const typed: string[] = []
   const standing = page.getByRole('region', { name: 'Stir and stand' })
   const heading = page.getByRole('region', { name: 'Pour', exact: true }).getByRole('heading', { level: 1 })
   while (!await standing.isVisible()) {
-    await putOnWhatIsAsked(page)
+    await putOnWhatIsAsked(page, hand)
     const poured = await heading.innerText()
     const grams = await targetOf(page)
-    await weigh(page, grams)
+    await weigh(page, grams, hand)
     typed.push(grams)
-    await next(page)
+    await next(page, hand)
     await Promise.race([standing.waitFor(), heading.filter({ hasNotText: poured }).waitFor(), page.getByRole('dialog').waitFor()])
   }
   return typed
 }
 
 /** Stirs, labels and logs; returns the code on the label. */
-export async function labelAndLog(page: Page): Promise<string> {
-  await page.getByRole('button', { name: 'It is stirred and scraped' }).click()
-  await page.getByRole('button', { name: /^Next: label/ }).click()
+export async function labelAndLog(page: Page, hand: Hand = pointer): Promise<string> {
+  await hand.press(page.getByRole('button', { name: 'It is stirred and scraped' }))
+  await hand.press(page.getByRole('button', { name: /^Next: label/ }))
   await page.getByRole('heading', { name: 'Put this on the cup' }).waitFor()
-  await page.getByRole('button', { name: /^Label is on the cup/ }).click()
+  await hand.press(page.getByRole('button', { name: /^Label is on the cup/ }))
   const logged = page.getByRole('heading', { name: /^B-\d{4,} is in the log$/ })
   await logged.waitFor()
   return (await logged.innerText()).split(' ')[0] ?? ''
