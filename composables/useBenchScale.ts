@@ -1,27 +1,87 @@
-import { onScopeDispose, ref, type Ref } from 'vue'
-import { keypadSource, type KeypadSource, type ScaleReading, type ScaleSourceState } from '#shared/utils/bench-scale'
+import { onScopeDispose, ref, shallowRef, type Ref } from 'vue'
+import { keypadSource, type KeypadSource, type ScaleReading, type ScaleSource, type ScaleSourceKind, type ScaleSourceState, type SourceClock } from '#shared/utils/bench-scale'
+import { SimulatedScale, type SimulatedSight, type SimulatedStart } from '#shared/utils/bench-scale-simulated'
 
 interface BenchScaleUse {
-  source: KeypadSource
+  keypad: KeypadSource
+  /** Null where weights are typed. */
+  simulated: SimulatedScale | null
+  /** Of the simulated scale, for the buttons that work it. */
+  sight: Ref<SimulatedSight | null>
   state: Ref<ScaleSourceState>
+  /** Looks again, after a hand was at it. */
+  look: () => void
+  /** Zero for what comes next: on the scale and on the keypad. */
+  zero: () => void
+  /** The scale is given up; the keypad goes on. */
+  leaveScale: () => void
 }
+
+const clock: SourceClock = {
+  now: () => Date.now(),
+  after: (ms, call) => {
+    const timer = setTimeout(call, ms)
+    return () => clearTimeout(timer)
+  },
+}
+
+/** State of the scale at this bench, for the bar; null while nothing is weighed. */
+export const useBenchScaleState = (): Ref<ScaleSourceState | null> => useState<ScaleSourceState | null>('bench-scale', () => null)
 
 /**
  * The source of weights at this bench, connected while the caller lives.
  *
- * @param take gets every reading
+ * @param start where a simulated scale begins; null where weights are typed
+ * @param take gets every reading and where it comes from
+ * @param changed gets every change of the scale's state
  */
-export function useBenchScale(take: (reading: ScaleReading) => void): BenchScaleUse {
-  const source = keypadSource({
-    now: () => Date.now(),
-    after: (ms, call) => {
-      const timer = setTimeout(call, ms)
-      return () => clearTimeout(timer)
-    },
-  })
+export function useBenchScale(
+  start: SimulatedStart | null, take: (reading: ScaleReading, source: ScaleSourceKind) => void, changed: (state: ScaleSourceState) => void,
+): BenchScaleUse {
+  const shown = useBenchScaleState()
   const state = ref<ScaleSourceState>('connecting')
-  source.readings(take)
-  void source.connect().then(() => { state.value = source.state() })
-  onScopeDispose(() => source.disconnect())
-  return { source, state }
+  const keypad = keypadSource(clock)
+  let simulated = start === null ? null : new SimulatedScale(clock, start)
+  const sight = shallowRef<SimulatedSight | null>(null)
+  const look = (): void => { sight.value = simulated?.sight() ?? null }
+  const tell = (next: ScaleSourceState): void => {
+    state.value = next
+    shown.value = next
+    changed(next)
+    look()
+  }
+  const join = (source: ScaleSource): void => {
+    source.readings((reading) => {
+      look()
+      take(reading, source.kind)
+    })
+    source.states(tell)
+    void source.connect()
+  }
+
+  function leaveScale(): void {
+    simulated?.disconnect()
+    simulated = null
+    look()
+    join(keypad)
+  }
+
+  join(simulated ?? keypad)
+  onScopeDispose(() => {
+    simulated?.disconnect()
+    keypad.disconnect()
+    shown.value = null
+  })
+  return {
+    keypad,
+    get simulated() { return simulated },
+    sight,
+    state,
+    look,
+    zero: () => {
+      keypad.reset()
+      void simulated?.tare()
+    },
+    leaveScale,
+  }
 }

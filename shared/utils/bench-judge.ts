@@ -196,9 +196,10 @@ function entry(
   return { at: toIso(at), cause: answer.cause ?? 'reactive-too-much', newTargets: answer.components.map(({ newTargetG }) => newTargetG), ...word }
 }
 
-/** The component that is too much, by its place in the mix. */
-export function culpritOf(answer: PourAnswer, kept: readonly number[]): number | null {
-  const found = answer.components.findIndex(({ verdict }, index) => verdict === 'too-much' && !kept.includes(index))
+/** The component that is too much, by its place in the mix. Never the base: the others follow it. */
+export function culpritOf(tools: BenchTools, answer: PourAnswer, kept: readonly number[]): number | null {
+  const { baseIndex } = readMix(tools.input)
+  const found = answer.components.findIndex(({ verdict }, index) => verdict === 'too-much' && index !== baseIndex && !kept.includes(index))
   return found < 0 ? null : found
 }
 

@@ -32,6 +32,20 @@ interface BenchReading {
   /** ISO by the server's clock; null before the first reading. */
   at: string | null
   source: ScaleSourceKind
+  /** On a scale that sees the cup: where a fall that has not ended began. */
+  fellFrom: BenchWeight | null
+}
+
+/** Grams of the weighing at hand at a moment, ISO by the server's clock. */
+export interface BenchWeight {
+  grams: string
+  at: string
+}
+
+/** The cup was taken off the scale. */
+interface BenchLift extends BenchWeight {
+  /** Back on the scale with other grams than it had: somebody has to say why. */
+  backG: string | null
 }
 
 /** One cup being made, from the first stir to its place in the log. Everything in it is plain data. */
@@ -60,6 +74,10 @@ export interface BenchRun {
   reading: BenchReading
   /** Grams of this weighing that were in before the last tare. */
   taredG: string
+  /** The pour is paused while the cup is off the scale. */
+  lift: BenchLift | null
+  /** The scale was lost: the rest of this batch is typed. */
+  byHand: boolean
   /** Lot in use of each component of the mix. */
   lots: (string | null)[]
   /** Components whose deviation was kept, and those accepted although the scale cannot tell. */
@@ -75,13 +93,16 @@ export interface BenchRun {
   stirredAt: string | null
   climate: { airC: string, rhPct: string, surfaceC: string | null } | null
   viscosity: { cup: string, seconds: string, materialC: string | null } | null
+  /** When the viscosity was noted. */
+  viscosityAt: string | null
   stopped: { at: string, reason: string, disposal: string } | null
   /** What the server said of it; null until it has answered. */
   code: string | null
   potLife: PotLife
 }
 
-const NO_READING: BenchReading = { grams: '', steady: false, at: null, source: 'typed' }
+/** Nothing was read yet since the last tare. */
+export const NO_READING: BenchReading = { grams: '', steady: false, at: null, source: 'typed', fellFrom: null }
 
 /** Begins one pot of a plan: stir the base first. */
 export function startRun(input: {
@@ -118,6 +139,8 @@ export function startRun(input: {
     pours: [],
     reading: NO_READING,
     taredG: '0',
+    lift: null,
+    byHand: false,
     lots: input.lots,
     kept: [],
     accepted: [],
@@ -129,6 +152,7 @@ export function startRun(input: {
     stirredAt: null,
     climate: climate === null ? null : { airC: climate.airC, rhPct: climate.rhPct, surfaceC: climate.surfaceC },
     viscosity: null,
+    viscosityAt: null,
     stopped: null,
     code: null,
     potLife: null,
@@ -195,12 +219,10 @@ export function inCupG(run: BenchRun): string {
 }
 
 /** The base is stirred: pouring begins. */
-export function baseStirred(run: BenchRun): BenchRun {
-  return { ...run, stage: 'pour' }
-}
+export const baseStirred = (run: BenchRun): BenchRun => ({ ...run, stage: 'pour' })
 
 /** Where the tablet's clock and the server's stand: `at` by the server, `deviceAt` as the tablet shows it. Epoch ms. */
-interface BenchMoment {
+export interface BenchMoment {
   at: number
   deviceAt: number
 }
@@ -211,22 +233,11 @@ interface BenchMoment {
  */
 export function takeReading(run: BenchRun, reading: ScaleReading, source: ScaleSourceKind, moment: BenchMoment, tools: BenchTools): BenchRun {
   if (run.stage !== 'pour' || componentAtHand(run) === null) return run
-  const next = { ...run, reading: { grams: reading.grams, steady: reading.steady, at: toIso(moment.at), source } }
+  const next = { ...run, reading: { grams: reading.grams, steady: reading.steady, at: toIso(moment.at), source, fellFrom: null } }
   if (next.reactiveAt !== null || !reading.steady || tools.mix.potLifeMin === null && tools.mix.potLifeTable === null) return next
   const starts = potLifeStart(readMix(tools.input), poursOf(next).map(({ index, grams, at }) => ({ index, grams, at: Date.parse(at) })))
   return starts === null ? next : { ...next, reactiveAt: toIso(moment.at), deviceReactiveAt: toIso(moment.deviceAt) }
 }
-
-/** Counts from zero again; what is in stays in. */
-export function tared(run: BenchRun): BenchRun {
-  return { ...run, taredG: weighingG(run), reading: { ...NO_READING, source: run.reading.source, at: run.reading.at } }
-}
-
-/** Up to so many grams next to nothing stands on the scale, and a tare wipes nothing worth asking about. */
-const ASK_ABOVE_G = '5'
-
-/** True when a tare would wipe a reading that somebody may still need. */
-export const asksBeforeTare = (run: BenchRun): boolean => new D(run.reading.grams || '0').gt(ASK_ABOVE_G)
 
 export function chooseLot(run: BenchRun, index: number, lotId: string): BenchRun {
   return { ...run, lots: run.lots.map((lot, place) => (place === index ? lotId : lot)) }
@@ -259,7 +270,7 @@ export function nextStep(run: BenchRun, at: number): BenchRun {
     reading: NO_READING,
     taredG: '0',
   }
-  return moved.place < moved.walk.length ? moved : { ...moved, stage: 'stand', pouredAt: toIso(at) }
+  return moved.place < moved.walk.length ? moved : { ...moved, stage: 'stand', pouredAt: run.pouredAt ?? toIso(at) }
 }
 
 export function stirred(run: BenchRun, at: number): BenchRun {

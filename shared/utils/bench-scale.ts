@@ -12,7 +12,7 @@ export interface ScaleReading {
   at: number
 }
 
-interface ScaleSource {
+export interface ScaleSource {
   readonly kind: ScaleSourceKind
   state: () => ScaleSourceState
   connect: () => Promise<void>
@@ -21,6 +21,8 @@ interface ScaleSource {
   tare: () => Promise<void>
   /** Calls back at each reading and each change from moving to steady. Answers the function that stops it. */
   readings: (listener: (reading: ScaleReading) => void) => () => void
+  /** Calls back when the state changes. Answers the function that stops it. */
+  states: (listener: (state: ScaleSourceState) => void) => () => void
 }
 
 /** The keypad as a scale: what is typed is what it reads. */
@@ -33,10 +35,10 @@ export interface KeypadSource extends ScaleSource {
 }
 
 /** A weight counts after it stood still so long. */
-const STEADY_MS = 1000
+export const STEADY_MS = 1000
 
 /** The clock and the timer that a source runs on, handed in so that a test can hold them. */
-interface SourceClock {
+export interface SourceClock {
   now: () => number
   /** Calls back once after so many milliseconds; answers the function that calls it off. */
   after: (ms: number, call: () => void) => () => void
@@ -45,6 +47,7 @@ interface SourceClock {
 /** A figure on the keypad is in motion while it is typed and steady a second after the last key. */
 export function keypadSource(clock: SourceClock): KeypadSource {
   const listeners = new Set<(reading: ScaleReading) => void>()
+  const watchers = new Set<(state: ScaleSourceState) => void>()
   let callOff = (): void => undefined
   let connected = false
 
@@ -65,12 +68,14 @@ export function keypadSource(clock: SourceClock): KeypadSource {
     state: () => (connected ? 'ready' : 'not-connected'),
     connect: () => {
       connected = true
+      for (const watcher of watchers) watcher('ready')
       return Promise.resolve()
     },
     disconnect: () => {
       connected = false
       callOff()
       listeners.clear()
+      watchers.clear()
     },
     tare: () => {
       type('')
@@ -79,6 +84,10 @@ export function keypadSource(clock: SourceClock): KeypadSource {
     readings: (listener) => {
       listeners.add(listener)
       return () => listeners.delete(listener)
+    },
+    states: (watcher) => {
+      watchers.add(watcher)
+      return () => watchers.delete(watcher)
     },
     type,
     reset: () => {

@@ -1,8 +1,9 @@
 import { describe, expect, it } from 'vitest'
-import { acceptCorrection, correctionLines, judgeRun, keepAsPoured } from '#shared/utils/bench-judge'
+import { acceptCorrection, correctionLines, culpritOf, judgeRun, keepAsPoured } from '#shared/utils/bench-judge'
 import { draftOf } from '#shared/utils/bench-draft'
 import { reckon } from '#shared/utils/bench-reckon'
-import { acceptUndecided, asksBeforeTare, baseStirred, canEmpty, nextStep, poursOf, pouredG, startRun, stopRun, takeReading, tared } from '#shared/utils/bench-run'
+import { asksBeforeTare, tared } from '#shared/utils/bench-lift'
+import { acceptUndecided, baseStirred, canEmpty, nextStep, poursOf, pouredG, startRun, stopRun, takeReading } from '#shared/utils/bench-run'
 import type { BenchRun } from '#shared/utils/bench-run'
 import { DraftBody } from '#shared/schemas/drafts'
 import { id, setup, snapshot, tools } from './shop'
@@ -101,6 +102,14 @@ describe('correction', () => {
     const thinner = nextStep(added, at)
     expect(judgeRun(thinner, kit)).toMatchObject({ weighing: { index: 2, isTopUp: false, targetG: '184.2' }, needsCorrection: false })
     expect(pour(thinner, '184.2').stage).toBe('stand')
+  })
+
+  it('blames the hardener, not a base that leads', () => {
+    const run = read(pour(begin(), '950'), '520')
+    const { answer } = judgeRun(run, kit)
+    expect(answer.components.map(({ verdict }) => verdict)).toEqual(['too-much', 'too-much', null])
+    expect(culpritOf(kit, answer, [])).toBe(1)
+    expect(culpritOf(kit, answer, [1])).toBeNull()
   })
 
   it('goes on when it is kept with a reason and a word for it', () => {
