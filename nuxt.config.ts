@@ -41,6 +41,11 @@ export default defineNuxtConfig({
   nitro: {
     compressPublicAssets: { brotli: true, gzip: true },
   },
+  experimental: {
+    // A page is fetched when somebody points at its link, not because its link is in sight: a bar of six links would
+    // bring six pages along with the first.
+    defaults: { nuxtLink: { prefetchOn: { visibility: false, interaction: true } } },
+  },
   vite: {
     // An inlined font would break the content security policy.
     build: { assetsInlineLimit: 0 },

@@ -1,4 +1,4 @@
-import Decimal from 'decimal.js'
+import { powerOfTen, unitsOf } from '#shared/utils/decimal-text'
 import type { BenchPart } from '#shared/utils/bench-tools'
 import { patternOf } from './batch-words'
 import type { ComponentRole } from './roles'
@@ -18,10 +18,11 @@ export function cupLayers(
 
 /** Brims in grams that a drawn cup may have. */
 const BRIMS = ['100', '250', '500', '1000', '1500', '2000', '3000', '5000', '10000', '25000', '60000']
-const ROOM = '1.18'
+/** The cup holds so many hundredths of what was poured. */
+const ROOM = 118n
 
 /** A brim that looks right for so many grams, with some room: the record keeps grams, not which cup stood there. */
 export function brimFor(pouredG: string): string {
-  const least = new Decimal(pouredG).times(ROOM)
-  return BRIMS.find(brim => least.lte(brim)) ?? pouredG
+  const { units, scale } = unitsOf(pouredG)
+  return BRIMS.find(brim => units * ROOM <= BigInt(brim) * 100n * powerOfTen(scale)) ?? pouredG
 }

@@ -1,4 +1,4 @@
-import Decimal from 'decimal.js'
+import { decimalsNeeded, digitsOf, unitsOf, withScale } from '#shared/utils/decimal-text'
 import { wallTime } from '#shared/utils/zone'
 
 /**
@@ -28,13 +28,10 @@ export interface NumberParts {
  * @param signed also a plus for values above zero
  */
 export function numberParts(value: string, decimals?: number, signed = false): NumberParts {
-  const exact = new Decimal(value)
-  if (!exact.isFinite()) throw new RangeError(`not a finite decimal: ${value}`)
-  const stands = /\.(\d+)$/.exec(value)?.[1]?.length ?? exact.decimalPlaces()
-  const text = exact.abs().toFixed(decimals ?? stands, Decimal.ROUND_HALF_UP)
-  const [whole = '0', fraction = ''] = text.split('.')
-  const isZero = /^0*$/.test(whole + fraction)
-  const sign = isZero ? '' : exact.isNegative() ? MINUS : signed ? '+' : ''
+  const read = unitsOf(value)
+  const shown = withScale(read, decimals ?? read.scale)
+  const { whole, fraction } = digitsOf(shown)
+  const sign = shown.units === 0n ? '' : shown.units < 0n ? MINUS : signed ? '+' : ''
   return { sign, groups: whole.replace(/\B(?=(\d{3})+$)/g, ' ').split(' '), fraction }
 }
 
@@ -51,7 +48,7 @@ export function grams(value: string, decimals?: number): string {
 
 /** Decimals of a scale's division: '0.1' → 1, '5' → 0. */
 export function decimalsOf(division: string): number {
-  return new Decimal(division).decimalPlaces()
+  return decimalsNeeded(unitsOf(division))
 }
 
 /** Per cent for the eye: `65 %`, with `signed` `+5.0 %`. The space does not break. */
@@ -67,7 +64,7 @@ export function area(valueM2: string, decimals = 2): string {
 
 /** Parts of a mix: `100 : 50 : 20`; a thinner range stands as `20–30`. */
 export function ratio(parts: readonly (string | readonly [string, string])[]): string {
-  const plain = (part: string): string => grams(new Decimal(part).toFixed())
+  const plain = (part: string): string => grams(part, decimalsOf(part))
   return parts.map(part => typeof part === 'string' ? plain(part) : `${plain(part[0])}–${plain(part[1])}`).join(' : ')
 }
 

@@ -1,7 +1,7 @@
-import { Decimal } from 'decimal.js'
+import { digitsOf, powerOfTen, unitsOf } from './decimal-text'
 
 /** Milliseconds of a minute. */
-const MINUTE_MS = 60_000
+const MINUTE_MS = 60_000n
 
 /** ISO 8601 UTC with milliseconds → whole epoch milliseconds. The engine counts in these only. */
 export function toMs(iso: string): number {
@@ -20,13 +20,22 @@ export function toIso(at: number): string {
  * @param rounding `down` for what must not last longer, `up` for what must not be shorter
  */
 export function minutesToMs(minutes: string, rounding: 'down' | 'up' = 'down'): number {
-  const exact = new Decimal(minutes).times(MINUTE_MS)
-  return (rounding === 'down' ? exact.floor() : exact.ceil()).toNumber()
+  const { units, scale } = unitsOf(minutes)
+  const [exact, divisor] = [units * MINUTE_MS, powerOfTen(scale)]
+  return Number(rounding === 'down' ? divideDown(exact, divisor) : -divideDown(-exact, divisor))
+}
+
+function divideDown(value: bigint, divisor: bigint): bigint {
+  const cut = value / divisor
+  return value < 0n && cut * divisor !== value ? cut - 1n : cut
 }
 
 /** Whole milliseconds → minutes as a plain decimal, rounded down to a thousandth. */
 export function msToMinutes(ms: number): string {
-  return new Decimal(ms).div(MINUTE_MS).toDecimalPlaces(3, Decimal.ROUND_FLOOR).toFixed()
+  const units = divideDown(BigInt(ms) * 1000n, MINUTE_MS)
+  const { whole, fraction } = digitsOf({ units, scale: 3 })
+  const decimals = fraction.replace(/0+$/, '')
+  return `${units < 0n ? '-' : ''}${whole}${decimals && `.${decimals}`}`
 }
 
 /** An instant so many minutes later, rounded down: a pot life is never lengthened by rounding. */
