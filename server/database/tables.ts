@@ -2,7 +2,7 @@
  * Every table of the project and what the application's database user may do with it.
  *
  * `record`: what happened; never changed, so INSERT and SELECT only. `mutable`: present state.
- * `erasable`: present state whose rows may go (keys that expire, limits, sessions). `reference`: read only.
+ * `erasable`: present state whose rows may go (keys that expire, limits, sessions, what can be made anew from the record). `reference`: read only.
  * A table that stands in no list fails a test, so that nobody forgets to decide.
  */
 export const tables = {
@@ -50,7 +50,7 @@ export const tables = {
     'timers',
     'users',
   ],
-  erasable: ['idempotency_keys', 'sessions', 'sign_in_limits'],
+  erasable: ['batch_uses', 'idempotency_keys', 'sessions', 'sign_in_limits'],
   reference: ['chemistry_rules', 'hazard_statements', 'knex_migrations'],
 } as const
 

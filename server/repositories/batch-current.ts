@@ -12,7 +12,13 @@ export interface NewCurrent {
   lateAt: number | null
   endsAt: number | null
   closedAt: number | null
+  jobId: string | null
+  mixedByUserId: string
+  gunId: string | null
+  purpose: string | null
+  pouredTotalG: string
   worstDeviationPct: string | null
+  worstRole: string | null
   outOfTolerance: boolean
   corrected: boolean
   reviewOpen: boolean
@@ -24,7 +30,8 @@ export async function insertCurrent(current: NewCurrent, now: number, trx: Knex.
   await trx('batch_current').insert({
     batch_id: current.batchId, state: current.state, mixed_at: toInstant(current.mixedAt), booth_id: current.boothId,
     reactive_at: instantOrNull(current.reactiveAt), late_at: instantOrNull(current.lateAt), ends_at: instantOrNull(current.endsAt),
-    closed_at: instantOrNull(current.closedAt), worst_deviation_pct: current.worstDeviationPct, out_of_tolerance: current.outOfTolerance,
+    closed_at: instantOrNull(current.closedAt), job_id: current.jobId, mixed_by_user_id: current.mixedByUserId, gun_id: current.gunId,
+    purpose: current.purpose, poured_total_g: current.pouredTotalG, worst_deviation_pct: current.worstDeviationPct, worst_role: current.worstRole, out_of_tolerance: current.outOfTolerance,
     corrected: current.corrected, review_open: current.reviewOpen, created_at: toInstant(now), updated_at: toInstant(now),
   })
 }
@@ -82,8 +89,8 @@ export async function lockCurrent(id: string, trx: Knex.Transaction): Promise<Cu
     .join('mixes as m', 'm.id', 'r.mix_id')
     .where('c.batch_id', id)
     .first<CurrentRow>(
-      'c.batch_id', 'b.code', 'c.state', 'm.name as mix_name', 'b.plan_id', 'b.job_id', 'b.job_step_id', 'b.coats', 'b.gun_id', 'c.booth_id',
-      'c.mixed_at', 'c.reactive_at', 'c.late_at', 'c.ends_at', 'c.first_spray_at', 'c.last_spray_at', 'c.closed_at', 'b.poured_total_g',
+      'c.batch_id', 'b.code', 'c.state', 'm.name as mix_name', 'b.plan_id', 'c.job_id', 'b.job_step_id', 'b.coats', 'c.gun_id', 'c.booth_id',
+      'c.mixed_at', 'c.reactive_at', 'c.late_at', 'c.ends_at', 'c.first_spray_at', 'c.last_spray_at', 'c.closed_at', 'c.poured_total_g',
     )
   return {
     id: row.batch_id,
@@ -130,4 +137,44 @@ export async function updateCurrent(id: string, change: CurrentChange, now: numb
   if (change.disposal !== undefined) columns.disposal = change.disposal
   if (change.used !== undefined) columns.used = change.used
   await trx('batch_current').where({ batch_id: id }).update(columns)
+}
+
+/** Everything that a batch is now, by its record, its events and its amendments. Instants are epoch milliseconds. */
+export interface EffectiveCurrent extends NewCurrent {
+  firstSprayAt: number | null
+  lastSprayAt: number | null
+  leftoverG: string | null
+  leftoverWeighed: boolean | null
+  disposal: string | null
+  used: 'in-time' | 'late' | 'past-life' | null
+  amended: boolean
+  /** What the amendments changed beyond these columns, or null where nothing was amended. */
+  effective: unknown
+}
+
+/** Puts the present state in agreement with the record. Keeps the number of the version going. */
+export async function rewriteCurrent(current: EffectiveCurrent, now: number, trx: Knex.Transaction): Promise<void> {
+  await trx('batch_current').where({ batch_id: current.batchId }).update({ ...columnsOf(current), version: trx.raw('version + 1'), updated_at: toInstant(now) })
+}
+
+const running: readonly string[] = ['fresh', 'closing', 'life-up']
+
+/** True when the present state says what the record says. How far a running pot is, its timers say. */
+export async function isCurrent(current: EffectiveCurrent, db: Knex | Knex.Transaction): Promise<boolean> {
+  const { state, ...columns } = columnsOf(current)
+  const query = db('batch_current').where({ batch_id: current.batchId }).whereIn('state', running.includes(current.state) ? running : [String(state)])
+  for (const [column, value] of Object.entries(columns)) void query.whereRaw('?? <=> ?', [column, value as Knex.RawBinding])
+  return (await query.first<{ batch_id: string } | undefined>('batch_id')) !== undefined
+}
+
+function columnsOf(current: EffectiveCurrent): Record<string, unknown> {
+  return {
+    state: current.state, booth_id: current.boothId, reactive_at: instantOrNull(current.reactiveAt), late_at: instantOrNull(current.lateAt),
+    ends_at: instantOrNull(current.endsAt), first_spray_at: instantOrNull(current.firstSprayAt), last_spray_at: instantOrNull(current.lastSprayAt),
+    closed_at: instantOrNull(current.closedAt), leftover_g: current.leftoverG, leftover_weighed: current.leftoverWeighed, disposal: current.disposal,
+    used: current.used, job_id: current.jobId, mixed_by_user_id: current.mixedByUserId, gun_id: current.gunId, purpose: current.purpose,
+    poured_total_g: current.pouredTotalG, worst_deviation_pct: current.worstDeviationPct, worst_role: current.worstRole,
+    out_of_tolerance: current.outOfTolerance, corrected: current.corrected, review_open: current.reviewOpen, amended: current.amended,
+    effective: current.effective === null ? null : JSON.stringify(current.effective),
+  }
 }

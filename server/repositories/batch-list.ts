@@ -4,7 +4,9 @@ import { toInstant } from '../utils/rows'
 import { selectNamed, toNamed, type NamedRow } from './batch-rows'
 
 /** Filters of the log with the days of the shop as instants; epoch milliseconds. */
-export interface BatchFilter extends Pick<BatchListQuery, 'jobId' | 'materialId' | 'lotId' | 'state' | 'mixedBy' | 'boothId' | 'deviations' | 'review'> {
+export interface BatchFilter extends Pick<BatchListQuery, 'jobId' | 'materialId' | 'state' | 'mixedBy' | 'boothId' | 'deviations' | 'review'> {
+  /** Any of these lots; an empty list fits no batch. */
+  lotIds?: readonly string[] | undefined
   /** From this instant on. */
   from?: number | undefined
   /** Before this instant. */
@@ -25,26 +27,16 @@ export interface ListedBatch {
   sortedAt: number
 }
 
-/** Names in one sort order: by the record, or by the present state where the filter asks for that. */
-const byRecord = { at: 'b.mixed_at', id: 'b.id' } as const
-const byState = { at: 'c.mixed_at', id: 'c.batch_id' } as const
-
 /**
  * One page of the log, the youngest first, in one statement: the page's ids are found in an index first, names are
- * joined to those few rows only.
+ * joined to those few rows only. Every filter has an index in the order of the list; what a lot or a material is in
+ * stands in `batch_uses` in that order too.
  */
 export async function listBatchRows(filter: BatchFilter, db: Knex): Promise<ListedBatch[]> {
-  const order = filter.state !== undefined || filter.review !== undefined ? byState : byRecord
-  const page = db('batches as b').join('batch_current as c', 'c.batch_id', 'b.id')
-    .select(`${order.id} as page_id`, `${order.at} as page_at`)
-    .orderBy([{ column: order.at, order: 'desc' }, { column: order.id, order: 'desc' }])
-    .limit(filter.limit)
-  narrow(page, filter, order)
-  const rows = (await selectNamed(db.from(page.as('p')).join('batches as b', 'b.id', 'p.page_id').join('batch_current as c', 'c.batch_id', 'b.id'))
+  const rows = (await selectNamed(db.from(pageOf(filter, db).as('p')).join('batches as b', 'b.id', 'p.page_id').join('batch_current as c', 'c.batch_id', 'b.id'))
     .select(
-      'p.page_at',
+      'p.page_at', 'c.worst_role',
       db.raw('(SELECT a.code FROM batch_components x JOIN materials a ON a.id = x.material_id WHERE x.batch_id = b.id AND x.role = \'base\' ORDER BY x.component_index LIMIT 1) AS base_code'),
-      db.raw('(SELECT x.role FROM batch_components x WHERE x.batch_id = b.id AND x.role <> \'base\' AND x.deviation_pct IS NOT NULL ORDER BY ABS(x.deviation_pct) DESC, x.component_index LIMIT 1) AS worst_role'),
     )
     .orderBy([{ column: 'p.page_at', order: 'desc' }, { column: 'p.page_id', order: 'desc' }])) as ListRow[]
   return rows.map((row) => ({
@@ -53,23 +45,45 @@ export async function listBatchRows(filter: BatchFilter, db: Knex): Promise<List
   }))
 }
 
-function narrow(query: Knex.QueryBuilder, filter: BatchFilter, order: typeof byRecord | typeof byState): void {
-  const { jobId, materialId, lotId, state, mixedBy, boothId, from, before, deviations, review, after } = filter
-  if (jobId) void query.where('b.job_id', jobId)
-  if (mixedBy) void query.where('b.mixed_by_user_id', mixedBy)
-  if (boothId) void query.where('c.booth_id', boothId)
-  if (state) void query.where('c.state', state)
-  if (review !== undefined) void query.where('c.review_open', review)
-  if (from !== undefined) void query.where(order.at, '>=', toInstant(from))
-  if (before !== undefined) void query.where(order.at, '<', toInstant(before))
-  if (materialId) void query.whereExists((part) => part.select('x.batch_id').from('batch_components as x').whereRaw('x.batch_id = b.id').where('x.material_id', materialId))
-  if (lotId) void query.whereExists((part) => part.select('x.batch_id').from('batch_pours as x').whereRaw('x.batch_id = b.id').where('x.lot_id', lotId))
-  if (deviations) {
-    void query.where((part) => part.where('c.out_of_tolerance', true).orWhere('c.corrected', true).orWhere('c.state', 'stopped').orWhereIn('c.used', ['late', 'past-life']))
+/** Ids and instants of the page alone. */
+function pageOf(filter: BatchFilter, db: Knex): Knex.QueryBuilder {
+  const { lotIds, materialId, limit } = filter
+  const used = lotIds ?? (materialId === undefined ? null : [materialId])
+  const page = used === null ? db('batch_current as c') : db('batch_uses as o').whereIn('o.used_id', [...used])
+  const order = used === null ? { at: 'c.mixed_at', id: 'c.batch_id' } : { at: 'o.mixed_at', id: 'o.batch_id' }
+  if (used !== null && looksAtState(filter)) void page.join('batch_current as c', 'c.batch_id', 'o.batch_id')
+  // Several lots may have gone into one batch.
+  if (used !== null && used.length > 1) void page.distinct()
+  void page.select(`${order.id} as page_id`, `${order.at} as page_at`)
+    .orderBy([{ column: order.at, order: 'desc' }, { column: order.id, order: 'desc' }])
+    .limit(limit)
+  narrow(page, filter)
+  if (lotIds !== undefined && materialId !== undefined) {
+    void page.whereExists((part) => part.select('x.batch_id').from('batch_uses as x').where('x.used_id', materialId).whereRaw('x.mixed_at = o.mixed_at AND x.batch_id = o.batch_id'))
   }
-  // The first condition is a plain range of the index; the second only sorts out equal instants.
+  return within(page, filter, order)
+}
+
+const looksAtState = ({ jobId, state, mixedBy, boothId, deviations, review }: BatchFilter): boolean =>
+  [jobId, state, mixedBy, boothId, review].some((one) => one !== undefined) || deviations === true
+
+function narrow(page: Knex.QueryBuilder, { jobId, state, mixedBy, boothId, deviations, review }: BatchFilter): void {
+  if (jobId) void page.where('c.job_id', jobId)
+  if (mixedBy) void page.where('c.mixed_by_user_id', mixedBy)
+  if (boothId) void page.where('c.booth_id', boothId)
+  if (state) void page.where('c.state', state)
+  if (review !== undefined) void page.where('c.review_open', review)
+  if (deviations) void page.where('c.deviates', true)
+}
+
+/** The days asked for, and where the page before ended. */
+function within(page: Knex.QueryBuilder, { from, before, after }: BatchFilter, order: { at: string; id: string }): Knex.QueryBuilder {
+  if (from !== undefined) void page.where(order.at, '>=', toInstant(from))
+  if (before !== undefined) void page.where(order.at, '<', toInstant(before))
   if (after) {
     const at = toInstant(after.mixedAt)
-    void query.where(order.at, '<=', at).where((part) => part.where(order.at, '<', at).orWhere(order.id, '<', after.id))
+    // The first condition is a plain range of the index; the second only sorts out equal instants.
+    void page.where(order.at, '<=', at).where((part) => part.where(order.at, '<', at).orWhere(order.id, '<', after.id))
   }
+  return page
 }

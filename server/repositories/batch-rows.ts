@@ -51,17 +51,17 @@ export function selectNamed(query: Knex.QueryBuilder): Knex.QueryBuilder {
   return query
     .join('mix_revisions as r', 'r.id', 'b.mix_revision_id')
     .join('mixes as m', 'm.id', 'r.mix_id')
-    .join('users as u', 'u.id', 'b.mixed_by_user_id')
-    .leftJoin('jobs as j', 'j.id', 'b.job_id')
+    .join('users as u', 'u.id', 'c.mixed_by_user_id')
+    .leftJoin('jobs as j', 'j.id', 'c.job_id')
     .leftJoin('job_steps as s', 's.id', 'b.job_step_id')
     .leftJoin('schedule_steps as t', 't.id', 's.schedule_step_id')
     .leftJoin('booths as o', 'o.id', 'c.booth_id')
-    .leftJoin('guns as g', 'g.id', 'b.gun_id')
+    .leftJoin('guns as g', 'g.id', 'c.gun_id')
     .select(
       'b.id', 'b.code', 'b.outcome', 'c.state', 'b.pot_number', 'b.pot_count', 'm.code as mix_code', 'm.name as mix_name',
-      'r.number as mix_revision_number', 'b.job_id', 'j.code as job_code', 'j.title as job_title', 't.title as step_title', 'b.purpose',
-      'c.booth_id', 'o.name as booth_name', 'b.gun_id', 'g.name as gun_name', 'b.mixed_by_user_id', 'u.name as mixed_by_name',
-      'u.initials as mixed_by_initials', 'c.mixed_at', 'b.sealed_at', 'b.target_total_g', 'b.poured_total_g', 'c.reactive_at', 'c.late_at',
+      'r.number as mix_revision_number', 'c.job_id', 'j.code as job_code', 'j.title as job_title', 't.title as step_title', 'c.purpose',
+      'c.booth_id', 'o.name as booth_name', 'c.gun_id', 'g.name as gun_name', 'c.mixed_by_user_id', 'u.name as mixed_by_name',
+      'u.initials as mixed_by_initials', 'c.mixed_at', 'b.sealed_at', 'b.target_total_g', 'c.poured_total_g', 'c.reactive_at', 'c.late_at',
       'c.ends_at', 'c.first_spray_at', 'c.last_spray_at', 'c.closed_at', 'c.leftover_g', 'c.leftover_weighed', 'c.disposal', 'c.used',
       'c.worst_deviation_pct', 'c.out_of_tolerance', 'c.corrected', 'c.review_open', 'c.amended',
     )

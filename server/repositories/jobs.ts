@@ -210,9 +210,9 @@ interface BatchRow {
 
 /** The latest batches of a job, newest first. */
 export async function listJobBatches(jobId: string, limit: number, db: Db): Promise<JobBatch[]> {
-  const rows = await db('batches as b').join('batch_current as c', 'c.batch_id', 'b.id').join('users as u', 'u.id', 'b.mixed_by_user_id')
+  const rows = await db('batches as b').join('batch_current as c', 'c.batch_id', 'b.id').join('users as u', 'u.id', 'c.mixed_by_user_id')
     .where('b.job_id', jobId).orderBy([{ column: 'b.mixed_at', order: 'desc' }, { column: 'b.id', order: 'desc' }]).limit(limit)
-    .select<BatchRow[]>('b.id', 'b.code', 'b.job_step_id', 'b.mixed_at', 'b.poured_total_g', 'c.state', 'u.name as mixed_by_name')
+    .select<BatchRow[]>('b.id', 'b.code', 'b.job_step_id', 'b.mixed_at', 'c.poured_total_g', 'c.state', 'u.name as mixed_by_name')
   return rows.map(row => ({
     id: row.id, code: row.code, jobStepId: row.job_step_id, mixedAt: isoOf(row.mixed_at), pouredTotalG: decimalOf(row.poured_total_g),
     state: row.state, mixedByName: row.mixed_by_name,

@@ -193,7 +193,7 @@ export async function listLotBatches(lotId: string, limit: number, db: Db): Prom
     .join('mix_revisions as r', 'r.id', 'b.mix_revision_id')
     .join('mixes as x', 'x.id', 'r.mix_id')
     .leftJoin('jobs as j', 'j.id', 'b.job_id')
-    .whereExists(db('batch_pours as p').select(db.raw('1')).where('p.lot_id', lotId).whereRaw('p.batch_id = b.id'))
+    .whereIn('b.id', db('batch_uses as o').where('o.used_id', lotId).select('o.batch_id'))
     .orderBy([{ column: 'b.mixed_at', order: 'desc' }, { column: 'b.id', order: 'desc' }]).limit(limit)
     .select<BatchRow[]>('b.id', 'b.code', 'b.mixed_at', 'x.code as mix_code', 'x.name as mix_name', 'j.id as job_id', 'j.code as job_code', 'b.purpose',
       db.raw("(SELECT COALESCE(-SUM(v.grams), 0) FROM lot_movements v WHERE v.lot_id = ? AND v.batch_id = b.id AND v.kind IN ('poured', 'compensation')) AS grams", [lotId]))

@@ -95,8 +95,8 @@ async function sealedPots(filter: PotFilter, db: Db): Promise<LivePot[]> {
     .leftJoin('booths as bo', 'bo.id', 'c.booth_id')
     .leftJoin('guns as g', 'g.id', db.raw(gunOf('b')))
     .select(
-      'b.purpose', 'c.booth_id', 'bo.name as booth_name', 'g.id as gun_id', 'g.name as gun_name', 'c.state', 'c.mixed_at',
-      'c.reactive_at', 'c.late_at', 'c.ends_at', 'c.first_spray_at', 'c.last_spray_at', 'b.poured_total_g', 'c.leftover_g',
+      'c.purpose', 'c.booth_id', 'bo.name as booth_name', 'g.id as gun_id', 'g.name as gun_name', 'c.state', 'c.mixed_at',
+      'c.reactive_at', 'c.late_at', 'c.ends_at', 'c.first_spray_at', 'c.last_spray_at', 'c.poured_total_g', 'c.leftover_g',
     )
   const { batchId, boothId, liveAt } = filter
   if (batchId) void query.where('b.id', batchId)

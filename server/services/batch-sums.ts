@@ -89,6 +89,8 @@ export interface BatchSums {
   pouredTotalG: string
   /** Furthest from the ratio among what follows the base, in per cent; null when nothing can be compared. */
   worstDeviationPct: string | null
+  /** What that component does in the mix. */
+  worstRole: string | null
   outOfTolerance: boolean
   working: WorkingLine[]
 }
@@ -106,14 +108,15 @@ export function judgeBatch(revision: MixRevision, body: Pick<DraftBody, 'plan' |
   const poured = pouredOf(body)
   const pour = calculatePour({ mix, scaleDivisionG: divisionG, scaleMpeG: mpeG, targetTotalG: meantTotalG(plan, body.corrections), poured }, { scale: record })
   const baseIndex = readMix(mix).baseIndex
-  const followers = pour.components.filter((_, index) => index !== baseIndex)
-  const deviations = followers.flatMap(({ deviationPct }) => (deviationPct === null ? [] : [new D(deviationPct)]))
-  const worst = deviations.reduce<Dec | null>((most, next) => (most === null || next.abs().gt(most.abs()) ? next : most), null)
+  const followers = pour.components.map((one, index) => ({ ...one, role: revision.components[index]?.role ?? null, index })).filter(({ index }) => index !== baseIndex)
+  const deviations = followers.flatMap(({ deviationPct, role }) => (deviationPct === null ? [] : [{ pct: new D(deviationPct), role }]))
+  const worst = deviations.reduce<(typeof deviations)[number] | null>((most, next) => (most === null || next.pct.abs().gt(most.pct.abs()) ? next : most), null)
   return {
     plan,
     pour,
     pouredTotalG: print(sum(poured.map(({ pouredG }) => new D(pouredG)))),
-    worstDeviationPct: worst === null ? null : print(worst),
+    worstDeviationPct: worst && print(worst.pct),
+    worstRole: worst && worst.role,
     outOfTolerance: followers.some(({ verdict }) => verdict === 'short' || verdict === 'too-much'),
     working: [...plan.working, ...pourWorking(mix, poured, pour, baseIndex)],
   }

@@ -1,9 +1,8 @@
-import type { Batch, BatchCreateBody, BatchList, BatchListQuery } from '#shared/schemas/batches'
-import { addDays, startOfShopDay } from '#shared/utils/zone'
+import type { Batch, BatchCreateBody } from '#shared/schemas/batches'
 import { audienceOf } from '../live/audience'
 import { insertCurrent } from '../repositories/batch-current'
-import { listBatchRows, type BatchFilter } from '../repositories/batch-list'
 import { findBatch } from '../repositories/batch-page'
+import { insertUses } from '../repositories/batch-uses'
 import { insertBatch, insertWaste, type PourRecord } from '../repositories/batches'
 import { startJobStep } from '../repositories/draft-references'
 import { endDraft, lockDraft, type StoredDraft } from '../repositories/drafts'
@@ -11,7 +10,6 @@ import { drawFromLots, lockLots } from '../repositories/lot-stock'
 import { readShop } from '../repositories/settings'
 import type { Context } from '../utils/context'
 import { notFound, Refusal, ruleBroken } from '../utils/errors'
-import { decodeCursor, encodeCursor } from '../utils/keyset'
 import { toInstant } from '../utils/rows'
 import { mutateUnlessDone } from '../utils/settled'
 import type { Mutation } from '../utils/transactions'
@@ -84,11 +82,20 @@ async function writeBatch(m: Mutation, sealing: Sealing, pours: readonly PourRec
     lateAt: times?.lateAt ?? null,
     endsAt: times?.endsAt ?? null,
     closedAt: body.stopped ? notAfter(body.stopped.at, m.now) : null,
+    jobId: references.jobStep?.jobId ?? null,
+    mixedByUserId: body.mixedByUserId,
+    gunId: body.gunId,
+    purpose: body.purpose,
+    pouredTotalG: sums.pouredTotalG,
     worstDeviationPct: deviationOf(sums.worstDeviationPct),
+    worstRole: sums.worstRole,
     outOfTolerance: !body.stopped && sums.outOfTolerance,
     corrected: body.corrections.some(({ accepted }) => accepted) || pours.some(({ round }) => round > 0),
     reviewOpen: review.length > 0,
   }, m.now, m.trx)
+  await insertUses({
+    batchId: draft.id, mixedAt, usedIds: [...pours.map(({ lotId }) => lotId), ...references.revision.components.map(({ materialId }) => materialId)],
+  }, m.trx)
   const stock = await drawFromLots(drawn, draft.id, body.mixedByUserId, toInstant(m.now), m.trx)
   await (body.stopped ? endStopped(m, sealing) : startPot(m, sealing))
   await endDraft(draft.id, body.stopped ? 'stopped' : 'sealed', m.now, m.trx)
@@ -137,34 +144,4 @@ export async function getBatch(ctx: Pick<Context, 'db' | 'principal'>, id: strin
   const { boothId } = audienceOf(ctx.principal, undefined)
   if (!batch || (boothId !== null && batch.boothId !== boothId)) throw notFound('The batch')
   return batch
-}
-
-/**
- * The log, the youngest first. Days are the shop's. A booth's screen sees its own booth.
- *
- * @throws Refusal 400 for a cursor of another list, 403 when a screen asks for another booth
- */
-export async function listBatches(ctx: Pick<Context, 'db' | 'principal'>, query: BatchListQuery): Promise<BatchList> {
-  const { from, to, cursor, limit, ...filters } = query
-  const { zone } = await readShop(ctx.db)
-  const filter: BatchFilter = {
-    ...filters,
-    boothId: audienceOf(ctx.principal, query.boothId).boothId ?? undefined,
-    from: from === undefined ? undefined : startOfShopDay(from, zone),
-    before: to === undefined ? undefined : startOfShopDay(addDays(to, 1), zone),
-    after: cursor === undefined ? undefined : readCursor(cursor),
-    limit: limit + 1,
-  }
-  const rows = await listBatchRows(filter, ctx.db)
-  const shown = rows.slice(0, limit)
-  const last = shown.at(-1)
-  return {
-    items: shown.map(({ item }) => item),
-    nextCursor: rows.length > limit && last ? encodeCursor([last.sortedAt, last.item.id]) : null,
-  }
-}
-
-function readCursor(cursor: string): { mixedAt: number; id: string } {
-  const [mixedAt, id] = decodeCursor(cursor, ['instant', 'id'])
-  return { mixedAt: Number(mixedAt), id: String(id) }
 }

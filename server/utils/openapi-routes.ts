@@ -1,5 +1,8 @@
 import type * as z from 'zod/mini'
-import { Batch, BatchCloseBody, BatchCreateBody, BatchEventBody, BatchList, BatchListQuery, BatchParams } from '#shared/schemas/batches'
+import { AmendmentBody } from '#shared/schemas/amendments'
+import {
+  Batch, BatchCloseBody, BatchCreateBody, BatchEventBody, BatchExportQuery, BatchFacets, BatchList, BatchListQuery, BatchParams, BatchReviewBody,
+} from '#shared/schemas/batches'
 import { BenchSnapshot } from '#shared/schemas/bench'
 import { calculations } from '#shared/schemas/calculations'
 import { ClimateCreateBody, ClimateList, ClimateListQuery, ClimateReading } from '#shared/schemas/climate'
@@ -31,8 +34,8 @@ export interface ApiRoute {
   query?: Schema
   params?: Schema
   body?: Schema
-  /** Null answers nothing (204); `stream` answers server-sent events. */
-  answer: Schema | 'stream' | null
+  /** Null answers nothing (204); `stream` answers server-sent events, `csv` a table. */
+  answer: Schema | 'stream' | 'csv' | null
   status: 200 | 201 | 204
   /** A POST that needs an Idempotency-Key. */
   idempotent: boolean
@@ -74,9 +77,13 @@ export const apiRoutes: readonly ApiRoute[] = [
   post('/api/number-blocks/{id}/void', 'numbers:void', 'Closes a block of numbers with a reason', NumberBlock, { ...byId, body: NumberBlockVoidBody, status: 200 }),
   get('/api/batches', 'batches:read', 'The log of batches', BatchList, { query: BatchListQuery }),
   post('/api/batches', 'batches:create', 'Seals a batch into the record', Batch, { body: BatchCreateBody }),
+  get('/api/batches/facets', 'batches:search', 'What the log can be narrowed by', BatchFacets),
+  get('/api/batches/export.csv', 'batches:search', 'The filtered log as a table', 'csv', { query: BatchExportQuery }),
   get('/api/batches/{id}', 'batches:read', 'A batch', Batch, { params: BatchParams }),
   post('/api/batches/{id}/events', 'batches:event', 'First spray, last spray or a note', Batch, { params: BatchParams, body: BatchEventBody }),
   post('/api/batches/{id}/close', 'batches:close', 'A pot is emptied', Batch, { params: BatchParams, body: BatchCloseBody, status: 200 }),
+  post('/api/batches/{id}/amendments', 'batches:amend', 'Puts one value right, with a reason', Batch, { params: BatchParams, body: AmendmentBody }),
+  post('/api/batches/{id}/review', 'batches:review', 'A foreman settles what a batch was marked for', Batch, { params: BatchParams, body: BatchReviewBody }),
   get('/api/timers', 'timers:read', 'Timers', TimerList, { query: TimerListQuery }),
   post('/api/timers', 'timers:create', 'Sets a free timer', Timer, { body: TimerCreateBody }),
   post('/api/timers/{id}/silence', 'timers:silence', 'Ten minutes of quiet', Timer, { ...byId, body: TimerSilenceBody, status: 200 }),

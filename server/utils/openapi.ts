@@ -46,6 +46,7 @@ const keyHeader: Json = {
 function success({ status, answer }: ApiRoute): Json {
   if (answer === null) return { [status]: { description: 'Done.' } }
   if (answer === 'stream') return { [status]: { description: 'Server-sent events.', content: { 'text/event-stream': { schema: { type: 'string' } } } } }
+  if (answer === 'csv') return { [status]: { description: 'A table, RFC 4180.', content: { 'text/csv': { schema: { type: 'string' } } } } }
   return { [status]: { description: 'Done.', content: { 'application/json': { schema: jsonSchema(answer, 'output') } } } }
 }
 

@@ -5,7 +5,7 @@ import { DraftCorrection, DraftPlan, PotLife, pourSources } from './drafts'
 import { Cursor, DateText, DecimalText, Flag, GramsText, InstantText, Limit, Uuid, words } from './fields'
 
 /** Why a foreman should look at a batch: what is in the cup is kept as a fact. */
-const reviewCodes = [
+export const reviewCodes = [
   'out-of-tolerance', 'not-complete', 'not-mixed-in-order', 'expired-lot', 'blocked-lot', 'late-entry', 'clock-ahead',
 ] as const
 export type ReviewCode = (typeof reviewCodes)[number]
@@ -26,6 +26,8 @@ export const BatchListQuery = z.strictObject({
   /** Any component's material. */
   materialId: z.optional(Uuid),
   lotId: z.optional(Uuid),
+  /** The maker's batch number on the tin, or how it begins. */
+  lot: z.optional(z.string().check(z.trim(), z.minLength(1, 'Give a lot number.'), z.maxLength(60, 'A lot number has at most 60 characters.'))),
   state: z.optional(BatchState),
   mixedBy: z.optional(Uuid),
   boothId: z.optional(Uuid),
@@ -40,6 +42,10 @@ export const BatchListQuery = z.strictObject({
   limit: Limit,
 })
 export type BatchListQuery = z.infer<typeof BatchListQuery>
+
+/** Filters of `GET /api/batches/export.csv`: those of the log, without pages. */
+export const BatchExportQuery = z.omit(BatchListQuery, { cursor: true, limit: true })
+export type BatchExportQuery = z.infer<typeof BatchExportQuery>
 
 const named = {
   id: Uuid,
@@ -100,6 +106,8 @@ export const BatchList = z.strictObject({ items: z.array(BatchListItem), nextCur
 export type BatchList = z.infer<typeof BatchList>
 
 const BatchPour = z.strictObject({
+  /** Its place among the weighings of the component, from 0. */
+  position: z.int(),
   lotId: Uuid,
   lotNumber: z.string(),
   grams: GramsText,
@@ -145,8 +153,12 @@ const BatchAmendment = z.strictObject({
   field: z.string(),
   from: z.nullable(z.string()),
   to: z.nullable(z.string()),
+  /** Names where `from` and `to` are ids; else the same. */
+  fromName: z.nullable(z.string()),
+  toName: z.nullable(z.string()),
   reason: z.string(),
   userName: z.string(),
+  approvedByName: z.nullable(z.string()),
   at: InstantText,
 })
 
@@ -163,6 +175,9 @@ export const Batch = z.strictObject({
   scaleName: z.nullable(z.string()),
   deviceName: z.nullable(z.string()),
   review: z.array(z.enum(reviewCodes)),
+  /** Those that nobody settled yet. */
+  openReview: z.array(z.enum(reviewCodes)),
+  note: z.nullable(z.string()),
   areaM2: z.nullable(DecimalText),
   filmWeightGsm: z.nullable(DecimalText),
   filmWeightIs: z.nullable(z.enum(['deposited', 'sprayed'])),
@@ -173,7 +188,7 @@ export const Batch = z.strictObject({
   containsIsocyanates: z.boolean(),
   chemistry: z.nullable(z.string()),
   climate: z.nullable(z.strictObject({
-    airC: DecimalText, rhPct: z.nullable(DecimalText), surfaceC: z.nullable(DecimalText),
+    airC: z.nullable(DecimalText), rhPct: z.nullable(DecimalText), surfaceC: z.nullable(DecimalText),
   })),
   viscosity: z.nullable(z.strictObject({
     cup: z.string(), seconds: DecimalText, materialC: z.nullable(DecimalText),
@@ -200,6 +215,27 @@ export const Batch = z.strictObject({
   })),
 })
 export type Batch = z.infer<typeof Batch>
+
+/** Body of `POST /api/batches/:id/review`: a foreman has looked at these, and says what came of it. */
+export const BatchReviewBody = z.strictObject({
+  codes: z.array(z.enum(reviewCodes)).check(z.minLength(1, 'Say what is settled.'), z.maxLength(reviewCodes.length)),
+  reason: words(400),
+})
+export type BatchReviewBody = z.infer<typeof BatchReviewBody>
+
+const choice = { id: Uuid, name: z.string() }
+
+/** Answer of `GET /api/batches/facets`: what the log can be narrowed by. */
+export const BatchFacets = z.strictObject({
+  jobs: z.array(z.strictObject({ ...choice, code: z.string() })),
+  materials: z.array(z.strictObject({ ...choice, code: z.string() })),
+  people: z.array(z.strictObject(choice)),
+  booths: z.array(z.strictObject(choice)),
+  guns: z.array(z.strictObject(choice)),
+  /** Batches that wait for a foreman; at most 1000 are counted. */
+  reviewOpen: z.int(),
+})
+export type BatchFacets = z.infer<typeof BatchFacets>
 
 /** Body of `POST /api/batches/:id/events`. Without `at` it happened now. */
 export const BatchEventBody = z.strictObject({

@@ -1,5 +1,5 @@
 import { BatchListQuery } from '#shared/schemas/batches'
-import { listBatches } from '../../services/batches'
+import { listBatches } from '../../services/batch-log'
 
 export default defineRoute({
   permission: 'batches:read',
