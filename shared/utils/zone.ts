@@ -86,3 +86,11 @@ function dayNumber(day: string): number {
   if (Number.isNaN(at)) throw new RangeError(`not a calendar day: ${day}`)
   return at / dayMs
 }
+
+/** The zone's wall clock with its offset, to the second: `2026-11-17T13:26:05+01:00`. Names one instant and can be read by people. */
+export function zonedIso(ms: number, zone: string): string {
+  const offset = offsetMs(ms, zone)
+  const minutes = Math.abs(offset) / 60_000
+  const two = (count: number) => String(Math.floor(count)).padStart(2, '0')
+  return `${new Date(ms + offset).toISOString().slice(0, 19)}${offset < 0 ? '-' : '+'}${two(minutes / 60)}:${two(minutes % 60)}`
+}
