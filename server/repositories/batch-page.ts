@@ -1,6 +1,8 @@
 import type { Knex } from 'knex'
 import type { Batch, BatchComponent } from '#shared/schemas/batches'
 import { decimalOf, decimalOrNull, isoOf, isoOrNull } from '../utils/rows'
+import { readAmendments } from './batch-amendments'
+import type { EffectiveFacts } from './batch-record'
 import { selectNamed, toNamed, type NamedRow } from './batch-rows'
 
 type Db = Knex | Knex.Transaction
@@ -22,6 +24,7 @@ interface PageRow extends NamedRow {
   device_name: string | null
   review: string
   snapshot: string
+  effective: string | null
   area_m2: string | null
   film_weight_gsm: string | null
   film_weight_is: Batch['filmWeightIs']
@@ -45,33 +48,45 @@ export async function findBatch(id: string, db: Db): Promise<Batch | null> {
     .where('b.id', id)
     .select(
       'c.version', 'b.plan_id', 'r.mix_id', 'b.mix_revision_id', 'b.job_step_id', 'b.scale_id', 'sc.name as scale_name', 'd.name as device_name',
-      'b.review', 'b.snapshot', 'b.area_m2', 'b.film_weight_gsm', 'b.film_weight_is', 'b.coats', 'b.transfer_efficiency_pct', 'b.pot_life_min',
+      'b.review', 'b.snapshot', 'c.effective', 'b.area_m2', 'b.film_weight_gsm', 'b.film_weight_is', 'b.coats', 'b.transfer_efficiency_pct', 'b.pot_life_min',
       'b.pot_life_basis', 'b.air_c', 'b.rh_pct', 'b.surface_c', 'b.material_c', 'b.viscosity_cup', 'b.viscosity_seconds',
     )
     .first()) as PageRow | undefined
   if (!row) return null
-  const { components, chemistry, containsIsocyanates } = await readComponents(id, db)
+  const facts = row.effective === null ? null : (JSON.parse(row.effective) as EffectiveFacts)
+  const { components, chemistry, containsIsocyanates } = await readComponents(id, facts, db)
   const snapshot = JSON.parse(row.snapshot) as BatchSnapshot
+  const events = await readEvents(id, db)
+  const page = toPage(row, facts)
   return {
     ...toNamed(row),
-    ...toPage(row),
+    ...page,
+    openReview: row.review_open === 1 ? openReviewOf(page.review, events) : [],
     components,
     chemistry,
     containsIsocyanates,
     plan: snapshot.plan,
     corrections: snapshot.corrections,
     stopped: snapshot.stopped,
-    working: snapshot.working,
+    working: facts?.working ?? snapshot.working,
     engineVersion: snapshot.engineVersion,
     pieces: await readPieces(id, db),
-    events: await readEvents(id, db),
+    events,
     amendments: await readAmendments(id, db),
     applications: await readApplications(id, db),
   }
 }
 
-function toPage(row: PageRow) {
-  const { reactive_at: startsAt, late_at: lateAt, ends_at: endsAt } = row
+/** Codes that no settling names; one without names settled all that the record had. */
+function openReviewOf(review: Batch['review'], events: Batch['events']): Batch['review'] {
+  const settled = events.filter(({ kind }) => kind === 'review-settled')
+  const named = new Set(settled.flatMap(({ details }) => (Array.isArray(details.codes) ? details.codes.map(String) : review)))
+  const open = review.filter((code) => !named.has(code))
+  // All named and still open: a weight was amended after it was settled.
+  return open.length > 0 ? open : review
+}
+
+function toPage(row: PageRow, facts: EffectiveFacts | null) {
   return {
     version: row.version,
     planId: row.plan_id,
@@ -81,19 +96,35 @@ function toPage(row: PageRow) {
     scaleId: row.scale_id,
     scaleName: row.scale_name,
     deviceName: row.device_name,
-    review: JSON.parse(row.review) as Batch['review'],
+    review: facts?.review ?? (JSON.parse(row.review) as Batch['review']),
+    note: facts?.note ?? null,
     areaM2: decimalOrNull(row.area_m2),
     filmWeightGsm: decimalOrNull(row.film_weight_gsm),
     filmWeightIs: row.film_weight_is,
     coats: row.coats,
     transferEfficiencyPct: decimalOrNull(row.transfer_efficiency_pct),
-    potLife: startsAt && lateAt && endsAt && row.pot_life_basis && row.pot_life_min
-      ? { startsAt: isoOf(startsAt), lateAt: isoOf(lateAt), endsAt: isoOf(endsAt), basis: row.pot_life_basis, potLifeMin: decimalOf(row.pot_life_min) }
-      : null,
-    climate: row.air_c === null ? null : { airC: decimalOf(row.air_c), rhPct: decimalOrNull(row.rh_pct), surfaceC: decimalOrNull(row.surface_c) },
-    viscosity: row.viscosity_cup === null || row.viscosity_seconds === null
-      ? null
-      : { cup: row.viscosity_cup, seconds: decimalOf(row.viscosity_seconds), materialC: decimalOrNull(row.material_c) },
+    potLife: potLifeOf(row, facts ? facts.potLife : recordedLife(row)),
+    ...conditionsOf(facts ?? {
+      airC: decimalOrNull(row.air_c), rhPct: decimalOrNull(row.rh_pct), surfaceC: decimalOrNull(row.surface_c), materialC: decimalOrNull(row.material_c),
+      viscosityCup: row.viscosity_cup, viscositySeconds: decimalOrNull(row.viscosity_seconds),
+    }),
+  }
+}
+
+const recordedLife = ({ pot_life_basis: basis, pot_life_min: min }: PageRow): EffectiveFacts['potLife'] =>
+  (basis && min ? { basis, potLifeMin: decimalOf(min) } : null)
+
+function potLifeOf({ reactive_at: startsAt, late_at: lateAt, ends_at: endsAt }: PageRow, life: EffectiveFacts['potLife']): Batch['potLife'] {
+  if (!startsAt || !lateAt || !endsAt || !life) return null
+  return { startsAt: isoOf(startsAt), lateAt: isoOf(lateAt), endsAt: isoOf(endsAt), ...life }
+}
+
+type Conditions = Pick<EffectiveFacts, 'airC' | 'rhPct' | 'surfaceC' | 'materialC' | 'viscosityCup' | 'viscositySeconds'>
+
+function conditionsOf({ airC, rhPct, surfaceC, materialC, viscosityCup: cup, viscositySeconds: seconds }: Conditions): Pick<Batch, 'climate' | 'viscosity'> {
+  return {
+    climate: airC === null && rhPct === null && surfaceC === null ? null : { airC, rhPct, surfaceC },
+    viscosity: cup === null || seconds === null ? null : { cup, seconds, materialC },
   }
 }
 
@@ -115,6 +146,7 @@ interface ComponentRow {
 
 interface PourRow {
   component_index: number
+  position: number
   lot_id: string
   lot_number: string
   grams: string
@@ -123,30 +155,46 @@ interface PourRow {
   round: number
 }
 
-async function readComponents(id: string, db: Db): Promise<Pick<Batch, 'components' | 'chemistry' | 'containsIsocyanates'>> {
+async function readPours(id: string, facts: EffectiveFacts | null, db: Db): Promise<(BatchComponent['pours'][number] & { index: number })[]> {
+  const rows = await db('batch_pours as p').join('lots as l', 'l.id', 'p.lot_id').where('p.batch_id', id).orderBy(['p.component_index', 'p.position'])
+    .select<PourRow[]>('p.component_index', 'p.position', 'p.lot_id', 'l.lot_number', 'p.grams', 'p.at', 'p.source', 'p.round')
+  const recorded = rows.map((row) => ({
+    index: row.component_index, position: row.position, lotId: row.lot_id, lotNumber: row.lot_number, grams: decimalOf(row.grams), at: isoOf(row.at),
+    source: row.source, round: row.round,
+  }))
+  if (facts === null) return recorded
+  const lots = await db('lots').whereIn('id', facts.pours.map(({ lotId }) => lotId)).select<{ id: string; lot_number: string }[]>('id', 'lot_number')
+  return recorded.map((pour) => {
+    const now = facts.pours.find(({ index, position }) => index === pour.index && position === pour.position)
+    const lot = lots.find(({ id: lotId }) => lotId === now?.lotId)
+    return now && lot ? { ...pour, lotId: lot.id, lotNumber: lot.lot_number, grams: now.grams } : pour
+  })
+}
+
+async function readComponents(id: string, facts: EffectiveFacts | null, db: Db): Promise<Pick<Batch, 'components' | 'chemistry' | 'containsIsocyanates'>> {
   const rows = await db('batch_components as x').join('materials as a', 'a.id', 'x.material_id').where('x.batch_id', id).orderBy('x.component_index')
     .select<ComponentRow[]>(
       'x.component_index', 'x.role', 'x.material_id', 'a.code as material_code', 'a.name as material_name', 'a.chemistry', 'a.contains_isocyanates',
       'x.parts', 'x.planned_g', 'x.target_g', 'x.poured_g', 'x.deviation_pct', 'x.verdict',
     )
-  const pours = await db('batch_pours as p').join('lots as l', 'l.id', 'p.lot_id').where('p.batch_id', id).orderBy(['p.component_index', 'p.position'])
-    .select<PourRow[]>('p.component_index', 'p.lot_id', 'l.lot_number', 'p.grams', 'p.at', 'p.source', 'p.round')
-  const components = rows.map((row) => ({
-    index: row.component_index,
-    role: row.role,
-    materialId: row.material_id,
-    materialCode: row.material_code,
-    materialName: row.material_name,
-    parts: decimalOf(row.parts),
-    plannedG: decimalOf(row.planned_g),
-    targetG: decimalOf(row.target_g),
-    pouredG: decimalOf(row.poured_g),
-    deviationPct: decimalOrNull(row.deviation_pct),
-    verdict: row.verdict,
-    pours: pours.filter((pour) => pour.component_index === row.component_index).map((pour) => ({
-      lotId: pour.lot_id, lotNumber: pour.lot_number, grams: decimalOf(pour.grams), at: isoOf(pour.at), source: pour.source, round: pour.round,
-    })),
-  }))
+  const pours = await readPours(id, facts, db)
+  const components = rows.map((row): BatchComponent => {
+    const now = facts?.components.find(({ index }) => index === row.component_index)
+    return {
+      index: row.component_index,
+      role: row.role,
+      materialId: row.material_id,
+      materialCode: row.material_code,
+      materialName: row.material_name,
+      parts: decimalOf(row.parts),
+      plannedG: decimalOf(row.planned_g),
+      targetG: now?.targetG ?? decimalOf(row.target_g),
+      pouredG: now?.pouredG ?? decimalOf(row.poured_g),
+      deviationPct: now ? now.deviationPct : decimalOrNull(row.deviation_pct),
+      verdict: now ? now.verdict : row.verdict,
+      pours: pours.filter(({ index }) => index === row.component_index).map(({ index: _index, ...pour }) => pour),
+    }
+  })
   const base = rows.find(({ role }) => role === 'base') ?? rows[0]
   return { components, chemistry: base?.chemistry ?? null, containsIsocyanates: rows.some((row) => row.contains_isocyanates === 1) }
 }
@@ -192,24 +240,6 @@ async function readEvents(id: string, db: Db): Promise<Batch['events']> {
     gunName: row.gun_name,
     boothName: row.booth_name,
     details: JSON.parse(row.details) as Record<string, unknown>,
-  }))
-}
-
-interface AmendmentRow {
-  id: string
-  field: string
-  from_value: string | null
-  to_value: string | null
-  reason: string
-  user_name: string
-  at: Date
-}
-
-async function readAmendments(id: string, db: Db): Promise<Batch['amendments']> {
-  const rows = await db('amendments as a').join('users as u', 'u.id', 'a.user_id').where('a.batch_id', id).orderBy(['a.at', 'a.id'])
-    .select<AmendmentRow[]>('a.id', 'a.field', 'a.from_value', 'a.to_value', 'a.reason', 'u.name as user_name', 'a.at')
-  return rows.map((row) => ({
-    id: row.id, field: row.field, from: row.from_value, to: row.to_value, reason: row.reason, userName: row.user_name, at: isoOf(row.at),
   }))
 }
 

@@ -1,0 +1,160 @@
+import { D, print, sum } from '#shared/engine/decimal'
+import { pourFieldOf, type AmendmentBody } from '#shared/schemas/amendments'
+import type { Batch } from '#shared/schemas/batches'
+import { insertAmendment } from '../repositories/batch-amendments'
+import { lockCurrent, rewriteCurrent, type CurrentBatch } from '../repositories/batch-current'
+import { findBatch } from '../repositories/batch-page'
+import { readRecord, type BatchOnRecord } from '../repositories/batch-record'
+import { rewriteUses } from '../repositories/batch-uses'
+import { insertWaste } from '../repositories/batches'
+import { compensateLots, type Compensation } from '../repositories/lot-compensation'
+import { lockLots } from '../repositories/lot-stock'
+import { lockOpenApprovals, useApprovals } from '../repositories/used-approvals'
+import { userIdOf, type Context } from '../utils/context'
+import { forbidden, notFound, Refusal, ruleBroken } from '../utils/errors'
+import { newId } from '../utils/ids'
+import { toInstant } from '../utils/rows'
+import { mutate, type Mutation } from '../utils/transactions'
+import { requireAmender, requireLot, requireTrue } from './amendment-rules'
+import { checkedValue, isFreeText, plainValue } from './amendment-values'
+import { effectiveOf, type EffectiveBatch } from './batch-effective'
+import { publishPot } from './pot-view'
+import { cancelTimers, setPotTimers } from './timers'
+
+/** A batch before and after an amendment, with what the rules ask for. */
+interface Change {
+  field: string
+  record: BatchOnRecord
+  before: EffectiveBatch
+  after: EffectiveBatch
+  pot: CurrentBatch
+}
+
+/**
+ * Puts one value of a logged batch right. The record stays as it was written; the amendment stands beside it with its
+ * reason, and everything that follows from the value is reckoned again: verdicts, stock, pot life and its timers.
+ *
+ * @throws Refusal 404, 403 for another's batch or a day that is over, 409 when `from` no longer holds, 400 and 422 for a
+ * value that cannot be, 422 `approval-needed` where a foreman has to sign
+ */
+export function amendBatch(ctx: Context, id: string, body: AmendmentBody): Promise<Batch> {
+  return mutate(ctx, async (m) => {
+    const userId = userIdOf(ctx.principal)
+    if (userId === null) throw forbidden('Sign in to amend a batch.')
+    const pot = await lockCurrent(id, m.trx)
+    const record = pot && (await readRecord(id, m.trx))
+    if (!record) throw notFound('The batch')
+    const before = effectiveOf(record, m.now)
+    await requireAmender(m, ctx.principal, before, body.field)
+    const to = await requireChange(m, body, before, id)
+    const at = Math.max(m.now, (record.amendments.at(-1)?.at ?? 0) + 1)
+    const amended = { ...record, amendments: [...record.amendments, { field: body.field, to, at }] }
+    const change: Change = { field: body.field, record, before, after: effectiveOf(amended, m.now), pot }
+    await requireTrue(m, body.field, record, before, change.after)
+    const approvalId = await requireApproval(m, change, body.approvals)
+    const amendmentId = newId()
+    const from = before.values.get(body.field) ?? null
+    await insertAmendment({ id: amendmentId, batchId: id, field: body.field, from, to, reason: body.reason, userId, approvalId, at }, m.trx)
+    const moves = await write(m, change, userId)
+    const values = isFreeText(body.field) ? {} : { from, to }
+    m.audit({
+      action: 'batch.amended', subject: `batch:${id}`,
+      facts: {
+        amendmentId, field: body.field, ...values, approvalId, moves: moves.map(({ lotId, grams }) => ({ lotId, grams })),
+        endsAt: change.after.current.endsAt, state: change.after.current.state,
+      },
+    })
+    await publishPot(m, id)
+    const batch = await findBatch(id, m.trx)
+    if (!batch) throw new Error('a batch was lost in its own transaction')
+    return batch
+  })
+}
+
+/** @throws Refusal 409 with what holds now when `from` does not, 400 for a value of another form, 422 for the same value */
+async function requireChange(m: Mutation, { field, from, to: wanted }: AmendmentBody, before: EffectiveBatch, id: string): Promise<string | null> {
+  const to = checkedValue(field, wanted)
+  const now = before.values.get(field) ?? null
+  if (plainValue(field, now) !== plainValue(field, from)) {
+    throw new Refusal(409, 'changed', 'This value was changed meanwhile.', [{ path: 'from', message: 'This is not what it is now.' }], { current: await findBatch(id, m.trx) })
+  }
+  if (plainValue(field, now) === to) throw ruleBroken('nothing-changed', 'That is what it says already.', [{ path: 'to', message: 'That is what it says already.' }])
+  return to
+}
+
+/** What a foreman has to sign: a pot that lives longer, a lot that must not be used. */
+async function neededApprovals(m: Mutation, { field, record, before, after }: Change): Promise<{ action: string; subject: string }[]> {
+  const lotId = pourFieldOf(field)?.what === 'lotId' ? after.values.get(field) : null
+  if (lotId) {
+    const { faults } = await requireLot(m, field, record, lotId)
+    return faults.map((fault) => ({ action: fault === 'blocked-lot' ? 'use-blocked-lot' : 'use-expired-lot', subject: `lot:${lotId}` }))
+  }
+  const later = (now: number | null, then: number | null) => then !== null && (now === null || now > then)
+  const longer = later(after.current.endsAt, before.current.endsAt) || later(after.current.reactiveAt, before.current.reactiveAt)
+  return longer ? [{ action: 'late-reactive-at', subject: `batch:${record.id}` }] : []
+}
+
+/** @returns the approval that was used, or null where none was needed. @throws Refusal 422 `approval-needed` */
+async function requireApproval(m: Mutation, change: Change, offered: readonly string[]): Promise<string | null> {
+  const needed = await neededApprovals(m, change)
+  if (needed.length === 0) return null
+  const open = await lockOpenApprovals(offered, m.now, m.trx)
+  const used = needed.map(({ action, subject }) => {
+    const approval = open.find((one) => one.action === action && one.subject === subject)
+    if (approval) return approval.id
+    const message = action === 'late-reactive-at'
+      ? 'That would lengthen the pot\'s life. A foreman has to approve it.'
+      : 'This lot was blocked or past its date on that day. A foreman has to approve it.'
+    throw new Refusal(422, 'approval-needed', message, [{ path: 'to', message }], { approval: { action, subject } })
+  })
+  await useApprovals(used, m.now, m.trx)
+  return used[0] ?? null
+}
+
+/** Brings everything that follows in agreement with the amendment. @returns what was moved between lots */
+async function write(m: Mutation, { field, record, before, after, pot }: Change, userId: string): Promise<Compensation[]> {
+  await rewriteCurrent(after.current, m.now, m.trx)
+  const moves = pourFieldOf(field) ? movesOf(before, after) : []
+  if (pourFieldOf(field)) {
+    await lockLots(moves.map(({ lotId }) => lotId), m.trx)
+    await rewriteUses({ batchId: record.id, mixedAt: record.mixedAt, usedIds: usedIdsOf(record, after) }, m.trx)
+    const stock = await compensateLots(moves, record.id, userId, toInstant(m.now), m.trx)
+    m.publish({ type: 'stock', subject: `batch:${record.id}`, boothId: null, payload: { lots: stock } })
+  }
+  await compensateWaste(m, record, before, after, userId)
+  await moveTimers(m, before, after, pot)
+  return moves
+}
+
+/** What lies in the index of the log for a batch. */
+export const usedIdsOf = (record: BatchOnRecord, { facts }: EffectiveBatch): string[] =>
+  [...facts.pours.map(({ lotId }) => lotId), ...record.components.map(({ materialId }) => materialId)]
+
+/** Grams that each lot gets back, or gives after all. */
+function movesOf(before: EffectiveBatch, after: EffectiveBatch): Compensation[] {
+  const taken = ({ facts }: EffectiveBatch, lotId: string) => sum(facts.pours.filter((pour) => pour.lotId === lotId).map(({ grams }) => new D(grams)))
+  const lotIds = [...new Set([...before.facts.pours, ...after.facts.pours].map(({ lotId }) => lotId))].sort()
+  return lotIds.map((lotId) => ({ lotId, grams: print(taken(before, lotId).minus(taken(after, lotId))) })).filter(({ grams }) => grams !== '0')
+}
+
+/** Waste is insert-only too: the difference is booked. All of a stopped mix is waste. */
+async function compensateWaste(m: Mutation, record: BatchOnRecord, before: EffectiveBatch, after: EffectiveBatch, userId: string): Promise<void> {
+  const stopped = record.outcome === 'stopped'
+  const wasted = ({ current }: EffectiveBatch) => new D((stopped ? current.pouredTotalG : current.leftoverG) ?? '0')
+  const grams = wasted(after).minus(wasted(before))
+  if (grams.eq(0)) return
+  const { components } = record.snapshot.mix
+  await insertWaste({
+    batchId: record.id, kind: stopped ? 'stopped-mix' : 'leftover', chemistry: (components.find(({ role }) => role === 'base') ?? components[0])?.chemistry ?? null,
+    grams: print(grams), disposal: (stopped ? record.snapshot.stopped?.disposal : after.current.disposal) ?? 'reactive waste', reason: null, userId, at: toInstant(m.now),
+  }, m.trx)
+}
+
+/** A pot that still stands rings by its new instants, in its new booth. */
+async function moveTimers(m: Mutation, before: EffectiveBatch, after: EffectiveBatch, pot: CurrentBatch): Promise<void> {
+  const { batchId, state, boothId, lateAt, endsAt } = after.current
+  if (!['fresh', 'closing', 'life-up', 'no-pot-life'].includes(state)) return
+  if (before.current.lateAt === lateAt && before.current.endsAt === endsAt && before.current.boothId === boothId) return
+  if (lateAt === null || endsAt === null) await cancelTimers(m, 'batch', batchId)
+  else await setPotTimers(m, { batchId, boothId, label: `${pot.code} ${pot.mixName}`.slice(0, 160), lateAt, endsAt })
+}
