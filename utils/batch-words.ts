@@ -49,6 +49,7 @@ export const reviewWords: Record<ReviewCode, { short: string, long: string }> = 
   'blocked-lot': { short: 'blocked lot', long: 'A lot was blocked.' },
   'late-entry': { short: 'entered late', long: 'It was entered more than seven days after it was mixed.' },
   'not-mixed-in-order': { short: 'not in the safe order', long: 'The components were not poured in the safe order.' },
+  'booth-clash': { short: 'booth not clean', long: 'Its chemistry clashes with what was sprayed in this booth since it was last recorded clean.' },
   'clock-ahead': { short: 'clock ahead', long: 'The tablet\'s clock was ahead; the moment was set back to the server\'s.' },
 }
 

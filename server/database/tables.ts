@@ -17,6 +17,7 @@ export const tables = {
     'batch_pieces',
     'batch_pours',
     'batches',
+    'booth_cleanings',
     'events',
     'lot_movements',
     'mix_components',

@@ -1,7 +1,9 @@
 import type { Knex } from 'knex'
+import { D, print, sum } from '#shared/engine/decimal'
 import type { BenchCup, BenchDraft, BenchLot, BenchMaterial, BenchMix, BenchPerson } from '#shared/schemas/bench'
+import type { DraftBody } from '#shared/schemas/drafts'
 import { decimalOf, decimalOrNull, isoOf, isoOrNull } from '../utils/rows'
-import { stockSql, usableSql } from './lots'
+import { stockSql } from './lots'
 import { componentsOf } from './mixes'
 
 type Db = Knex | Knex.Transaction
@@ -97,14 +99,15 @@ interface LotRow {
   expires_on: string | null
   opened_at: Date | null
   state: BenchLot['state']
+  blocked_reason: string | null
   place: string | null
   price_per_kg: string | null
   stock_g: string
 }
 
-/** Lots that may be poured on this day of the shop, first the one that expires first. */
-export async function listOfferedLots(today: string, db: Db): Promise<BenchLot[]> {
-  const rows = await db('lots as l').whereRaw(usableSql, [today])
+/** Lots with something in them, first the one that expires first; what is out of date or blocked is among them. */
+export async function listBenchLots(db: Db): Promise<BenchLot[]> {
+  const rows = await db('lots as l').whereIn('l.state', ['sealed', 'in-use', 'blocked']).whereRaw(`(l.state <> 'blocked' OR ${stockSql} > 0)`)
     .orderByRaw('COALESCE(l.expires_on, \'9999-12-31\'), l.state = \'sealed\', l.received_on, l.id')
     .select<LotRow[]>('l.*', db.raw(`${stockSql} AS stock_g`))
   return rows.map((row) => ({
@@ -114,6 +117,7 @@ export async function listOfferedLots(today: string, db: Db): Promise<BenchLot[]
     expiresOn: row.expires_on,
     openedAt: isoOrNull(row.opened_at),
     state: row.state,
+    blockedReason: row.blocked_reason,
     place: row.place,
     pricePerKg: decimalOrNull(row.price_per_kg),
     stockG: decimalOf(row.stock_g),
@@ -145,6 +149,9 @@ interface DraftRow {
   mixed_by_user_id: string
   mixed_by_name: string
   reactive_at: Date | null
+  ends_at: Date | null
+  device_name: string | null
+  body: string
   updated_at: Date
 }
 
@@ -154,10 +161,14 @@ export async function listOpenDrafts(db: Db): Promise<BenchDraft[]> {
     .join('mix_revisions as r', 'r.id', 'd.mix_revision_id')
     .join('mixes as x', 'x.id', 'r.mix_id')
     .join('users as u', 'u.id', 'd.mixed_by_user_id')
+    .leftJoin('devices as v', 'v.id', 'd.device_id')
+    .leftJoin('timers as t', (on) => {
+      on.on('t.subject_id', 'd.id').andOnVal('t.kind', 'pot-up').andOnVal('t.subject_type', 'batch')
+    })
     .where('d.state', 'open')
     .orderBy([{ column: 'd.updated_at', order: 'desc' }, { column: 'd.id' }])
-    .select<DraftRow[]>('d.*', 'x.name as mix_name', 'u.name as mixed_by_name')
-  return rows.map((row) => ({
+    .select<DraftRow[]>('d.*', 'x.name as mix_name', 'u.name as mixed_by_name', 'v.name as device_name', 't.due_at as ends_at')
+  return rows.map(row => ({ row, body: JSON.parse(row.body) as Pick<DraftBody, 'components' | 'holder'> })).map(({ row, body }) => ({
     id: row.id,
     code: row.code,
     seq: row.seq,
@@ -170,6 +181,10 @@ export async function listOpenDrafts(db: Db): Promise<BenchDraft[]> {
     mixedByUserId: row.mixed_by_user_id,
     mixedByName: row.mixed_by_name,
     reactiveAt: isoOrNull(row.reactive_at),
+    endsAt: isoOrNull(row.ends_at),
+    pouredG: print(sum(body.components.flatMap(({ pours }) => pours.map(({ grams }) => new D(grams))))),
+    deviceName: row.device_name,
+    holder: body.holder ?? null,
     updatedAt: isoOf(row.updated_at),
   }))
 }

@@ -69,6 +69,13 @@ export async function lockDraft(id: string, trx: Knex.Transaction): Promise<Stor
   return row ? toStored(row) : null
 }
 
+/** At which device and by whom a draft was last written. */
+export async function findHolderNames({ deviceId, mixedByUserId }: Pick<StoredDraft, 'deviceId' | 'mixedByUserId'>, db: Db): Promise<{ deviceName: string | null; userName: string }> {
+  const device = deviceId === null ? undefined : await db('devices').where({ id: deviceId }).first<{ name: string } | undefined>('name')
+  const user = await db('users').where({ id: mixedByUserId }).first<{ name: string } | undefined>('name')
+  return { deviceName: device?.name ?? null, userName: user?.name ?? 'somebody' }
+}
+
 /** What of a draft stands in columns, and its body. */
 export type DraftWrite = Pick<StoredDraft, 'id' | 'deviceId' | 'reactiveAt' | 'body' | 'extras'>
 
@@ -118,6 +125,7 @@ interface SummaryRow {
   booth_id: string | null
   mixed_by_user_id: string
   mixed_by_name: string
+  device_name: string | null
   reactive_at: Date | null
   updated_at: Date
 }
@@ -128,6 +136,7 @@ export async function listOpenDrafts(boothId: string | null, db: Db): Promise<Dr
     .join('mix_revisions as r', 'r.id', 'd.mix_revision_id')
     .join('mixes as m', 'm.id', 'r.mix_id')
     .join('users as u', 'u.id', 'd.mixed_by_user_id')
+    .leftJoin('devices as v', 'v.id', 'd.device_id')
     .leftJoin('job_steps as s', 's.id', 'd.job_step_id')
     .leftJoin('schedule_steps as c', 'c.id', 's.schedule_step_id')
     .leftJoin('jobs as j', 'j.id', 's.job_id')
@@ -136,11 +145,11 @@ export async function listOpenDrafts(boothId: string | null, db: Db): Promise<Dr
     .limit(200)
     .select<SummaryRow[]>(
       'd.id', 'd.code', 'd.seq', 'd.pot_number', 'd.pot_count', 'm.code as mix_code', 'm.name as mix_name', 'j.code as job_code',
-      'j.title as job_title', 'c.title as step_title', 'd.body', 'd.booth_id', 'd.mixed_by_user_id', 'u.name as mixed_by_name',
+      'j.title as job_title', 'c.title as step_title', 'd.body', 'd.booth_id', 'd.mixed_by_user_id', 'u.name as mixed_by_name', 'v.name as device_name',
       'd.reactive_at', 'd.updated_at',
     )
   if (boothId) void query.where('d.booth_id', boothId)
-  return (await query).map((row) => ({
+  return (await query).map(row => ({ row, body: JSON.parse(row.body) as DraftBody })).map(({ row, body }) => ({
     id: row.id,
     code: row.code,
     seq: row.seq,
@@ -151,10 +160,12 @@ export async function listOpenDrafts(boothId: string | null, db: Db): Promise<Dr
     jobCode: row.job_code,
     jobTitle: row.job_title,
     stepTitle: row.step_title,
-    purpose: (JSON.parse(row.body) as DraftBody).purpose,
+    purpose: body.purpose,
     boothId: row.booth_id,
     mixedByUserId: row.mixed_by_user_id,
     mixedByName: row.mixed_by_name,
+    deviceName: row.device_name,
+    holder: body.holder ?? null,
     reactiveAt: isoOrNull(row.reactive_at),
     updatedAt: isoOf(row.updated_at),
   }))

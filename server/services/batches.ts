@@ -1,4 +1,4 @@
-import type { Batch, BatchCreateBody } from '#shared/schemas/batches'
+import type { Batch, BatchCreateInput } from '#shared/schemas/batches'
 import { audienceOf } from '../live/audience'
 import { insertCurrent } from '../repositories/batch-current'
 import { findBatch } from '../repositories/batch-page'
@@ -13,11 +13,13 @@ import { notFound, Refusal, ruleBroken } from '../utils/errors'
 import { toInstant } from '../utils/rows'
 import { mutateUnlessDone } from '../utils/settled'
 import type { Mutation } from '../utils/transactions'
+import { clashAt } from './booth-guard'
 import { judgeBatch, potLives, potTimesOf, reactiveByPours } from './batch-sums'
 import { notAfter } from './device-clock'
+import { mayHold, takenOver } from './draft-holder'
 import { lotIdsOf, readReferences } from './draft-references'
 import { refuseImpossible } from './draft-rules'
-import { potLabel } from './drafts'
+import { potLabel, readDraft } from './drafts'
 import { requireMixer } from './mixers'
 import { publishPot } from './pot-view'
 import { componentsOf, deviationOf, drawnOf, mixedAtOf, poursOf, recordOf, reviewOf, sealedState, type Sealing } from './seal-facts'
@@ -27,15 +29,17 @@ import { cancelTimers, setPotTimers } from './timers'
  * Seals a draft into the record: reckons everything again, moves the stock, starts the job's step. What is in the cup
  * is a fact and is stored whatever rule it broke; `review` tells a foreman. Sealing twice answers the batch.
  *
- * @throws Refusal 404 without a draft, 403 for another person's, 422 `nothing-poured` and for what cannot be true
+ * @throws Refusal 404 without a draft, 403 for another person's, 409 `taken-over` for a tablet that holds it no more, 422 `nothing-poured` and for what cannot be true
  */
-export function sealBatch(ctx: Context, { draftId }: BatchCreateBody): Promise<Batch> {
+export function sealBatch(ctx: Context, { draftId, holder = null }: BatchCreateInput): Promise<Batch> {
   return mutateUnlessDone<Batch>(ctx, async (m, keep) => {
     const draft = await lockDraft(draftId, m.trx)
     if (!draft) throw notFound('The draft')
     await requireMixer(ctx.principal, draft.mixedByUserId, draft.mixedByUserId, m.trx)
     if (draft.state === 'discarded') throw new Refusal(409, 'discarded', 'This draft was discarded.')
     if (draft.state !== 'open') keep(() => getBatch(ctx, draftId))
+    // Who names no tablet is none that could have been taken over from.
+    if (holder !== null && !mayHold(draft.body.holder, holder)) throw await takenOver(draft, await readDraft(draftId, m.trx), m.trx)
     const sealing = await readSealing(m, draft)
     const pours = poursOf(sealing)
     if (pours.length === 0 && !draft.body.stopped) throw ruleBroken('nothing-poured', 'Nothing was poured into this cup yet.')
@@ -52,6 +56,7 @@ async function readSealing(m: Mutation, draft: StoredDraft): Promise<Sealing> {
   const references = await readReferences(draft.body, m.trx)
   refuseImpossible(draft.body, references)
   const { revision, scale } = references
+  const mixedAt = mixedAtOf({ draft, now: m.now }, poursOf({ draft, now: m.now }))
   const reactiveAt = draft.reactiveAt ?? (potLives(revision) ? reactiveByPours(revision, draft.body, m.now) : null)
   const { zone } = await readShop(m.trx)
   return {
@@ -60,6 +65,7 @@ async function readSealing(m: Mutation, draft: StoredDraft): Promise<Sealing> {
     sums: judgeBatch(revision, draft.body, scale),
     times: potTimesOf(revision, draft.body, reactiveAt),
     reactiveAt,
+    clash: draft.body.stopped ? null : await clashAt(draft.body.boothId, revision, mixedAt, m.trx),
     now: m.now,
     zone,
   }

@@ -3,14 +3,17 @@ import type { Gun } from '#shared/schemas/shop'
 import { toMs } from '#shared/utils/instant'
 import { shopDate, startOfShopDay } from '#shared/utils/zone'
 import type { Knex } from 'knex'
-import { listBenchCups, listBenchMaterials, listBenchMixes, listBenchPeople, listOfferedLots, listOpenDrafts } from '../repositories/bench'
+import { listBenchCups, listBenchMaterials, listBenchMixes, listBenchLots, listBenchPeople, listOpenDrafts } from '../repositories/bench'
 import { readHead } from '../repositories/events'
 import { readShop } from '../repositories/settings'
 import { listBooths, listGuns, listScales } from '../repositories/shop'
 import { readConsistent } from '../repositories/snapshot'
+import { listBoothRules } from '../repositories/booth-cleanings'
 import type { Context } from '../utils/context'
 import { isoOf, toInstant } from '../utils/rows'
 import { benchSteps, readBenchFacts } from './bench-steps'
+import { benchPaces } from './bench-paces'
+import { boothPast } from './booth-guard'
 import { latestClimate } from './climate'
 
 /** A shop has a handful of booths, guns and scales; no list of them is longer. */
@@ -31,7 +34,7 @@ export function readBench(ctx: Context): Promise<BenchSnapshot> {
       lastSeq,
       mixes: await listBenchMixes(trx),
       materials: await listBenchMaterials(trx),
-      lots: await listOfferedLots(today, trx),
+      lots: await listBenchLots(trx),
       guns: (await listGuns(all, trx)).map(toBenchGun),
       scales: (await listScales(all, trx)).map(({ id, name, source, divisionG, capacityG, mpeG }) => ({ id, name, source, divisionG, capacityG, mpeG })),
       cups: await listBenchCups(trx),
@@ -39,6 +42,8 @@ export function readBench(ctx: Context): Promise<BenchSnapshot> {
       people: await listBenchPeople(trx),
       today: benchSteps(await readBenchFacts({ now, today, dayStart: startOfShopDay(today, zone) }, trx)),
       drafts: await listOpenDrafts(trx),
+      chemistryRules: await listBoothRules(trx),
+      paces: await benchPaces(now, trx),
     }
   })
 }
@@ -61,10 +66,13 @@ function toBenchGun(gun: Gun) {
 async function benchBooths(now: number, trx: Knex.Transaction): Promise<BenchBooth[]> {
   const booths = await listBooths(all, trx)
   const readings = await latestClimate(trx)
-  return booths.map(({ id, name }) => {
+  const answer: BenchBooth[] = []
+  for (const { id, name } of booths) {
+    const { past, cleanedAt } = await boothPast(id, now, trx)
     const reading = readings.get(id)
-    if (!reading || now - toMs(reading.at) > climateMs) return { id, name, climate: null }
-    const { airC, rhPct, surfaceC, at } = reading
-    return { id, name, climate: { airC, rhPct, surfaceC, at } }
-  })
+    const isFresh = reading !== undefined && now - toMs(reading.at) <= climateMs
+    const climate = isFresh ? { airC: reading.airC, rhPct: reading.rhPct, surfaceC: reading.surfaceC, at: reading.at } : null
+    answer.push({ id, name, past, cleanedAt, climate })
+  }
+  return answer
 }

@@ -10,7 +10,9 @@ import { notFound, Refusal, ruleBroken } from '../utils/errors'
 import { isoOf, toInstant } from '../utils/rows'
 import { mutateUnlessDone } from '../utils/settled'
 import { isDuplicate, type Mutation } from '../utils/transactions'
+import { mayHold, takenOver } from './draft-holder'
 import { planOf, potLives, potTimesOf, reactiveByPours, type PotTimes } from './batch-sums'
+import { refuseClash } from './booth-guard'
 import { correctedReactiveAt, notAfter } from './device-clock'
 import { readReferences, type DraftReferences } from './draft-references'
 import { approvalActionOf, factAfterMs, lotFaultsOf, newPoursOf, refuseImpossible, refuseLot } from './draft-rules'
@@ -48,7 +50,8 @@ export async function getDraft(ctx: Pick<Context, 'db'>, id: string): Promise<Dr
   return readDraft(id, ctx.db)
 }
 
-async function readDraft(id: string, db: Knex | Knex.Transaction): Promise<Draft> {
+/** The draft as it stands in a transaction. @throws Refusal 404 */
+export async function readDraft(id: string, db: Knex | Knex.Transaction): Promise<Draft> {
   const stored = await findDraft(id, db)
   const revision = stored && (await findMixRevision(stored.body.mixRevisionId, db))
   if (!stored || !revision) throw notFound('The draft')
@@ -64,10 +67,12 @@ export async function listDrafts(ctx: Pick<Context, 'db'>, { boothId }: DraftLis
  * Stores a batch being made, by its sequence number: a lower or equal one than the stored changes nothing and answers
  * the stored draft. The first one gives the batch its code. Once something reactive is together with something else
  * the pot's timers run; that moment may be corrected to an earlier one, never to a later one.
- * A bench that works without network names a code of its own block of numbers.
+ * A bench that works without network names a code of its own block of numbers. One tablet holds a draft: another takes
+ * it over with the next turn, and from then on the first one is refused.
  *
  * @throws Refusal 400 for references that lead nowhere and plans that cannot be, 403 for another person's batch,
- * 409 `already-sealed`, 422 `code-not-yours`, 422 for what cannot be true and for lots that may not be poured
+ * 409 `already-sealed`, 409 `taken-over`, 422 `code-not-yours`, 422 `booth-clash` before anything is poured, 422 for
+ * what cannot be true and for lots that may not be poured
  */
 export async function saveDraft(ctx: Context, id: string, body: DraftBody): Promise<Draft> {
   try {
@@ -82,6 +87,7 @@ export async function saveDraft(ctx: Context, id: string, body: DraftBody): Prom
 function saveOnce(ctx: Context, id: string, body: DraftBody): Promise<Draft> {
   return mutateUnlessDone<Draft>(ctx, async (m, keep) => {
     const stored = await lockDraft(id, m.trx)
+    if (stored && !mayHold(stored.body.holder, body.holder)) throw await takenOver(stored, await readDraft(id, m.trx), m.trx)
     await requireMixer(ctx.principal, body.mixedByUserId, stored?.mixedByUserId ?? null, m.trx)
     if (stored && stored.seq >= body.seq) keep(() => readDraft(id, ctx.db))
     if (stored && stored.state !== 'open') throw new Refusal(409, 'already-sealed', 'This batch is in the log already.', [], { current: await readDraft(id, m.trx) })
@@ -90,10 +96,11 @@ function saveOnce(ctx: Context, id: string, body: DraftBody): Promise<Draft> {
     planOf(references.revision, body.plan, references.scale)
     // Reckoned even before anything reacts, so that a temperature that cannot be is said at once.
     potTimesOf(references.revision, body, m.now)
+    if (!stored && body.components.length === 0) await refuseClash(body.boothId, references.revision, m.now, m.trx)
     const moment = momentOf(body, references.revision, stored, m.now)
     const approved = await checkApprovals(m, id, body, stored, references)
     const extras: DraftExtras = { notes: notesOf(body, stored, moment.note), approved }
-    const draft = { id, deviceId: ctx.principal.device?.id ?? stored?.deviceId ?? null, reactiveAt: moment.at, body, extras }
+    const draft = { id, deviceId: deviceOf(ctx, body, stored), reactiveAt: moment.at, body, extras }
     const code = await codeFor(m, ctx, id, body, stored)
     await (stored ? updateDraft(draft, m.now, m.trx) : insertDraft(draft, code, m.now, m.trx))
     await runTimers(m, id, code, body, moment.at, references.revision)
@@ -101,6 +108,12 @@ function saveOnce(ctx: Context, id: string, body: DraftBody): Promise<Draft> {
     await publishPot(m, id)
     return readDraft(id, m.trx)
   })
+}
+
+/** The device that writes; one that goes on without being enrolled takes the earlier one's name off. */
+function deviceOf(ctx: Context, { holder }: DraftBody, stored: StoredDraft | null): string | null {
+  const isSame = stored?.body.holder?.id === holder?.id
+  return ctx.principal.device?.id ?? (isSame ? stored?.deviceId ?? null : null)
 }
 
 /** The code that the batch has, the one that its bench chose, or the next of the series. */
@@ -137,6 +150,8 @@ function notesOf(body: DraftBody, stored: StoredDraft | null, note: DraftNote | 
   return [...notes]
 }
 
+const lotActions: ReadonlySet<string> = new Set(['use-expired-lot', 'use-blocked-lot'])
+
 /**
  * Holds each new weighing against the rules of its lot. What was weighed a while ago, at a bench without network, has
  * happened and is stored; sealing marks it for a foreman.
@@ -153,6 +168,8 @@ async function checkApprovals(
     if (fresh) approved.push({ approvalId: fresh.id, action, subject })
     return fresh !== undefined
   }
+  // A word for a tin is taken when it is given, not when the first gram of it arrives: it lasts for minutes only.
+  for (const one of open.filter(({ id: openId, action }) => body.approvals.includes(openId) && lotActions.has(action))) use(one.action, one.subject)
   const { zone } = await readShop(m.trx)
   for (const { path, lotId, at } of newPoursOf(body, stored?.body ?? null)) {
     const lot = lots.get(lotId)
@@ -187,6 +204,7 @@ function auditedFacts(code: string, body: DraftBody, reactiveAt: number | null, 
     jobStepId: body.jobStepId,
     boothId: body.boothId,
     mixedByUserId: body.mixedByUserId,
+    holder: body.holder,
     poured: body.components.flatMap(({ index, pours }) => pours.map(({ lotId, grams, at }) => ({ index, lotId, grams, at }))),
     reactiveAt,
     notes: extras.notes,

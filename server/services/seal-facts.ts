@@ -4,6 +4,7 @@ import { potState } from '#shared/engine/pot-state'
 import { engineVersion } from '#shared/engine/version'
 import type { BatchState } from '#shared/schemas/batch-states'
 import type { ReviewCode } from '#shared/schemas/batches'
+import type { BoothClash } from '#shared/utils/bench-booth'
 import { shopDate } from '#shared/utils/zone'
 import type { BatchSnapshot } from '../repositories/batch-page'
 import type { BatchRecord, ComponentRecord, PourRecord } from '../repositories/batches'
@@ -26,6 +27,8 @@ export interface Sealing {
   sums: BatchSums
   times: PotTimes | null
   reactiveAt: number | null
+  /** What must not meet in its booth; null where nothing clashes. */
+  clash: BoothClash | null
   now: number
   /** The shop's time zone. */
   zone: string
@@ -68,6 +71,7 @@ export function reviewOf(sealing: Sealing, pours: readonly PourRecord[], mixedAt
     if (sums.outOfTolerance && !isApproved(draft, 'keep-as-poured', `batch:${draft.id}`)) codes.add('out-of-tolerance')
     if (references.revision.components.some(({ index }) => !pours.some((pour) => pour.index === index))) codes.add('not-complete')
     if (!pouredInOrder(pours)) codes.add('not-mixed-in-order')
+    if (sealing.clash !== null) codes.add('booth-clash')
   }
   for (const pour of pours) {
     const lot = references.lots.get(pour.lotId)
@@ -176,7 +180,8 @@ export function recordOf(sealing: Sealing, review: readonly ReviewCode[], mixedA
   }
 }
 
-function snapshotOf({ draft, references, sums, times }: Sealing): BatchSnapshot & Record<string, unknown> {
+function snapshotOf(sealing: Sealing): BatchSnapshot & Record<string, unknown> {
+  const { draft, references, sums, times } = sealing
   const { body, extras } = draft
   const mix = mixInputOf(references.revision, body.plan)
   return {
@@ -188,6 +193,7 @@ function snapshotOf({ draft, references, sums, times }: Sealing): BatchSnapshot 
     corrections: body.corrections,
     approvals: extras.approved,
     notes: extras.notes,
+    clash: sealing.clash,
     device: body.device,
     stopped: body.stopped,
     working: times

@@ -4,6 +4,7 @@ import {
   Batch, BatchCloseBody, BatchCreateBody, BatchEventBody, BatchExportQuery, BatchFacets, BatchList, BatchListQuery, BatchParams, BatchReviewBody,
 } from '#shared/schemas/batches'
 import { BenchSnapshot } from '#shared/schemas/bench'
+import { BoothChemistry, BoothCleanBody } from '#shared/schemas/booth-cleanings'
 import { calculations } from '#shared/schemas/calculations'
 import { ClimateCreateBody, ClimateList, ClimateListQuery, ClimateReading } from '#shared/schemas/climate'
 import { IdParams } from '#shared/schemas/common'
@@ -101,6 +102,8 @@ export const apiRoutes: readonly ApiRoute[] = [
   get('/api/jobs', 'jobs:read', 'Jobs, the one due first first', JobList, { query: JobListQuery }),
   get('/api/jobs/{id}', 'jobs:read', 'A job with pieces, steps and windows', Job, byId),
   get('/api/booths', 'shop:read', 'Booths', BoothList, { query: ShopListQuery }),
+  get('/api/booths/{id}/chemistry', 'shop:read', 'What was sprayed in a booth since it was clean', BoothChemistry, byId),
+  post('/api/booths/{id}/clean', 'booths:clean', 'Records a booth, its duct and filters as clean', BoothChemistry, { ...byId, body: BoothCleanBody }),
   get('/api/guns', 'shop:read', 'Guns', GunList, { query: ShopListQuery }),
   get('/api/scales', 'shop:read', 'Scales', ScaleList, { query: ShopListQuery }),
   get('/api/mixing-cups', 'shop:read', 'Mixing cups', MixingCupList, { query: ShopListQuery }),

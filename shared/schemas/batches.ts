@@ -1,12 +1,13 @@
 import * as z from 'zod/mini'
 import { BatchState } from './batch-states'
 import { WorkingLine } from './common'
-import { DraftCorrection, DraftPlan, PotLife, pourSources } from './drafts'
+import { DraftCorrection, DraftHolder, DraftPlan, PotLife, pourSources } from './drafts'
 import { Cursor, DateText, DecimalText, Flag, GramsText, InstantText, Limit, Uuid, words } from './fields'
 
 /** Why a foreman should look at a batch: what is in the cup is kept as a fact. */
 export const reviewCodes = [
   'out-of-tolerance', 'not-complete', 'not-mixed-in-order', 'expired-lot', 'blocked-lot', 'late-entry', 'clock-ahead',
+  'booth-clash',
 ] as const
 export type ReviewCode = (typeof reviewCodes)[number]
 
@@ -15,8 +16,14 @@ const roles = ['base', 'hardener', 'thinner', 'additive', 'accelerator', 'peroxi
 const verdicts = ['short', 'in-tolerance', 'too-much', 'cannot-tell'] as const
 
 /** Body of `POST /api/batches`: seals the draft of that id into the record. */
-export const BatchCreateBody = z.strictObject({ draftId: Uuid })
+export const BatchCreateBody = z.strictObject({
+  draftId: Uuid,
+  /** The tablet that asks; a draft that another one has taken over is not sealed by it. */
+  holder: z._default(z.nullable(DraftHolder), null),
+})
 export type BatchCreateBody = z.infer<typeof BatchCreateBody>
+/** As it is written: what has a default may be left out. */
+export type BatchCreateInput = z.input<typeof BatchCreateBody>
 
 export const BatchParams = z.strictObject({ id: Uuid })
 

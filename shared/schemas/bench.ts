@@ -1,4 +1,6 @@
 import * as z from 'zod/mini'
+import { BoothPast } from './booth-cleanings'
+import { DraftHolder } from './drafts'
 import { scaleSources } from './shop'
 
 /** Instants are ISO 8601 UTC with milliseconds, days `YYYY-MM-DD`, quantities decimal strings. */
@@ -56,14 +58,18 @@ export const BenchMix = z.object({
 })
 export type BenchMix = z.infer<typeof BenchMix>
 
-/** A lot that may be poured, first the one that expires first; those with no date last. */
+/**
+ * A lot with something in it, first the one that expires first; those with no date last. Those that are out of date or
+ * blocked are among them: the bench shows what they are and refuses them.
+ */
 export const BenchLot = z.object({
   id: z.uuid(),
   materialId: z.uuid(),
   lotNumber: z.string(),
   expiresOn: nullableString,
   openedAt: nullableString,
-  state: z.enum(['sealed', 'in-use']),
+  state: z.enum(['sealed', 'in-use', 'blocked']),
+  blockedReason: nullableString,
   place: nullableString,
   pricePerKg: nullableString,
   stockG: z.string(),
@@ -100,6 +106,9 @@ export type BenchCup = z.infer<typeof BenchCup>
 export const BenchBooth = z.object({
   id: z.uuid(),
   name: z.string(),
+  /** What was sprayed there since booth, duct and filters were last recorded clean, the latest first. */
+  past: z.array(BoothPast),
+  cleanedAt: nullableString,
   /** Last reading not older than twelve hours, degrees Celsius and per cent. */
   climate: z.nullable(z.object({ airC: z.string(), rhPct: z.string(), surfaceC: nullableString, at: z.string() })),
 })
@@ -162,9 +171,24 @@ export const BenchDraft = z.object({
   mixedByUserId: z.uuid(),
   mixedByName: z.string(),
   reactiveAt: nullableString,
+  /** When its pot life is over; null where nothing in it reacts yet. */
+  endsAt: nullableString,
+  pouredG: z.string(),
+  /** The bench that it was last written at; null where that is none. */
+  deviceName: nullableString,
+  holder: z.nullable(DraftHolder),
   updatedAt: z.string(),
 })
 export type BenchDraft = z.infer<typeof BenchDraft>
+
+/** Which chemistries may not follow each other in a booth. */
+export const BenchChemistryRule = z.object({
+  scope: z.literal('booth'), first: z.string(), second: z.string(), verdict: z.enum(['blocked', 'caution']), advice: z.string(),
+})
+
+/** How fast somebody coats with a gun: square metres an hour, first to last spray, over so many of the last pots. */
+export const BenchPace = z.object({ userId: z.uuid(), gunId: z.uuid(), m2PerH: z.string(), batches: z.number() })
+export type BenchPace = z.infer<typeof BenchPace>
 
 /** All that a bench needs to work from, read at one instant. */
 export const BenchSnapshot = z.object({
@@ -180,5 +204,7 @@ export const BenchSnapshot = z.object({
   people: z.array(BenchPerson),
   today: z.array(BenchStep),
   drafts: z.array(BenchDraft),
+  chemistryRules: z.array(BenchChemistryRule),
+  paces: z.array(BenchPace),
 })
 export type BenchSnapshot = z.infer<typeof BenchSnapshot>

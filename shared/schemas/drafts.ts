@@ -68,6 +68,16 @@ export const DraftPlan = z.strictObject({
 })
 export type DraftPlan = z.infer<typeof DraftPlan>
 
+/**
+ * The tablet that a batch is being made at. `turn` grows by one with each taking over, so that a tablet that was taken
+ * over from is known even when it writes later.
+ */
+export const DraftHolder = z.strictObject({ id: Uuid, turn: z.int().check(z.minimum(0), z.maximum(1_000_000)) })
+export type DraftHolder = z.infer<typeof DraftHolder>
+
+/** The bench's own state of a batch may be so long, in characters of JSON. */
+const longestBenchState = 60_000
+
 /** Body of `PUT /api/batch-drafts/:id`: a batch being made. The id is the batch's own, made by the client. */
 export const DraftBody = z.strictObject({
   /** Counts the client's steps; a lower or equal number than the stored one changes nothing. */
@@ -107,6 +117,12 @@ export const DraftBody = z.strictObject({
     seconds: z.string().check(z.regex(/^\d{1,4}(?:\.\d{1,2})?$/, 'Give seconds with at most two decimals.')),
     materialC: z._default(z.nullable(CelsiusText), null),
   })), null),
+  /** Null where the client is no bench: then anybody may go on with it. */
+  holder: z._default(z.nullable(DraftHolder), null),
+  /** What a bench needs beside the facts to go on at the same gram: step, tins, what was tared. Nothing follows from it here. */
+  bench: z._default(z.nullable(z.record(z.string().check(z.maxLength(40)), z.unknown()).check(
+    z.refine(state => JSON.stringify(state).length <= longestBenchState, 'The bench sends too much of its own state.'),
+  )), null),
   approvals: z._default(z.array(Uuid).check(z.maxLength(20)), []),
   /** The mix was stopped: sealing records it as stopped and what is in the cup as waste. */
   stopped: z._default(z.nullable(z.strictObject({
@@ -188,6 +204,9 @@ export const DraftSummary = z.strictObject({
   boothId: z.nullable(Uuid),
   mixedByUserId: Uuid,
   mixedByName: z.string(),
+  /** The bench that it was last written at; null where that is none. */
+  deviceName: z.nullable(z.string()),
+  holder: z.nullable(DraftHolder),
   reactiveAt: z.nullable(InstantText),
   updatedAt: InstantText,
 })

@@ -46,7 +46,7 @@ export type Session = z.infer<typeof Session>
 export const ApprovalBody = z.strictObject({
   email: z.string('Enter the e-mail address.').check(z.trim(), z.toLowerCase(), z.maxLength(254), z.email('That is not an e-mail address.')),
   password: z.string('Enter the password.').check(z.minLength(1, 'Enter the password.'), z.maxLength(256)),
-  action: z.enum(['use-expired-lot', 'keep-as-poured', 'late-reactive-at', 'use-blocked-lot'], 'Say what is approved.'),
+  action: z.enum(['use-expired-lot', 'keep-as-poured', 'late-reactive-at', 'use-blocked-lot', 'clean-booth'], 'Say what is approved.'),
   subject: z.string('Say what it is about.').check(z.trim(), z.minLength(1), z.maxLength(96)),
   reason: z.string('Say why.').check(z.trim(), z.minLength(3, 'Say why, in a few words.'), z.maxLength(400, 'Keep it under 400 characters.')),
 })

@@ -32,6 +32,7 @@ const permissions = {
   'mixes:read': [...people, 'bench'],
   'schedules:read': [...people, 'bench'],
   'jobs:read': [...people, 'bench'],
+  'booths:clean': [...people, 'bench'],
   'shop:read': everyone,
   'users:read': seniors,
   'devices:read': ['manager'],

@@ -111,7 +111,7 @@ describe('outbox', () => {
   })
 
   it('lets another batch pass one that waits or was refused', () => {
-    const entries = [waited(entry(1, 'draft'), 100, 1), entry(2, 'seal'), refused(entry(3, 'draft', 'b'), 422, 'no'), entry(4, 'draft', 'c')]
+    const entries = [waited(entry(1, 'draft'), 100, 1), entry(2, 'seal'), refused(entry(3, 'draft', 'b'), { status: 422, code: 'rule', message: 'no' }), entry(4, 'draft', 'c')]
     expect(nextEntry(entries, 100)?.id).toBe('4')
     expect(nextEntry(entries, 600)?.id).toBe('1')
     expect(nextDueAt(entries)).toBe(0)

@@ -18,7 +18,7 @@ const part = (index: number, materialId: string, role: Role, parts: string): Ben
 })
 
 const lot = (n: number, materialId: string, expiresOn: string | null): BenchSnapshot['lots'][number] => ({
-  id: id(n), materialId, lotNumber: `L-${n}`, expiresOn, openedAt: null, state: 'sealed', place: null, pricePerKg: null, stockG: '5000',
+  id: id(n), materialId, lotNumber: `L-${n}`, expiresOn, openedAt: null, state: 'sealed', blockedReason: null, place: null, pricePerKg: null, stockG: '5000',
 })
 
 /** A shop with one two-pack mix 100 : 50 : 20, one gun, one scale of 0.1 g and cups of 1 L and 2.5 L. */
@@ -43,10 +43,12 @@ export function snapshot(more: Partial<BenchSnapshot> = {}): BenchSnapshot {
     }],
     scales: [{ id: id(41), name: 'Scale 2', source: 'keypad', divisionG: '0.1', capacityG: '6000', mpeG: null }],
     cups: [{ id: id(45), name: '2.5 L', capacityMl: '2500', fillLineMl: '1900' }, { id: id(46), name: '1 L', capacityMl: '1000', fillLineMl: '800' }],
-    booths: [{ id: id(51), name: 'Booth 1', climate: null }],
+    booths: [{ id: id(51), name: 'Booth 1', past: [], cleanedAt: null, climate: null }],
     people: [],
     today: [],
     drafts: [],
+    chemistryRules: [],
+    paces: [],
     ...more,
   }
 }

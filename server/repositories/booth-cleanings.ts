@@ -1,0 +1,102 @@
+import type { Knex } from 'knex'
+import type { ChemistryRule } from '#shared/engine/chemistry'
+import { toInstant } from '../utils/rows'
+
+type Db = Knex | Knex.Transaction
+
+/** A booth recorded as clean. `at` epoch milliseconds. */
+export interface Cleaning {
+  at: number
+  userName: string
+}
+
+interface CleaningRow {
+  cleaned_at: Date
+  name: string
+}
+
+/** The last cleaning of a booth at or before an instant (epoch milliseconds). */
+export async function lastCleaning(boothId: string, until: number, db: Db): Promise<Cleaning | null> {
+  const row = await db('booth_cleanings as c').join('users as u', 'u.id', 'c.user_id')
+    .where('c.booth_id', boothId).where('c.cleaned_at', '<=', toInstant(until))
+    .orderBy([{ column: 'c.cleaned_at', order: 'desc' }, { column: 'c.id', order: 'desc' }])
+    .first<CleaningRow | undefined>('c.cleaned_at', 'u.name')
+  return row ? { at: row.cleaned_at.getTime(), userName: row.name } : null
+}
+
+/** When the booth was next recorded clean after an instant; null where it was not. */
+export async function nextCleaningAt(boothId: string, after: number, db: Db): Promise<number | null> {
+  const row = await db('booth_cleanings').where({ booth_id: boothId }).where('cleaned_at', '>', toInstant(after)).orderBy('cleaned_at')
+    .first<{ cleaned_at: Date } | undefined>('cleaned_at')
+  return row ? row.cleaned_at.getTime() : null
+}
+
+export async function insertCleaning(cleaning: { id: string, boothId: string, userId: string, at: number }, db: Db): Promise<void> {
+  const at = toInstant(cleaning.at)
+  await db('booth_cleanings').insert({ id: cleaning.id, booth_id: cleaning.boothId, user_id: cleaning.userId, cleaned_at: at, created_at: at })
+}
+
+/** Which revision of a mix was last made for a booth, and when (epoch milliseconds). */
+export interface BoothMix {
+  mixRevisionId: string
+  at: number
+}
+
+interface MixRow {
+  mix_revision_id: string
+  last_at: Date
+}
+
+/** The longest that a pot mixed before a cleaning may stand and be sprayed after it. */
+const longestPotMs = 60 * 86_400_000
+
+/**
+ * Every mix that was made for a booth after `from` and before `to` (epoch milliseconds; null: from ever, until now),
+ * with those made before `from` whose pot was still not emptied then. A pot counts whether or not anybody tapped its
+ * first spray: the careful side.
+ */
+export async function mixesInBooth(boothId: string, from: number | null, to: number | null, db: Db): Promise<BoothMix[]> {
+  // One group a mix, each found by the index's end: the length of the log does not matter.
+  const made = db('batches').where({ outcome: 'mixed', booth_id: boothId }).groupBy('mix_revision_id')
+    .select<MixRow[]>('mix_revision_id', db.raw('MAX(mixed_at) AS last_at'))
+  if (from !== null) void made.where('mixed_at', '>', toInstant(from))
+  if (to !== null) void made.where('mixed_at', '<=', toInstant(to))
+  const rows = [...await made, ...(from === null ? [] : await leftStanding(boothId, from, db))]
+  return rows.map(row => ({ mixRevisionId: row.mix_revision_id, at: row.last_at.getTime() }))
+}
+
+async function leftStanding(boothId: string, from: number, db: Db): Promise<MixRow[]> {
+  return await db('batch_current as c').join('batches as b', 'b.id', 'c.batch_id')
+    .whereNot('c.state', 'stopped').where('c.booth_id', boothId)
+    .where('c.mixed_at', '>', toInstant(from - longestPotMs)).where('c.mixed_at', '<=', toInstant(from))
+    .where(part => part.whereNull('c.closed_at').orWhere('c.closed_at', '>', toInstant(from)).orWhere('c.last_spray_at', '>', toInstant(from)))
+    .select<MixRow[]>('b.mix_revision_id', 'c.mixed_at as last_at')
+}
+
+/** A revision's name and the chemistries of all its components. */
+export interface MixChemistry {
+  mixRevisionId: string
+  mixName: string
+  chemistry: string
+}
+
+export async function chemistriesOf(revisionIds: readonly string[], db: Db): Promise<MixChemistry[]> {
+  if (revisionIds.length === 0) return []
+  const rows = await db('mix_components as c')
+    .join('mix_revisions as r', 'r.id', 'c.mix_revision_id').join('mixes as x', 'x.id', 'r.mix_id').join('materials as m', 'm.id', 'c.material_id')
+    .whereIn('c.mix_revision_id', [...revisionIds])
+    .distinct<{ mix_revision_id: string, name: string, chemistry: string }[]>('c.mix_revision_id', 'x.name', 'm.chemistry')
+  return rows.map(row => ({ mixRevisionId: row.mix_revision_id, mixName: row.name, chemistry: row.chemistry }))
+}
+
+/** Which chemistries may not follow each other in a booth. */
+export async function listBoothRules(db: Db): Promise<ChemistryRule[]> {
+  const rows = await db('chemistry_rules').where({ scope: 'booth' }).orderBy(['first_chemistry', 'second_chemistry'])
+    .select<{ first_chemistry: string, second_chemistry: string, verdict: ChemistryRule['verdict'], advice: string }[]>('*')
+  return rows.map(row => ({ scope: 'booth', first: row.first_chemistry, second: row.second_chemistry, verdict: row.verdict, advice: row.advice }))
+}
+
+export async function findBoothName(id: string, db: Db): Promise<string | null> {
+  const row = await db('booths').where({ id }).first<{ name: string } | undefined>('name')
+  return row?.name ?? null
+}

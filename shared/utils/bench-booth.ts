@@ -1,0 +1,33 @@
+import { clashOf } from '../engine/chemistry'
+import type { ChemistryRule } from '../engine/chemistry'
+import type { BoothPast } from '../schemas/booth-cleanings'
+
+/** Two chemistries that may not meet in a booth: the one that is to be sprayed and the one that lies there. */
+export interface BoothClash {
+  chemistry: string
+  past: BoothPast
+  verdict: ChemistryRule['verdict']
+  advice: string
+}
+
+/**
+ * The strictest clash between a mix and what a booth, its duct and filters hold since they were last recorded clean.
+ *
+ * @param chemistries of all components of the mix
+ * @returns null where nothing clashes
+ */
+export function boothClash(chemistries: readonly string[], past: readonly BoothPast[], rules: readonly ChemistryRule[]): BoothClash | null {
+  const found = past.flatMap(one => [...new Set(chemistries)].flatMap((chemistry) => {
+    const rule = clashOf(rules, 'booth', one.chemistry, chemistry)
+    return rule === null ? [] : [{ chemistry, past: one, verdict: rule.verdict, advice: rule.advice }]
+  }))
+  return found.find(({ verdict }) => verdict === 'blocked') ?? found[0] ?? null
+}
+
+/** A chemistry as it is said: `acid-curing` stands as it is, `uv` in capitals. */
+export const chemistryWords = (chemistry: string): string => (chemistry === 'uv' ? 'UV' : chemistry)
+
+/** Why a mix is not started for a booth, in plain words. */
+export function clashWords({ chemistry, past, advice }: BoothClash, boothName: string): string {
+  return `${boothName} was last used for ${chemistryWords(past.chemistry)} (${past.mixName}); this mix is ${chemistryWords(chemistry)}. ${advice}`
+}

@@ -1,0 +1,119 @@
+import { randomUUID } from 'node:crypto'
+import { afterAll, beforeAll, beforeEach, describe, expect, it } from 'vitest'
+import type { DraftInput } from '#shared/schemas/drafts'
+import { sealBatch } from '../../server/services/batches'
+import { closeBatch, recordBatchEvent } from '../../server/services/batch-events'
+import { readBench } from '../../server/services/bench'
+import { boothChemistry, cleanBooth } from '../../server/services/booth-guard'
+import { saveDraft } from '../../server/services/drafts'
+import { seedReference } from '../../seeds/reference'
+import { draftBody, minutesIn, morning, poured } from '../factories/drafts'
+import { makeApproval, makeLot, makeMaterial, makeMix, makeShop, type Shop } from '../factories/shop'
+import { openWorkshop, type Workshop } from './support/context'
+
+let work: Workshop
+let shop: Shop
+let nitro: { mixRevisionId: string; lotId: string }
+beforeAll(async () => {
+  work = await openWorkshop()
+  await seedReference(work.admin)
+}, 120_000)
+beforeEach(async () => {
+  work.clock.now = morning
+  shop = await makeShop(work.admin)
+  Object.assign(work.shop, shop)
+  const materialId = await makeMaterial(work.admin, { code: `N-${shop.mark}`, name: 'Nitro topcoat', role: 'base', chemistry: 'nitrocellulose' })
+  const mix = await makeMix(work.admin, `${shop.mark}-N`, [[materialId, 'base', '100']], { pot_life_min: null, pot_life_reference_c: null })
+  nitro = { mixRevisionId: mix.mixRevisionId, lotId: await makeLot(work.admin, materialId, '5000') }
+})
+afterAll(() => work.close())
+
+const sprayer = () => work.as('sprayer')
+const ticked = { booth: true, duct: true, filters: true, approvalId: null } as const
+
+/** A polyurethane pot in the record of this booth, ten minutes old. */
+async function sprayPolyurethane(boothId = shop.boothId): Promise<string> {
+  const id = randomUUID()
+  await saveDraft(sprayer(), id, draftBody(shop, { boothId, components: poured(shop, ['1450', '725', '290']) }))
+  await sealBatch(sprayer(), { draftId: id })
+  return id
+}
+const nitroBody = (more: Partial<DraftInput> = {}) =>
+  draftBody(shop, { mixRevisionId: nitro.mixRevisionId, jobStepId: null, purpose: 'sample', pieceIds: [], ...more })
+const nitroIn = (minute: number): DraftInput['components'] =>
+  [{ index: 0, pours: [{ lotId: nitro.lotId, grams: '2465', at: minutesIn(minute), source: 'typed', round: 0 }] }]
+
+describe('the booth guard', () => {
+  it('refuses to begin a mix for a booth that holds what it must not meet, and lets it begin for another booth', async () => {
+    await sprayPolyurethane()
+    await expect(saveDraft(sprayer(), randomUUID(), nitroBody())).rejects.toMatchObject({ status: 422, code: 'booth-clash' })
+    expect((await saveDraft(sprayer(), randomUUID(), nitroBody({ boothId: shop.otherBoothId }))).state).toBe('open')
+  })
+
+  it('counts a pot that nobody sprayed yet, and none that was stopped', async () => {
+    const id = randomUUID()
+    const stopped = { at: minutesIn(0), reason: 'Spilled', disposal: 'reactive waste' }
+    await saveDraft(sprayer(), id, draftBody(shop, { components: poured(shop, ['1450', '725', null]), stopped }))
+    await sealBatch(sprayer(), { draftId: id })
+    expect((await boothChemistry(sprayer(), shop.boothId)).past).toEqual([])
+    await sprayPolyurethane()
+    expect((await boothChemistry(sprayer(), shop.boothId)).past.map(({ chemistry }) => chemistry).sort()).toEqual(['polyurethane', 'solvent'])
+  })
+
+  it('is lifted by a recorded cleaning once the pots of the booth are emptied', async () => {
+    const id = await sprayPolyurethane()
+    work.clock.now = morning + 60 * 60_000
+    await cleanBooth(work.as('foreman'), shop.boothId, ticked)
+    // Cleaned around a pot that is still to be sprayed there.
+    await expect(saveDraft(sprayer(), randomUUID(), nitroBody())).rejects.toMatchObject({ code: 'booth-clash' })
+    await recordBatchEvent(sprayer(), id, { kind: 'last-spray', gunId: null, at: null })
+    await closeBatch(sprayer(), id, { leftoverG: '0', at: null })
+    work.clock.now += 60_000
+    const after = await cleanBooth(work.as('foreman'), shop.boothId, ticked)
+    expect(after).toMatchObject({ past: [], cleanedByName: `foreman ${shop.mark}` })
+    expect((await saveDraft(sprayer(), randomUUID(), nitroBody())).state).toBe('open')
+  })
+
+  it('writes one audit entry a cleaning, with ids and no names', async () => {
+    await cleanBooth(work.as('manager'), shop.boothId, ticked)
+    const entries = await work.admin('audit_entries').where({ subject: `booth:${shop.boothId}` }).select<{ bytes: string }[]>('bytes')
+    expect(entries).toHaveLength(1)
+    const text = String(entries[0]?.bytes)
+    expect(text).toContain('booth.cleaned')
+    expect(text).toContain(shop.users.manager)
+    expect(text).not.toContain(`manager ${shop.mark}`)
+  })
+
+  it('takes a sprayer\'s tap only with a foreman\'s word for this booth, once', async () => {
+    await expect(cleanBooth(sprayer(), shop.boothId, ticked)).rejects.toMatchObject({ status: 422, code: 'foreman-needed' })
+    const other = await makeApproval(work.admin, shop, 'clean-booth', `booth:${shop.otherBoothId}`, morning)
+    await expect(cleanBooth(sprayer(), shop.boothId, { ...ticked, approvalId: other })).rejects.toMatchObject({ code: 'approval-invalid' })
+    const approvalId = await makeApproval(work.admin, shop, 'clean-booth', `booth:${shop.boothId}`, morning)
+    expect(await cleanBooth(sprayer(), shop.boothId, { ...ticked, approvalId })).toMatchObject({ cleanedByName: `foreman ${shop.mark}` })
+    await expect(cleanBooth(sprayer(), shop.boothId, { ...ticked, approvalId })).rejects.toMatchObject({ code: 'approval-invalid' })
+  })
+
+  it('keeps what was poured all the same and marks it for a foreman', async () => {
+    await sprayPolyurethane()
+    const id = randomUUID()
+    await saveDraft(sprayer(), id, nitroBody({ components: nitroIn(-5) }))
+    const batch = await sealBatch(sprayer(), { draftId: id })
+    expect(batch.review).toContain('booth-clash')
+  })
+
+  it('marks the one that arrives last, also where it was mixed first', async () => {
+    await sprayPolyurethane()
+    const id = randomUUID()
+    await saveDraft(sprayer(), id, nitroBody({ components: nitroIn(-60) }))
+    expect((await sealBatch(sprayer(), { draftId: id })).review).toContain('booth-clash')
+  })
+
+  it('goes to the bench with what lies in each booth and the rules, so that it guards without network', async () => {
+    await sprayPolyurethane()
+    const { booths, chemistryRules } = await readBench(sprayer())
+    const booth = booths.find(({ id }) => id === shop.boothId)
+    expect(booth?.past).toContainEqual({ chemistry: 'polyurethane', mixName: `Sealer ${shop.mark}`, at: minutesIn(-8) })
+    expect(booths.find(({ id }) => id === shop.otherBoothId)?.past).toEqual([])
+    expect(chemistryRules).toContainEqual(expect.objectContaining({ first: 'nitrocellulose', second: 'polyurethane', verdict: 'blocked' }))
+  })
+})
