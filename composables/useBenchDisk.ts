@@ -1,6 +1,8 @@
 import { openDB, type DBSchema, type IDBPDatabase } from 'idb'
 import type { BenchSnapshot } from '#shared/schemas/bench'
 import type { OutboxEntry } from '#shared/utils/bench-outbox'
+import { newUuid } from '#shared/utils/uuid'
+import type { BenchNumbers } from '#shared/utils/bench-numbers'
 import type { BenchPot } from '#shared/utils/bench-reckon'
 import type { BenchRun } from '#shared/utils/bench-run'
 import type { BenchSetup } from '#shared/utils/bench-setup'
@@ -18,6 +20,8 @@ interface BenchKept {
   setup: BenchSetup
   plan: BenchPlanKept | null
   run: BenchRun | null
+  /** How often the batch at hand has changed tablets; this one holds it with this turn. */
+  turn: number
 }
 
 interface BenchSnapshotKept {
@@ -32,13 +36,19 @@ interface BenchDb extends DBSchema {
   bench: { key: 'kept', value: BenchKept }
   snapshot: { key: 'last', value: BenchSnapshotKept }
   outbox: { key: string, value: OutboxEntry, indexes: { createdAt: number } }
+  /** What belongs to the tablet, whoever works at it. */
+  tablet: { key: 'id', value: string }
+  numbers: { key: 'block', value: BenchNumbers }
 }
 
 let opened: Promise<IDBPDatabase<BenchDb>> | null = null
 
 function database(): Promise<IDBPDatabase<BenchDb>> {
-  opened ??= openDB<BenchDb>('potbell-bench', 1, {
-    upgrade(db) {
+  opened ??= openDB<BenchDb>('potbell-bench', 2, {
+    upgrade(db, from) {
+      db.createObjectStore('tablet')
+      db.createObjectStore('numbers')
+      if (from >= 1) return
       db.createObjectStore('bench')
       db.createObjectStore('snapshot')
       db.createObjectStore('outbox', { keyPath: 'id' }).createIndex('createdAt', 'createdAt')
@@ -64,6 +74,19 @@ export function useBenchDisk() {
     readSnapshot: async (): Promise<BenchSnapshotKept | undefined> => (await database()).get('snapshot', 'last'),
     writeSnapshot: async (kept: BenchSnapshotKept): Promise<void> => {
       await (await database()).put('snapshot', plain(kept), 'last')
+    },
+    /** The tablet's own name for itself, made once. */
+    readTabletId: async (): Promise<string> => {
+      const trx = (await database()).transaction('tablet', 'readwrite')
+      const known = await trx.store.get('id')
+      const id = known ?? newUuid()
+      if (known === undefined) await trx.store.put(id, 'id')
+      await trx.done
+      return id
+    },
+    readNumbers: async (): Promise<BenchNumbers | undefined> => (await database()).get('numbers', 'block'),
+    writeNumbers: async (numbers: BenchNumbers): Promise<void> => {
+      await (await database()).put('numbers', plain(numbers), 'block')
     },
     readOutbox: async (): Promise<OutboxEntry[]> => (await database()).getAllFromIndex('outbox', 'createdAt'),
     /** Puts what changed and removes what went, in one transaction. */

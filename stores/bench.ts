@@ -2,15 +2,17 @@ import { defineStore } from 'pinia'
 import { computed, ref, shallowRef } from 'vue'
 import type { Batch } from '#shared/schemas/batches'
 import type { BenchSnapshot } from '#shared/schemas/bench'
-import type { Draft } from '#shared/schemas/drafts'
+import type { Draft, DraftHolder, DraftList } from '#shared/schemas/drafts'
 import { draftOf } from '#shared/utils/bench-draft'
 import { reckon, withFittingCup } from '#shared/utils/bench-reckon'
 import type { BenchRun } from '#shared/utils/bench-run'
 import { blankSetup, setupAfterPot, type BenchHome, type BenchSetup } from '#shared/utils/bench-setup'
+import { isTakenOver, runOfDraft, takenOverWords } from '#shared/utils/bench-takeover'
 import { benchTools } from '#shared/utils/bench-tools'
 import { toIso } from '#shared/utils/instant'
 import { shopDate } from '#shared/utils/zone'
 import { useBenchDisk, type BenchPlanKept } from '~/composables/useBenchDisk'
+import { useBenchNumbers } from '~/composables/useBenchNumbers'
 import { useOutboxStore } from '~/stores/outbox'
 import { useSessionStore } from '~/stores/session'
 import { useTimersStore } from '~/stores/timers'
@@ -19,12 +21,20 @@ import { callApi, toFailure } from '~/utils/api'
 /** Drafts go out this long after the last change; at steps and at the start of a pot life at once. */
 const SAVE_AFTER_MS = 1_500
 
+/** What the server says when this tablet cannot go on with a batch by itself. */
+export interface BenchRefusal {
+  code: string
+  message: string
+}
+const LEAVING: ReadonlySet<string> = new Set(['taken-over', 'booth-clash', 'forbidden', 'code-not-yours'])
+
 /** The mix being made at this bench. It holds what is, and writes it down; what follows from it is reckoned elsewhere. */
 export const useBenchStore = defineStore('bench', () => {
   const session = useSessionStore()
   const outbox = useOutboxStore()
   const timers = useTimersStore()
   const disk = useBenchDisk()
+  const numbers = useBenchNumbers(disk)
 
   const status = ref<'loading' | 'ready' | 'error'>('loading')
   const failure = ref<string | null>(null)
@@ -40,11 +50,19 @@ export const useBenchStore = defineStore('bench', () => {
   const setup = ref<BenchSetup | null>(null)
   const plan = shallowRef<BenchPlanKept | null>(null)
   const run = shallowRef<BenchRun | null>(null)
+  /** This tablet's own name for itself, and its turn at the batch at hand. */
+  const tabletId = ref<string | null>(null)
+  const turn = ref(0)
+  const holder = computed<DraftHolder | null>(() => (tabletId.value === null ? null : { id: tabletId.value, turn: turn.value }))
+  /** Why the server no longer takes the batch at hand from this tablet; null while it does. */
+  const refusal = ref<BenchRefusal | null>(null)
   /** The pot at hand as the log has it. */
   const logged = shallowRef<Batch | null>(null)
   let saveTimer: ReturnType<typeof setTimeout> | undefined
 
   const zone = computed(() => session.shop?.zone ?? 'UTC')
+  /** Nothing reaches the server from here now. */
+  const isAway = computed(() => isOffline.value || outbox.unreachable || navigator.onLine === false)
   const home = computed<BenchHome>(() => ({ boothId: session.device?.boothId ?? null, scaleId: session.device?.scaleId ?? null }))
   const reckoning = computed(() => (setup.value && snapshot.value ? reckon(setup.value, snapshot.value) : null))
   const tools = computed(() => (run.value && snapshot.value ? benchTools(run.value.tools, snapshot.value) : null))
@@ -59,6 +77,8 @@ export const useBenchStore = defineStore('bench', () => {
     status.value = snapshot.value === null ? 'loading' : status.value
     const userId = session.user?.id
     if (userId === undefined) return
+    tabletId.value ??= await disk.readTabletId()
+    await numbers.load()
     await outbox.load()
     if (run.value === null) await restore(userId)
     await refresh()
@@ -70,7 +90,10 @@ export const useBenchStore = defineStore('bench', () => {
     const kept = await disk.readKept()
     if (kept === undefined) return
     // A cup that is not in the log stays on this bench whoever signs in; a form belongs to the person who filled it.
-    if (kept.run !== null && kept.run.stage !== 'logged') run.value = kept.run
+    if (kept.run !== null && kept.run.stage !== 'logged') {
+      run.value = kept.run
+      turn.value = kept.turn ?? 0
+    }
     if (kept.userId === userId || run.value !== null) {
       setup.value = kept.setup
       plan.value = kept.plan
@@ -84,6 +107,7 @@ export const useBenchStore = defineStore('bench', () => {
       const at = Date.parse(answer.serverNow)
       take(answer, at, false)
       await disk.writeSnapshot({ snapshot: answer, at, offsetMs: offsetMs.value })
+      if (session.device?.kind === 'bench') await numbers.fill()
     } catch (error) {
       await readLast(toFailure(error).message, toFailure(error).passing)
     }
@@ -110,7 +134,7 @@ export const useBenchStore = defineStore('bench', () => {
 
   async function keep(): Promise<void> {
     if (!setup.value || !session.user) return
-    await disk.writeKept({ userId: session.user.id, setup: setup.value, plan: plan.value, run: run.value })
+    await disk.writeKept({ userId: session.user.id, setup: setup.value, plan: plan.value, run: run.value, turn: turn.value })
   }
 
   async function changeSetup(next: BenchSetup): Promise<void> {
@@ -131,22 +155,46 @@ export const useBenchStore = defineStore('bench', () => {
   async function save(): Promise<void> {
     clearTimeout(saveTimer)
     const { value } = run
-    if (value === null) return
-    const body = draftOf(value, toIso(Date.now()), offsetMs.value === null ? null : Math.round(offsetMs.value))
+    if (value === null || refusal.value?.code === 'taken-over') return
+    const body = draftOf(value, toIso(Date.now()), offsetMs.value === null ? null : Math.round(offsetMs.value), holder.value)
     await outbox.put({ subject: value.id, kind: 'draft', method: 'PUT', path: `/api/batch-drafts/${value.id}`, body: { ...body } })
   }
 
   /** A pot of a plan begins. */
   async function begin(next: BenchRun, of: BenchPlanKept): Promise<void> {
     plan.value = of
+    turn.value = 0
+    await open(isAway.value ? { ...next, code: await numbers.take() } : next)
+  }
+
+  /** Goes on here with a batch that another tablet has begun; that one is refused from then on. */
+  async function takeOver(id: string): Promise<void> {
+    const draft = await callApi<Draft>(`/api/batch-drafts/${id}`)
+    const next = snapshot.value && session.user ? runOfDraft(draft, snapshot.value, session.user.id) : null
+    if (draft.state !== 'open') throw new Error(`${draft.code} is in the log already.`)
+    if (next === null) throw new Error('Its mix, cup or scale is not in this bench\'s list: go on with it where it was begun.')
+    plan.value = null
+    turn.value = (draft.holder?.turn ?? 0) + 1
+    await open({ ...next, tools: { ...next.tools, scaleId: home.value.scaleId ?? next.tools.scaleId } })
+  }
+
+  async function open(next: BenchRun): Promise<void> {
     logged.value = null
+    refusal.value = null
     await change(next, 'now')
+  }
+
+  /** Asks whether another tablet has gone on with the batch at hand. */
+  async function checkHeld(): Promise<void> {
+    if (run.value === null || run.value.stage === 'logged' || holder.value === null || outbox.entries.some(({ subject }) => subject === run.value?.id)) return
+    const listed = (await callApi<DraftList>('/api/batch-drafts')).items.find(({ id }) => id === run.value?.id)
+    if (listed !== undefined && isTakenOver(listed, holder.value)) refusal.value = { code: 'taken-over', message: takenOverWords(listed) }
   }
 
   /** Into the record: the last draft first, then the seal, in this order also without a network. */
   async function seal(next: BenchRun): Promise<void> {
     await change(next, 'now')
-    await outbox.put({ subject: next.id, kind: 'seal', method: 'POST', path: '/api/batches', body: { draftId: next.id } })
+    await outbox.put({ subject: next.id, kind: 'seal', method: 'POST', path: '/api/batches', body: { draftId: next.id, holder: holder.value } })
   }
 
   /** Leaves the cup that is in the log; the form stands for what is left to mix. */
@@ -158,16 +206,29 @@ export const useBenchStore = defineStore('bench', () => {
     if (setup.value && snapshot.value) await changeSetup(withFittingCup(setupAfterPot(setup.value, snapshot.value, home.value), snapshot.value))
   }
 
+  /** Leaves a batch that the server does not take from this tablet; what waits of it is not sent any more. */
+  async function giveUp(): Promise<void> {
+    if (run.value !== null) await outbox.drop(run.value.id)
+    run.value = null
+    refusal.value = null
+    await keep()
+    await refresh()
+  }
+
+  outbox.listenToRefusals((entry, { code, message }) => {
+    if (run.value?.id === entry.subject && LEAVING.has(code)) refusal.value = { code, message }
+  })
   outbox.listen((entry, answer) => {
     if (run.value?.id !== entry.subject) return
     if (entry.kind === 'seal') logged.value = answer as Batch
+    if (refusal.value !== null && refusal.value.code !== 'taken-over') refusal.value = null
     const { code, potLife } = answer as Draft
     run.value = { ...run.value, code, potLife }
     void keep()
   })
 
   return {
-    status, failure, snapshot, snapshotAt, isOffline, offsetMs, startOffsetMs, setup, plan, run, logged, zone, home, reckoning, tools,
-    now, today, load, refresh, changeSetup, change, begin, seal, leave,
+    status, failure, snapshot, snapshotAt, isOffline, offsetMs, startOffsetMs, isAway, numbers: numbers.held, setup, plan, run, refusal, logged, zone, home, reckoning, tools,
+    now, today, load, refresh, changeSetup, change, begin, takeOver, checkHeld, seal, leave, giveUp,
   }
 })

@@ -7,6 +7,7 @@ import { callApi, toFailure } from '~/utils/api'
 
 type OutboxWork = Pick<OutboxEntry, 'subject' | 'kind' | 'method' | 'path' | 'body'>
 type Listener = (entry: OutboxEntry, answer: unknown) => void
+type RefusalListener = (entry: OutboxEntry, refusal: NonNullable<OutboxEntry['refusal']>) => void
 
 /** What this tablet has written and the server has not yet confirmed. It goes by itself, in order, until it is through. */
 export const useOutboxStore = defineStore('outbox', () => {
@@ -16,6 +17,7 @@ export const useOutboxStore = defineStore('outbox', () => {
   /** The last try did not reach the server. */
   const unreachable = ref(false)
   const listeners = new Set<Listener>()
+  const refusalListeners = new Set<RefusalListener>()
   let timer: ReturnType<typeof setTimeout> | undefined
 
   const waiting = computed(() => entries.value.length)
@@ -72,11 +74,12 @@ export const useOutboxStore = defineStore('outbox', () => {
   }
 
   async function setAside(entry: OutboxEntry, error: unknown): Promise<void> {
-    const { status, message } = toFailure(error)
+    const { status, code, message } = toFailure(error)
     unreachable.value = status === 0
-    const kept = passes(status) ? waited(entry, Date.now(), Math.random()) : refused(entry, status, message)
+    const kept = passes(status) ? waited(entry, Date.now(), Math.random()) : refused(entry, { status, code, message })
     entries.value = entries.value.map(other => (other.id === entry.id ? kept : other))
     await disk.writeOutbox([kept], [])
+    if (kept.refusal !== null) for (const listener of refusalListeners) listener(kept, kept.refusal)
   }
 
   /** Everything at once, without waiting for its turn: the network is back, or somebody asked. */
@@ -99,5 +102,11 @@ export const useOutboxStore = defineStore('outbox', () => {
     return () => listeners.delete(listener)
   }
 
-  return { entries, waiting, refusals, unreachable, load, put, flush, retry, drop, listen }
+  /** Calls back with each entry that the server refuses for good. Answers the function that stops it. */
+  function listenToRefusals(listener: RefusalListener): () => void {
+    refusalListeners.add(listener)
+    return () => refusalListeners.delete(listener)
+  }
+
+  return { entries, waiting, refusals, unreachable, load, put, flush, retry, drop, listen, listenToRefusals }
 })

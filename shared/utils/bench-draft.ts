@@ -1,11 +1,31 @@
-import type { DraftInput } from '../schemas/drafts'
+import type { DraftHolder, DraftInput } from '../schemas/drafts'
 import { poursOf } from './bench-run'
 import type { BenchRun } from './bench-run'
 
-/** A draft as it is sent; `offsetMs` is the server's clock less the tablet's, null while it was never measured. */
-export function draftOf(run: BenchRun, sentAt: string, offsetMs: number | null): DraftInput {
+/** What a draft has in fields of its own; the rest of a run is the bench's own state. */
+const FACTS = [
+  'id', 'planId', 'potNumber', 'potCount', 'seq', 'mixRevisionId', 'jobStepId', 'purpose', 'pieceIds', 'mixedByUserId', 'plan', 'corrections', 'reactiveAt',
+  'deviceReactiveAt', 'climate', 'viscosity', 'approvals', 'stopped', 'code', 'potLife',
+] as const satisfies readonly (keyof BenchRun)[]
+
+/** What only a bench needs to go on at the same gram. */
+export type BenchOwnState = Omit<BenchRun, typeof FACTS[number]>
+
+function ownStateOf(run: BenchRun): Record<string, unknown> {
+  const facts: ReadonlySet<string> = new Set(FACTS)
+  return Object.fromEntries(Object.entries(run).filter(([key]) => !facts.has(key)))
+}
+
+/**
+ * A draft as it is sent: the facts, and the bench's own state for a tablet that takes it over.
+ *
+ * @param offsetMs the server's clock less the tablet's, null while it was never measured
+ * @param holder the tablet that sends it
+ */
+export function draftOf(run: BenchRun, sentAt: string, offsetMs: number | null, holder: DraftHolder | null = null): DraftInput {
   return {
     seq: run.seq,
+    code: run.code ?? undefined,
     planId: run.planId,
     potNumber: run.potNumber,
     potCount: run.potCount,
@@ -26,6 +46,8 @@ export function draftOf(run: BenchRun, sentAt: string, offsetMs: number | null):
     viscosity: run.viscosity,
     approvals: run.approvals,
     stopped: run.stopped,
+    holder,
+    bench: ownStateOf(run),
   }
 }
 

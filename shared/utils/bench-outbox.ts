@@ -16,7 +16,7 @@ export interface OutboxEntry {
   /** Not before; epoch milliseconds. */
   nextAt: number
   /** Refused by the server: it does not go by itself any more. */
-  refusal: { status: number, message: string } | null
+  refusal: { status: number, code: string, message: string } | null
 }
 
 /** A newer draft takes the place of one that was not sent yet: only the latest is worth sending. */
@@ -58,8 +58,8 @@ export function waited(entry: OutboxEntry, now: number, random: number): OutboxE
   return { ...entry, tries, nextAt: now + backoffMs(tries, random) }
 }
 
-export function refused(entry: OutboxEntry, status: number, message: string): OutboxEntry {
-  return { ...entry, tries: entry.tries + 1, refusal: { status, message } }
+export function refused(entry: OutboxEntry, refusal: NonNullable<OutboxEntry['refusal']>): OutboxEntry {
+  return { ...entry, tries: entry.tries + 1, refusal }
 }
 
 /** Nobody is signed in any more: it waits for the next sign-in, it is not lost. */
