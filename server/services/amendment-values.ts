@@ -1,6 +1,6 @@
 import { D, print } from '#shared/engine/decimal'
 import { pourFieldOf } from '#shared/schemas/amendments'
-import { viscosityCups } from '#shared/schemas/viscosity-cups'
+import { viscosityCups } from '#shared/utils/viscosity-cups'
 import { invalid } from '../utils/errors'
 
 /** How the values of a field are written, and whether there may be none. */
