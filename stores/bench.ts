@@ -63,7 +63,7 @@ export const useBenchStore = defineStore('bench', () => {
   const zone = computed(() => session.shop?.zone ?? 'UTC')
   /** Nothing reaches the server from here now. */
   const isAway = computed(() => isOffline.value || outbox.unreachable || navigator.onLine === false)
-  const home = computed<BenchHome>(() => ({ boothId: session.device?.boothId ?? null, scaleId: session.device?.scaleId ?? null }))
+  const home = computed<BenchHome>(() => ({ boothId: session.device?.boothId ?? null, scaleId: session.device?.scaleId ?? null, userId: session.user?.id ?? null }))
   const reckoning = computed(() => (setup.value && snapshot.value ? reckon(setup.value, snapshot.value) : null))
   const tools = computed(() => (run.value && snapshot.value ? benchTools(run.value.tools, snapshot.value) : null))
 
@@ -187,7 +187,11 @@ export const useBenchStore = defineStore('bench', () => {
   /** Asks whether another tablet has gone on with the batch at hand. */
   async function checkHeld(): Promise<void> {
     if (run.value === null || run.value.stage === 'logged' || holder.value === null || outbox.entries.some(({ subject }) => subject === run.value?.id)) return
-    const listed = (await callApi<DraftList>('/api/batch-drafts')).items.find(({ id }) => id === run.value?.id)
+    const drafts = await callApi<DraftList>('/api/batch-drafts').catch((error: unknown) => {
+      if (!toFailure(error).passing) throw error
+      return null
+    })
+    const listed = drafts?.items.find(({ id }) => id === run.value?.id)
     if (listed !== undefined && isTakenOver(listed, holder.value)) refusal.value = { code: 'taken-over', message: takenOverWords(listed) }
   }
 

@@ -6,6 +6,8 @@ import { calculatePots } from '../engine/pots'
 import type { PlannedPot, PotBound, PotsCaution } from '../engine/pots'
 import type { BenchSnapshot, BenchStep } from '../schemas/bench'
 import type { DraftPlan } from '../schemas/drafts'
+import { boothClash, clashWords } from './bench-booth'
+import type { BoothClash } from './bench-booth'
 import { efficiencyOf, toolChoice } from './bench-setup'
 import type { BenchSetup } from './bench-setup'
 import { benchPotLife, benchTools } from './bench-tools'
@@ -15,8 +17,8 @@ import type { BenchTools } from './bench-tools'
 export interface BenchFault {
   field: keyof BenchSetup | 'form'
   message: string
-  /** Not given yet, or given and impossible. */
-  kind: 'missing' | 'refused'
+  /** Not given yet, given and impossible, or against the fire rule of the booth. */
+  kind: 'missing' | 'refused' | 'clash'
 }
 
 /** One pot of the plan, with its own figures and their working. */
@@ -54,6 +56,7 @@ const FIELDS: readonly (readonly [RegExp, keyof BenchSetup])[] = [
   [/^filmWeightIs/, 'filmWeightIs'],
   [/^transferEfficiencyPct/, 'gunId'],
   [/^reserveG|^residueG/, 'residueG'],
+  [/^reservePct/, 'reservePct'],
   [/^paceM2PerH/, 'paceM2PerH'],
   [/^coats/, 'coats'],
   [/^cup/, 'cupId'],
@@ -67,10 +70,16 @@ export function faultOf(error: EngineError): BenchFault {
   return { field, message: error.message, kind: 'refused' }
 }
 
+/** What may not be sprayed in the chosen booth; nobody approves it, the booth is cleaned. */
+function clashing(setup: BenchSetup, snapshot: BenchSnapshot): BenchFault[] {
+  const clash = clashOfSetup(setup, snapshot)
+  return clash?.verdict === 'blocked' ? [{ field: 'boothId', message: clash.words, kind: 'clash' }] : []
+}
+
 /** Targets, working and pots for the form as it stands. Never throws for what was typed: faults stand beside their fields. */
 export function reckon(setup: BenchSetup, snapshot: BenchSnapshot): BenchReckoning {
   const nothing: BenchReckoning = {
-    faults: [...missing(setup), ...unreadable(setup)], tools: null, whole: null, pots: [], boundBy: 'one-pot', cautions: [], totalG: null,
+    faults: [...missing(setup), ...unreadable(setup), ...clashing(setup, snapshot)], tools: null, whole: null, pots: [], boundBy: 'one-pot', cautions: [], totalG: null,
   }
   try {
     const tools = benchTools(toolChoice(setup), snapshot)
@@ -81,6 +90,17 @@ export function reckon(setup: BenchSetup, snapshot: BenchSnapshot): BenchReckoni
     if (!(error instanceof EngineError)) throw error
     return { ...nothing, faults: [...nothing.faults, faultOf(error)] }
   }
+}
+
+/** What the chosen mix and booth do to each other, in words; null where nothing clashes. */
+export function clashOfSetup(setup: Pick<BenchSetup, 'mixId' | 'boothId'>, snapshot: BenchSnapshot): (BoothClash & { words: string }) | null {
+  const mix = snapshot.mixes.find(({ id }) => id === setup.mixId)
+  const booth = snapshot.booths.find(({ id }) => id === setup.boothId)
+  if (mix === undefined || booth === undefined) return null
+  const ids = new Set(mix.components.map(({ materialId }) => materialId))
+  const chemistries = snapshot.materials.filter(({ id }) => ids.has(id)).map(({ chemistry }) => chemistry)
+  const clash = boothClash(chemistries, booth.past, snapshot.chemistryRules)
+  return clash === null ? null : { ...clash, words: clashWords(clash, booth.name) }
 }
 
 /** Without these nothing can be reckoned; a missing purpose or gun still lets the figures stand. */
@@ -107,7 +127,7 @@ function missing(setup: BenchSetup): BenchFault[] {
 /** Numbers in use that cannot be read, each beside its own field, whatever else is still missing. */
 function unreadable(setup: BenchSetup): BenchFault[] {
   const amount = ({ area: 'areaM2', total: 'totalG', tin: 'tinG' } as const)[setup.way]
-  const fields = [[amount, readPositive], ['filmWeightGsm', readPositive], ['residueG', readNonNegative]] as const
+  const fields = [[amount, readPositive], ['filmWeightGsm', readPositive], ['residueG', readNonNegative], ['reservePct', readNonNegative], ['paceM2PerH', readPositive]] as const
   return fields.flatMap(([field, read]) => setup[field] === '' ? [] : refusalOf(field, () => read(setup[field], field)))
 }
 
@@ -144,7 +164,7 @@ function plans(setup: BenchSetup, snapshot: BenchSnapshot, tools: BenchTools): P
   }
 }
 
-function commonPlan(setup: BenchSetup, snapshot: BenchSnapshot, { scale }: BenchTools): Film & Pick<DraftPlan, 'reserveG' | 'scaleDivisionG' | 'scaleMpeG'> {
+function commonPlan(setup: BenchSetup, snapshot: BenchSnapshot, { scale }: BenchTools): Film & Pick<DraftPlan, 'reserveG' | 'reservePct' | 'scaleDivisionG' | 'scaleMpeG'> {
   const film: Film = setup.filmWeightGsm === ''
     ? {}
     : {
@@ -153,7 +173,7 @@ function commonPlan(setup: BenchSetup, snapshot: BenchSnapshot, { scale }: Bench
         coats: setup.coats,
         transferEfficiencyPct: efficiencyOf(setup, snapshot) ?? undefined,
       }
-  return { ...film, reserveG: setup.residueG === '' ? '0' : setup.residueG, scaleDivisionG: scale.divisionG, scaleMpeG: scale.mpeG ?? undefined }
+  return { ...film, reserveG: setup.residueG === '' ? '0' : setup.residueG, reservePct: setup.reservePct === '' ? undefined : setup.reservePct, scaleDivisionG: scale.divisionG, scaleMpeG: scale.mpeG ?? undefined }
 }
 
 function amountOf(setup: BenchSetup): Pick<DraftPlan, 'areaM2' | 'totalG' | 'available'> {
@@ -170,10 +190,12 @@ function split(setup: BenchSetup, snapshot: BenchSnapshot, tools: BenchTools, wh
   if (tools.limitG === null) return null
   const life = benchPotLife(tools.mix, { airC: tools.booth?.climate?.airC ?? null, materialC: null })
   const pieces = setup.way === 'area' ? pieceAreas(setup, snapshot) : []
+  const residueG = setup.residueG === '' ? '0' : setup.residueG
   return calculatePots({
     mix: tools.input,
-    sprayG: whole.sprayedG,
-    residueG: setup.residueG === '' ? '0' : setup.residueG,
+    // The reserve is divided among the pots with what is sprayed; the residue is each pot's own.
+    sprayG: print(new D(whole.exactTotalG).minus(residueG)),
+    residueG,
     areaM2: whole.areaM2 ?? '1',
     pieceAreasM2: pieces.length > 0 ? pieces : undefined,
     cupCapacityG: tools.limitG,

@@ -1,5 +1,6 @@
 import { D, print, sum } from '../engine/decimal'
-import type { BenchMix, BenchSnapshot, BenchStep } from '../schemas/bench'
+import type { BenchMix, BenchPace, BenchSnapshot, BenchStep } from '../schemas/bench'
+import { offeredLots } from './bench-lots'
 import type { GunShape, ToolChoice } from './bench-tools'
 
 /** The three ways to say how much. */
@@ -25,7 +26,10 @@ export interface BenchSetup {
   filmWeightIs: 'deposited' | 'sprayed' | null
   gunId: string
   shape: GunShape
+  /** Lost in hose, cup and filter of each pot. */
   residueG: string
+  /** More than what is sprayed, per cent; empty for none. */
+  reservePct: string
   paceM2PerH: string
   cupId: string
   /** The cup was chosen by hand; else the smallest that fits is taken. */
@@ -38,6 +42,8 @@ export interface BenchSetup {
 export interface BenchHome {
   boothId: string | null
   scaleId: string | null
+  /** Who works here: their own pace is taken before the gun's. */
+  userId?: string | null
 }
 
 /** An empty form with this bench's own scale and the first cup of the list. */
@@ -61,6 +67,7 @@ export function blankSetup(snapshot: BenchSnapshot, home: BenchHome): BenchSetup
     gunId: '',
     shape: 'flat',
     residueG: '',
+    reservePct: '',
     paceM2PerH: '',
     cupId: snapshot.cups[0]?.id ?? '',
     cupChosen: false,
@@ -95,7 +102,7 @@ export function setupForStep(step: BenchStep, snapshot: BenchSnapshot, home: Ben
     scaleId: before.scaleId,
   }
   const boothId = step.boothId ?? setup.boothId
-  return chooseGun({ ...setup, boothId }, gunFor(snapshot, step.gunId, boothId), snapshot)
+  return chooseGun({ ...setup, boothId }, gunFor(snapshot, step.gunId, boothId), snapshot, home.userId)
 }
 
 /**
@@ -111,7 +118,7 @@ export function setupAfterPot(setup: BenchSetup, snapshot: BenchSnapshot, home: 
 /** The form for a mix without a job: its purpose has to be said. */
 export function setupForLoose(snapshot: BenchSnapshot, home: BenchHome, before: BenchSetup): BenchSetup {
   const setup: BenchSetup = { ...blankSetup(snapshot, home), loose: true, filmWeightIs: 'deposited', scaleId: before.scaleId }
-  return chooseGun(setup, gunFor(snapshot, null, setup.boothId), snapshot)
+  return chooseGun(setup, gunFor(snapshot, null, setup.boothId), snapshot, home.userId)
 }
 
 function gunFor(snapshot: BenchSnapshot, gunId: string | null, boothId: string): string {
@@ -119,11 +126,36 @@ function gunFor(snapshot: BenchSnapshot, gunId: string | null, boothId: string):
   return (guns.find(({ id }) => id === gunId) ?? guns.find(gun => gun.boothId === boothId) ?? guns[0])?.id ?? ''
 }
 
-/** A gun brings its own residue and its measured pace. */
-export function chooseGun(setup: BenchSetup, gunId: string, snapshot: BenchSnapshot): BenchSetup {
+/** A gun brings its own residue, and the pace that was measured of this person with it, or else its own. */
+export function chooseGun(setup: BenchSetup, gunId: string, snapshot: BenchSnapshot, userId: string | null = null): BenchSetup {
   const gun = snapshot.guns.find(({ id }) => id === gunId)
   if (!gun) return { ...setup, gunId: '' }
-  return { ...setup, gunId, residueG: gun.residueG, paceM2PerH: gun.paceM2PerH ?? '' }
+  return { ...setup, gunId, residueG: gun.residueG, paceM2PerH: ownPace(snapshot, gunId, userId)?.m2PerH ?? gun.paceM2PerH ?? '' }
+}
+
+function ownPace(snapshot: BenchSnapshot, gunId: string, userId: string | null | undefined): BenchPace | undefined {
+  return snapshot.paces.find(pace => pace.gunId === gunId && pace.userId === userId)
+}
+
+/** Where the pace in the form comes from, in words. */
+export function paceWords({ paceM2PerH, gunId }: BenchSetup, snapshot: BenchSnapshot, userId: string | null): string {
+  const own = ownPace(snapshot, gunId, userId)
+  if (paceM2PerH === '') return 'not known: divided by the cup only'
+  if (own !== undefined && paceM2PerH === own.m2PerH) return `your last ${own.batches} pots`
+  return paceM2PerH === snapshot.guns.find(({ id }) => id === gunId)?.paceM2PerH ? 'as recorded for this gun' : 'as given here'
+}
+
+/** The area as a form shows it: chosen pieces add up exactly and are rounded for the eye only, a typed area stands as typed. */
+export function shownArea({ areaM2, pieceIds }: BenchSetup): string {
+  return pieceIds.length === 0 || areaM2 === '' ? areaM2 : print(new D(areaM2).toDecimalPlaces(2))
+}
+
+/** What is in the tins on offer of one component by the stock list; the first to expire is the one that is poured from. */
+export function lotRest(setup: BenchSetup, snapshot: BenchSnapshot, today: string): { lotNumber: string, grams: string } | null {
+  const mix = snapshot.mixes.find(({ id }) => id === setup.mixId)
+  const part = mix?.components[setup.tinIndex]
+  const [lot] = part === undefined ? [] : offeredLots(snapshot, part.materialId, today)
+  return lot === undefined ? null : { lotNumber: lot.lotNumber, grams: lot.stockG }
 }
 
 /** Another mix: what is left of a component that it has not starts again at its base. */

@@ -57,7 +57,7 @@ export function snapshot(more: Partial<BenchSnapshot> = {}): BenchSnapshot {
 export function setup(more: Partial<BenchSetup> = {}): BenchSetup {
   return {
     stepId: null, loose: true, purpose: 'sample', mixId: id(1), way: 'area', areaM2: '7.2', pieceIds: [], totalG: '', tinIndex: 0, tinG: '', coats: 1,
-    filmWeightGsm: '120', filmWeightIs: 'deposited', gunId: id(31), shape: 'flat', residueG: '150', paceM2PerH: '4.2', cupId: id(45), cupChosen: false, scaleId: id(41), boothId: id(51), ...more,
+    filmWeightGsm: '120', filmWeightIs: 'deposited', gunId: id(31), shape: 'flat', residueG: '150', reservePct: '', paceM2PerH: '4.2', cupId: id(45), cupChosen: false, scaleId: id(41), boothId: id(51), ...more,
   }
 }
 
