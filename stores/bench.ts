@@ -201,6 +201,15 @@ export const useBenchStore = defineStore('bench', () => {
     await outbox.put({ subject: next.id, kind: 'seal', method: 'POST', path: '/api/batches', body: { draftId: next.id, holder: holder.value } })
   }
 
+  /** Gives up a cup that nothing came into: its last draft first, then the word that its number is void. */
+  async function discard(reason: string): Promise<void> {
+    const { value } = run
+    if (value === null) return
+    await save()
+    await outbox.put({ subject: value.id, kind: 'seal', method: 'POST', path: `/api/batch-drafts/${value.id}/discard`, body: { reason } })
+    await leave()
+  }
+
   /** Leaves the cup that is in the log; the form stands for what is left to mix. */
   async function leave(): Promise<void> {
     run.value = null
@@ -233,6 +242,6 @@ export const useBenchStore = defineStore('bench', () => {
 
   return {
     status, failure, snapshot, snapshotAt, isOffline, offsetMs, startOffsetMs, isAway, numbers: numbers.held, setup, plan, run, refusal, logged, zone, home, reckoning, tools,
-    now, today, load, refresh, changeSetup, change, begin, takeOver, checkHeld, seal, leave, giveUp,
+    now, today, load, refresh, changeSetup, change, begin, takeOver, checkHeld, seal, discard, leave, giveUp,
   }
 })

@@ -106,7 +106,7 @@ export async function updateDraft(draft: DraftWrite, now: number, trx: Knex.Tran
   await trx('batch_drafts').where({ id: draft.id }).update({ ...written(draft, now), version: trx.raw('version + 1') })
 }
 
-export async function endDraft(id: string, state: 'sealed' | 'stopped', now: number, trx: Knex.Transaction): Promise<void> {
+export async function endDraft(id: string, state: 'sealed' | 'stopped' | 'discarded', now: number, trx: Knex.Transaction): Promise<void> {
   await trx('batch_drafts').where({ id }).update({ state, updated_at: toInstant(now), version: trx.raw('version + 1') })
 }
 

@@ -9,7 +9,7 @@ import { calculations } from '#shared/schemas/calculations'
 import { ClimateCreateBody, ClimateList, ClimateListQuery, ClimateReading } from '#shared/schemas/climate'
 import { IdParams } from '#shared/schemas/common'
 import { Device, DeviceCreateBody, DeviceList, DeviceParams } from '#shared/schemas/devices'
-import { Draft, DraftBody, DraftList, DraftListQuery, DraftParams } from '#shared/schemas/drafts'
+import { Draft, DraftBody, DraftDiscardBody, DraftList, DraftListQuery, DraftParams } from '#shared/schemas/drafts'
 import { Job, JobList, JobListQuery } from '#shared/schemas/jobs'
 import { EventsQuery, LiveQuery, LiveSnapshot, ServerTime } from '#shared/schemas/live'
 import { Lot, LotList, LotListQuery } from '#shared/schemas/lots'
@@ -74,6 +74,7 @@ export const apiRoutes: readonly ApiRoute[] = [
   get('/api/batch-drafts', 'drafts:read', 'Batches being made', DraftList, { query: DraftListQuery }),
   get('/api/batch-drafts/{id}', 'drafts:read', 'A batch being made', Draft, { params: DraftParams }),
   put('/api/batch-drafts/{id}', 'drafts:write', 'Saves a batch being made', Draft, { params: DraftParams, body: DraftBody }),
+  post('/api/batch-drafts/{id}/discard', 'drafts:write', 'Gives up a batch into whose cup nothing came and voids its number', Draft, { params: DraftParams, body: DraftDiscardBody, status: 200 }),
   post('/api/number-blocks', 'numbers:take', 'Numbers that a bench holds for work without network', NumberBlock),
   post('/api/number-blocks/{id}/void', 'numbers:void', 'Closes a block of numbers with a reason', NumberBlock, { ...byId, body: NumberBlockVoidBody, status: 200 }),
   get('/api/batches', 'batches:read', 'The log of batches', BatchList, { query: BatchListQuery }),

@@ -146,6 +146,10 @@ export type DraftInput = z.input<typeof DraftBody>
 
 export const DraftParams = z.strictObject({ id: Uuid })
 
+/** Body of `POST /api/batch-drafts/:id/discard`: why a mix into whose cup nothing came is given up. */
+export const DraftDiscardBody = z.strictObject({ reason: words(400) })
+export type DraftDiscardBody = z.infer<typeof DraftDiscardBody>
+
 const potLifeBases = ['sheet', 'table', 'held', 'rule'] as const
 
 /** The instants of a pot's life, or null where nothing in the cup reacts (yet). */
