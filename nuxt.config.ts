@@ -22,6 +22,10 @@ export default defineNuxtConfig({
     },
   },
   runtimeConfig: {
+    public: {
+      /** `PUBLIC_URL`, set anew for each page; '' where the shop has none. */
+      address: '',
+    },
     /** Newest migration of this build; the server is healthy once the database has it. */
     lastMigration: migrations.at(-1) ?? '',
     session: {

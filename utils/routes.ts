@@ -6,6 +6,7 @@ export const routes = {
   signIn: (): string => '/sign-in',
   batches: (): string => '/batches',
   batch: (id: string): string => at('/batches', id),
+  label: (batchId: string): string => at('/labels', batchId),
   jobs: (): string => '/jobs',
   job: (id: string): string => at('/jobs', id),
   schedules: (): string => '/schedules',
