@@ -27,7 +27,7 @@ export function toleranceRange(lowG: number, highG: number, readingG: number, wi
 
 function stretch(lowG: number, highG: number, readingG: number, band: number): [number, number] {
   if (readingG > highG) return [lowG - 0.4 * band, Math.max(highG + 0.8 * band, readingG + 0.4 * band)]
-  if (readingG >= lowG) return [lowG - 0.25 * band, highG + 0.25 * band]
+  if (readingG >= lowG) return [lowG === 0 ? 0 : lowG - 0.25 * band, highG + 0.25 * band]
   if (readingG >= lowG - 2 * band) return [Math.max(0, lowG - 2 * band), highG + 0.5 * band]
   return [0, highG + Math.max(0.06 * highG, 0.5 * band)]
 }

@@ -15,6 +15,8 @@ export interface BenchWeighing {
   part: BenchPart
   /** More of a component that is in already, as a correction asks. */
   isTopUp: boolean
+  /** Thinner within its range, after everything was in: from nothing up to the high end. */
+  isThinning: boolean
   targetG: string
   lowG: string
   highG: string
@@ -83,6 +85,7 @@ function weighingOf(run: BenchRun, tools: BenchTools, answer: PourAnswer): Bench
     index,
     part,
     isTopUp: before.gt(0),
+    isThinning: run.pouredAt !== null && part.role === 'thinner' && targetG === '0',
     targetG,
     lowG: less(judged.lowG),
     highG: less(judged.highG),
