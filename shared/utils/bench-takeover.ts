@@ -6,6 +6,7 @@ import { readMix } from '../engine/mix'
 import type { BenchSnapshot } from '../schemas/bench'
 import type { Draft, DraftHolder, DraftSummary } from '../schemas/drafts'
 import type { BenchOwnState } from './bench-draft'
+import { NO_READING } from './bench-run'
 import type { BenchPour, BenchRun } from './bench-run'
 import { benchTools } from './bench-tools'
 import type { BenchTools } from './bench-tools'
@@ -51,8 +52,6 @@ function ownState(draft: Draft): BenchOwnState | null {
   return read.success ? read.data as unknown as BenchOwnState : null
 }
 
-const NO_READING: BenchRun['reading'] = { grams: '', steady: false, at: null, source: 'typed' }
-
 /** From what was poured alone: the last weighing stands open, so that whoever goes on settles it. */
 function stateFromFacts(draft: Draft, snapshot: BenchSnapshot): BenchOwnState | null {
   const tools = toolsOf(draft, snapshot)
@@ -69,13 +68,16 @@ function stateFromFacts(draft: Draft, snapshot: BenchSnapshot): BenchOwnState | 
     walk,
     place: last === undefined ? 0 : Math.max(0, walk.findIndex(step => step.kind === 'pour' && step.index === last.index && step.round === last.round)),
     pours: pours.slice(0, -1),
-    reading: last === undefined ? NO_READING : { grams: weighedWith(last, pours), steady: true, at: last.at, source: last.source === 'bridge' ? 'scale' : last.source },
+    reading: last === undefined ? NO_READING : { grams: weighedWith(last, pours), steady: true, at: last.at, source: last.source === 'bridge' ? 'scale' : last.source, fellFrom: null },
     taredG: '0',
+    lift: null,
+    byHand: false,
     lots: tools.parts.map(({ index }) => pours.filter(pour => pour.index === index).at(-1)?.lotId ?? null),
     kept: [],
     accepted: [],
     pouredAt: null,
     stirredAt: null,
+    viscosityAt: null,
   } as BenchOwnState
 }
 
