@@ -2,7 +2,7 @@ import type { BenchStep } from '#shared/schemas/bench'
 import { shopDate } from '#shared/utils/zone'
 import { findPots } from '../../server/repositories/pots'
 import { readBench } from '../../server/services/bench'
-import { closeBatch } from '../../server/services/batch-events'
+import { closeBatch } from '../../server/services/batch-close'
 import { sealBatch } from '../../server/services/batches'
 import { latestClimate, recordClimate } from '../../server/services/climate'
 import { windowsAt } from '../../server/services/windows'
@@ -81,9 +81,11 @@ class Today {
   /** Empties pots whose life was up long ago; a mix that was never finished goes into the log first. */
   async closeForgotten(): Promise<number> {
     const pots = (await findPots({ liveAt: this.#now }, this.#ctx.db)).filter(({ endsAt }) => endsAt !== null && Date.parse(endsAt) < this.#now - forgottenMs)
-    for (const { id, stage } of pots) {
+    for (const { id, stage, endsAt, firstSprayAt, guns } of pots) {
       if (stage === 'mixing') await sealBatch(this.#ctx, { draftId: id })
-      await closeBatch(this.#ctx, id, { leftoverG: null, at: null })
+      // Nobody sprayed it while the demo stood still: it was emptied when its life was up, or after its last shot.
+      const at = [endsAt, ...guns.flatMap((gun) => [gun.firstSprayAt, gun.lastSprayAt])].flatMap((one) => one ?? []).sort().at(-1) ?? null
+      await closeBatch(this.#ctx, id, { leftoverG: null, at, sprayed: firstSprayAt !== null })
     }
     return pots.length
   }

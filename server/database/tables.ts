@@ -18,6 +18,7 @@ export const tables = {
     'batch_pours',
     'batches',
     'booth_cleanings',
+    'booth_extraction_changes',
     'events',
     'lot_movements',
     'mix_components',

@@ -34,6 +34,7 @@ export type Hearing = 'whole' | 'gone' | 'nothing'
  */
 export function hearingOf({ boothId }: Audience, event: Addressed): Hearing {
   if (boothId === null || event.boothId === null || event.boothId === boothId) return 'whole'
-  if (event.type === 'pot') return 'gone'
-  return event.type === 'timer' && (JSON.parse(event.payloadJson) as { kind?: string }).kind === 'pot-up' ? 'whole' : 'nothing'
+  const payload = (): { kind?: string; state?: string } | null => JSON.parse(event.payloadJson) as { kind?: string; state?: string } | null
+  if (event.type === 'pot') return payload()?.state === 'life-up' ? 'whole' : 'gone'
+  return event.type === 'timer' && payload()?.kind === 'pot-up' ? 'whole' : 'nothing'
 }

@@ -10,6 +10,8 @@ export interface NewApplication {
   face: 'front' | 'back' | 'both' | 'edges' | 'all' | null
   firstAt: number
   lastAt: number
+  /** Nobody noted the last spray. */
+  lastAssumed: boolean
   boothId: string | null
   gunId: string | null
   userId: string | null
@@ -25,7 +27,7 @@ export async function insertCoat(application: NewApplication, now: number, trx: 
   const { id, window } = application
   await trx('applications').insert({
     id, job_id: application.jobId, job_step_id: application.jobStepId, kind: 'coat', coat_number: application.coatNumber, face: application.face,
-    first_at: toInstant(application.firstAt), last_at: toInstant(application.lastAt), last_assumed: false, booth_id: application.boothId,
+    first_at: toInstant(application.firstAt), last_at: toInstant(application.lastAt), last_assumed: application.lastAssumed, booth_id: application.boothId,
     gun_id: application.gunId, user_id: application.userId, opens_at: instantOrNull(window?.opensAt), closing_at: instantOrNull(window?.closingAt),
     closes_at: instantOrNull(window?.closesAt), details: JSON.stringify(application.details), created_at: toInstant(now),
   })

@@ -118,7 +118,7 @@ export async function lockCurrent(id: string, trx: Knex.Transaction): Promise<Cu
 export interface CurrentChange {
   state?: BatchState
   firstSprayAt?: number
-  lastSprayAt?: number
+  lastSprayAt?: number | null
   closedAt?: number
   leftoverG?: string | null
   leftoverWeighed?: boolean
@@ -130,7 +130,7 @@ export async function updateCurrent(id: string, change: CurrentChange, now: numb
   const columns: Record<string, unknown> = { version: trx.raw('version + 1'), updated_at: toInstant(now) }
   if (change.state !== undefined) columns.state = change.state
   if (change.firstSprayAt !== undefined) columns.first_spray_at = toInstant(change.firstSprayAt)
-  if (change.lastSprayAt !== undefined) columns.last_spray_at = toInstant(change.lastSprayAt)
+  if (change.lastSprayAt !== undefined) columns.last_spray_at = instantOrNull(change.lastSprayAt)
   if (change.closedAt !== undefined) columns.closed_at = toInstant(change.closedAt)
   if (change.leftoverG !== undefined) columns.leftover_g = change.leftoverG
   if (change.leftoverWeighed !== undefined) columns.leftover_weighed = change.leftoverWeighed

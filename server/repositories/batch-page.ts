@@ -247,6 +247,8 @@ interface ApplicationRow {
   id: string
   first_at: Date
   last_at: Date
+  last_assumed: number
+  details: string
   opens_at: Date | null
   closing_at: Date | null
   closes_at: Date | null
@@ -254,11 +256,13 @@ interface ApplicationRow {
 
 async function readApplications(id: string, db: Db): Promise<Batch['applications']> {
   const rows = await db('application_batches as l').join('applications as a', 'a.id', 'l.application_id').where('l.batch_id', id).orderBy(['a.first_at', 'a.id'])
-    .select<ApplicationRow[]>('a.id', 'a.first_at', 'a.last_at', 'a.opens_at', 'a.closing_at', 'a.closes_at')
+    .select<ApplicationRow[]>('a.id', 'a.first_at', 'a.last_at', 'a.last_assumed', 'a.details', 'a.opens_at', 'a.closing_at', 'a.closes_at')
   return rows.map((row) => ({
     id: row.id,
     firstAt: isoOf(row.first_at),
     lastAt: isoOf(row.last_at),
+    firstAssumed: (JSON.parse(row.details) as { firstAssumed?: boolean }).firstAssumed === true,
+    lastAssumed: row.last_assumed === 1,
     opensAt: isoOrNull(row.opens_at),
     closingAt: isoOrNull(row.closing_at),
     closesAt: isoOrNull(row.closes_at),

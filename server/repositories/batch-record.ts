@@ -25,6 +25,7 @@ export type RecordComponent = Pick<BatchComponent, 'index' | 'role' | 'materialI
 export interface RecordEvent {
   kind: Batch['events'][number]['kind']
   at: number
+  gunId: string | null
   details: Record<string, unknown>
 }
 
@@ -196,8 +197,8 @@ async function readPours(id: string, db: Db): Promise<RecordPour[]> {
 
 async function readEvents(id: string, db: Db): Promise<RecordEvent[]> {
   const rows = await db('batch_events').where({ batch_id: id }).orderBy(['created_at', 'at', 'id'])
-    .select<{ kind: RecordEvent['kind']; at: Date; details: string }[]>('kind', 'at', 'details')
-  return rows.map(({ kind, at, details }) => ({ kind, at: at.getTime(), details: JSON.parse(details) as Record<string, unknown> }))
+    .select<{ kind: RecordEvent['kind']; at: Date; gun_id: string | null; details: string }[]>('kind', 'at', 'gun_id', 'details')
+  return rows.map(({ kind, at, gun_id: gunId, details }) => ({ kind, at: at.getTime(), gunId, details: JSON.parse(details) as Record<string, unknown> }))
 }
 
 async function readAmendments(id: string, db: Db): Promise<RecordAmendment[]> {

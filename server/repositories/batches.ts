@@ -94,7 +94,7 @@ export async function insertBatch(
 /** What happened to a batch after it was made. */
 export interface EventRecord {
   batchId: string
-  kind: 'first-spray' | 'last-spray' | 'emptied' | 'review-settled' | 'note'
+  kind: 'first-spray' | 'last-spray' | 'emptied' | 'review-settled' | 'note' | 'gun-flushed'
   at: Date
   userId: string | null
   deviceId: string | null

@@ -3,8 +3,14 @@ import { msOrNull, toInstant } from '../utils/rows'
 
 type Db = Knex | Knex.Transaction
 
-/** A pot whose life is up is called out again after this long, until somebody acknowledges. */
+/**
+ * A pot whose life is up is called out again until somebody acknowledges: first after this long, then each time after
+ * as long again as it has been ringing. A pot forgotten over a weekend makes a dozen entries, not thousands.
+ */
 const announceAgainMs = 60_000
+
+/** The instant of the next call, in SQL. */
+const nextCall = `DATE_ADD(announced_at, INTERVAL GREATEST(${announceAgainMs * 1000}, TIMESTAMPDIFF(MICROSECOND, fired_at, announced_at)) MICROSECOND)`
 
 /** `fire`: its instant has come. `announce`: nobody answered. `unmute`: the quiet is over and the pot still stands. */
 type DueAction = 'fire' | 'announce' | 'unmute'
@@ -36,18 +42,17 @@ function dueBy(action: DueAction, now: number, db: Db): Knex.QueryBuilder {
   const timers = db('timers')
   if (action === 'fire') return timers.where('state', 'waiting').where('due_at', '<=', at)
   if (action === 'unmute') return timers.where({ state: 'acknowledged', kind: 'pot-up' }).where('silenced_until', '<=', at)
-  return timers.where({ state: 'fired', kind: 'pot-up' }).where('announced_at', '<=', toInstant(now - announceAgainMs))
+  return timers.where({ state: 'fired', kind: 'pot-up' }).whereRaw(`${nextCall} <= ?`, [at])
 }
 
 /** The next instant at which anything will be due, epoch milliseconds, or null when nothing waits. */
 export async function nextDue(db: Db): Promise<number | null> {
   const [fire, announce, unmute] = await Promise.all([
     db('timers').where('state', 'waiting').min<{ at: Date | null }[]>('due_at as at').first(),
-    db('timers').where({ state: 'fired', kind: 'pot-up' }).min<{ at: Date | null }[]>('announced_at as at').first(),
+    db('timers').where({ state: 'fired', kind: 'pot-up' }).select<{ at: Date | null }[]>(db.raw(`MIN(${nextCall}) AS at`)).first(),
     db('timers').where({ state: 'acknowledged', kind: 'pot-up' }).min<{ at: Date | null }[]>('silenced_until as at').first(),
   ])
-  const announced = msOrNull(announce?.at ?? null)
-  const instants = [msOrNull(fire?.at ?? null), announced === null ? null : announced + announceAgainMs, msOrNull(unmute?.at ?? null)]
+  const instants = [fire, announce, unmute].map((row) => msOrNull(row?.at ?? null))
   const known = instants.filter((instant) => instant !== null)
   return known.length > 0 ? Math.min(...known) : null
 }

@@ -1,7 +1,7 @@
 import type { Knex } from 'knex'
 import type { Job, JobBatch, JobItem, JobListQuery, JobPiece, JobStep } from '#shared/schemas/jobs'
 import type { Faces } from '#shared/schemas/schedules'
-import { decimalOf, decimalOrNull, isoOf, msOrNull } from '../utils/rows'
+import { decimalOf, decimalOrNull, isoOf, msOrNull, toInstant } from '../utils/rows'
 import { whereContains } from './search'
 
 type Db = Knex | Knex.Transaction
@@ -217,4 +217,9 @@ export async function listJobBatches(jobId: string, limit: number, db: Db): Prom
     id: row.id, code: row.code, jobStepId: row.job_step_id, mixedAt: isoOf(row.mixed_at), pouredTotalG: decimalOf(row.poured_total_g),
     state: row.state, mixedByName: row.mixed_by_name,
   }))
+}
+
+/** A planned job runs from its first coat on. */
+export async function startJob(id: string, now: number, trx: Knex.Transaction): Promise<void> {
+  await trx('jobs').where({ id, state: 'planned' }).update({ state: 'running', updated_at: toInstant(now), version: trx.raw('version + 1') })
 }

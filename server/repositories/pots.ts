@@ -1,7 +1,10 @@
 import type { Knex } from 'knex'
 import type { LivePot } from '#shared/schemas/live'
 import { D, sum } from '#shared/engine/decimal'
+import { minutesToMs, toIso } from '#shared/utils/instant'
+import { gunSprays, sprayedSpan } from '#shared/utils/pot-sprays'
 import { decimalOf, decimalOrNull, isoOf, isoOrNull, toInstant } from '../utils/rows'
+import { listSprays, type SprayEvent } from './sprays'
 
 type Db = Knex | Knex.Transaction
 
@@ -15,6 +18,7 @@ interface CommonRow {
   gun_name: string | null
   mix_name: string
   mix_code: string
+  job_id: string | null
   job_code: string | null
   job_title: string | null
   step_title: string | null
@@ -37,8 +41,7 @@ interface SealedRow extends CommonRow {
   mixed_at: Date
   late_at: Date | null
   ends_at: Date | null
-  first_spray_at: Date | null
-  last_spray_at: Date | null
+  induction_min: string
   poured_total_g: string
   leftover_g: string | null
 }
@@ -50,11 +53,9 @@ interface DraftRow extends CommonRow {
   late_due_at: Date | null
   late_state: string | null
   reactive_parts: number | string
-  first_spray_at: Date | null
-  last_spray_at: Date | null
 }
 
-/** Pots of one batch, of one booth (those of no booth included), or all. */
+/** Pots of one batch, of one booth (those of no booth and those anywhere whose life is up included), or all. */
 export interface PotFilter {
   batchId?: string
   boothId?: string | null
@@ -78,7 +79,7 @@ function names(query: Knex.QueryBuilder, alias: 'b' | 'd', db: Db): Knex.QueryBu
     .leftJoin('timers as t', (on) => void on.on('t.subject_id', `${alias}.id`).andOnVal('t.subject_type', 'batch').andOnVal('t.kind', 'pot-up'))
     .select(
       `${alias}.id`, `${alias}.code`, `${alias}.pot_number`, `${alias}.pot_count`, 'm.name as mix_name', 'm.code as mix_code',
-      'u.name as mixed_by_name', 'j.code as job_code', 'j.title as job_title', 'ss.title as step_title',
+      'u.name as mixed_by_name', 'j.id as job_id', 'j.code as job_code', 'j.title as job_title', 'ss.title as step_title',
       't.id as timer_id', 't.state as timer_state', 't.due_at as timer_due_at', 't.silenced_until', 't.silenced_by',
       db.raw(`${ofRevision('ma.chemistry', 'ORDER BY mc.role = \'base\' DESC, mc.position LIMIT 1')} AS chemistry`),
       db.raw(`${ofRevision('MAX(ma.contains_isocyanates)', '')} AS isocyanates`),
@@ -87,7 +88,7 @@ function names(query: Knex.QueryBuilder, alias: 'b' | 'd', db: Db): Knex.QueryBu
 
 /** The gun that was loaded last from this pot, else the one that was planned. */
 const gunOf = (alias: 'b' | 'd') =>
-  `COALESCE((SELECT e.gun_id FROM batch_events e WHERE e.batch_id = ${alias}.id AND e.gun_id IS NOT NULL ORDER BY e.at DESC, e.id DESC LIMIT 1), ${alias}.gun_id)`
+  `COALESCE((SELECT e.gun_id FROM batch_events e WHERE e.batch_id = ${alias}.id AND e.gun_id IS NOT NULL AND e.kind = 'first-spray' ORDER BY e.at DESC, e.created_at DESC, e.id DESC LIMIT 1), ${alias}.gun_id)`
 
 async function sealedPots(filter: PotFilter, db: Db): Promise<LivePot[]> {
   const query = names(db('batches as b'), 'b', db)
@@ -96,11 +97,11 @@ async function sealedPots(filter: PotFilter, db: Db): Promise<LivePot[]> {
     .leftJoin('guns as g', 'g.id', db.raw(gunOf('b')))
     .select(
       'c.purpose', 'c.booth_id', 'bo.name as booth_name', 'g.id as gun_id', 'g.name as gun_name', 'c.state', 'c.mixed_at',
-      'c.reactive_at', 'c.late_at', 'c.ends_at', 'c.first_spray_at', 'c.last_spray_at', 'c.poured_total_g', 'c.leftover_g',
+      'c.reactive_at', 'c.late_at', 'c.ends_at', 'r.induction_min', 'c.poured_total_g', 'c.leftover_g',
     )
   const { batchId, boothId, liveAt } = filter
   if (batchId) void query.where('b.id', batchId)
-  if (boothId) void query.where((part) => part.where('c.booth_id', boothId).orWhereNull('c.booth_id'))
+  if (boothId) void query.where((part) => part.where('c.booth_id', boothId).orWhereNull('c.booth_id').orWhere('c.state', 'life-up'))
   if (liveAt !== undefined) {
     void query.where((part) =>
       part
@@ -109,11 +110,11 @@ async function sealedPots(filter: PotFilter, db: Db): Promise<LivePot[]> {
     )
   }
   const rows = (await query) as SealedRow[]
-  return rows.map(toSealedPot)
+  const shots = await listSprays(rows.map(({ id }) => id), db)
+  return rows.map((row) => toSealedPot(row, shots.filter((shot) => shot.batchId === row.id)))
 }
 
 async function draftPots(filter: PotFilter, db: Db): Promise<LivePot[]> {
-  const spray = (kind: string, pick: 'MIN' | 'MAX') => `(SELECT ${pick}(e.at) FROM batch_events e WHERE e.batch_id = d.id AND e.kind = '${kind}')`
   const query = names(db('batch_drafts as d'), 'd', db)
     .leftJoin('booths as bo', 'bo.id', 'd.booth_id')
     .leftJoin('guns as g', 'g.id', db.raw(gunOf('d')))
@@ -122,12 +123,10 @@ async function draftPots(filter: PotFilter, db: Db): Promise<LivePot[]> {
       'd.state as draft_state', 'd.body', 'd.created_at', 'd.reactive_at', 'd.booth_id', 'bo.name as booth_name', 'g.id as gun_id', 'g.name as gun_name',
       'l.due_at as late_due_at', 'l.state as late_state',
       db.raw('(SELECT COUNT(*) FROM mix_components mc WHERE mc.mix_revision_id = d.mix_revision_id AND mc.reactive = 1) AS reactive_parts'),
-      db.raw(`${spray('first-spray', 'MIN')} AS first_spray_at`),
-      db.raw(`${spray('last-spray', 'MAX')} AS last_spray_at`),
     )
   const { batchId, boothId, liveAt } = filter
   if (batchId) void query.where('d.id', batchId)
-  if (boothId) void query.where((part) => part.where('d.booth_id', boothId).orWhereNull('d.booth_id'))
+  if (boothId) void query.where((part) => part.where('d.booth_id', boothId).orWhereNull('d.booth_id').orWhereIn('t.state', ['fired', 'acknowledged']))
   if (liveAt !== undefined) {
     void query.where('d.state', 'open').where((part) => part.whereNotNull('d.reactive_at').orWhere('d.updated_at', '>', toInstant(liveAt - dayMs)))
   }
@@ -148,6 +147,7 @@ function common(row: CommonRow, state: LivePot['state']) {
     gunName: row.gun_name,
     mixName: row.mix_name,
     mixCode: row.mix_code,
+    jobId: row.job_id,
     jobCode: row.job_code,
     jobTitle: row.job_title,
     stepTitle: row.step_title,
@@ -164,7 +164,28 @@ function common(row: CommonRow, state: LivePot['state']) {
   } satisfies Partial<LivePot>
 }
 
-function toSealedPot(row: SealedRow): LivePot {
+const instantOrNull = (ms: number | null) => (ms === null ? null : toIso(ms))
+
+/** What the guns did with the pot, and its first and last shot of all. */
+function sprayFacts(shots: readonly SprayEvent[]): Pick<LivePot, 'guns' | 'firstSprayAt' | 'lastSprayAt'> {
+  const guns = gunSprays(shots)
+  const { firstAt, lastAt } = sprayedSpan(guns)
+  return {
+    firstSprayAt: instantOrNull(firstAt),
+    lastSprayAt: instantOrNull(lastAt),
+    guns: guns.map(({ gunId, gunName, ...gun }) => ({
+      gunId, gunName, firstSprayAt: instantOrNull(gun.firstAt), lastSprayAt: instantOrNull(gun.lastAt), flushedAt: instantOrNull(gun.flushedAt),
+    })),
+  }
+}
+
+/** When a pot has stood as long as its sheet asks; null where it asks for nothing. */
+export function standsUntil(mixedAt: number, inductionMin: string): number | null {
+  const ms = minutesToMs(inductionMin, 'up')
+  return ms === 0 ? null : mixedAt + ms
+}
+
+function toSealedPot(row: SealedRow, shots: readonly SprayEvent[]): LivePot {
   return {
     ...common(row, row.state),
     stage: 'sealed',
@@ -173,8 +194,8 @@ function toSealedPot(row: SealedRow): LivePot {
     mixedAt: isoOf(row.mixed_at),
     lateAt: isoOrNull(row.late_at),
     endsAt: isoOrNull(row.ends_at),
-    firstSprayAt: isoOrNull(row.first_spray_at),
-    lastSprayAt: isoOrNull(row.last_spray_at),
+    standsUntil: instantOrNull(standsUntil(row.mixed_at.getTime(), row.induction_min)),
+    ...sprayFacts(shots),
     leftoverG: decimalOrNull(row.leftover_g),
   }
 }
@@ -196,8 +217,8 @@ function toDraftPot(row: DraftRow): LivePot {
     mixedAt: isoOf(row.created_at),
     lateAt: row.reactive_at ? isoOrNull(row.late_due_at) : null,
     endsAt: row.reactive_at ? isoOrNull(row.timer_due_at) : null,
-    firstSprayAt: isoOrNull(row.first_spray_at),
-    lastSprayAt: isoOrNull(row.last_spray_at),
+    standsUntil: null,
+    ...sprayFacts([]),
     leftoverG: null,
   }
 }

@@ -178,7 +178,7 @@ export async function listAlarms(boothId: string | null, db: Db): Promise<Timer[
     .where((part) =>
       part
         .where((pot) => pot.where('t.kind', 'pot-up').whereIn('t.state', ['fired', 'acknowledged']))
-        .orWhere((other) => other.whereIn('t.kind', ['window-closes', 'clearance', 'dry-sand', 'dry-stack', 'dry-pack', 'free']).where('t.state', 'fired')),
+        .orWhere((other) => other.whereIn('t.kind', ['window-closes', 'dry-sand', 'dry-stack', 'dry-pack', 'free']).where('t.state', 'fired')),
     )
     .orderBy(['t.due_at', 't.id'])
   if (boothId) void query.where((part) => part.where('t.kind', 'pot-up').orWhere('t.booth_id', boothId).orWhereNull('t.booth_id'))

@@ -19,6 +19,8 @@ interface WindowRow {
   opens_at: Date
   closing_at: Date | null
   closes_at: Date | null
+  last_assumed: number
+  details: string
 }
 
 export interface WindowFilter {
@@ -51,6 +53,7 @@ export async function findWindows(filter: WindowFilter, db: Db): Promise<OpenWin
     .select<WindowRow[]>(
       'a.id', 'a.job_id', 'j.code as job_code', 'j.title as job_title', 'a.job_step_id', 'ss.title as step_title', 'js.position as step_position',
       'a.booth_id', 'b.name as booth_name', 'a.first_at', 'a.last_at', 'a.opens_at', 'a.closing_at', 'a.closes_at',
+      'a.last_assumed', 'a.details',
     )
   if (applicationId) void query.where('a.id', applicationId)
   if (boothId) void query.where((part) => part.where('a.booth_id', boothId).orWhereNull('a.booth_id'))
@@ -108,5 +111,7 @@ function toWindow(row: WindowRow, pieces: PieceRow[]): OpenWindow {
     opensAt: isoOf(row.opens_at),
     closingAt: isoOrNull(row.closing_at),
     closesAt: isoOrNull(row.closes_at),
+    assumed: row.last_assumed === 1 || (JSON.parse(row.details) as { firstAssumed?: boolean }).firstAssumed === true,
+    unended: null,
   }
 }

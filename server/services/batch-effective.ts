@@ -4,6 +4,7 @@ import { potState } from '#shared/engine/pot-state'
 import { pourFieldOf } from '#shared/schemas/amendments'
 import { reviewCodes, type ReviewCode } from '#shared/schemas/batches'
 import type { DraftBody } from '#shared/schemas/drafts'
+import { gunSprays, sprayedSpan } from '#shared/utils/pot-sprays'
 import type { EffectiveCurrent } from '../repositories/batch-current'
 import type { BatchOnRecord, EffectiveFacts, RecordComponent, RecordPour } from '../repositories/batch-record'
 import { judgeBatch, mixInputOf, potTimesOf } from './batch-sums'
@@ -63,14 +64,15 @@ export function effectiveOf(record: BatchOnRecord, now: number): EffectiveBatch 
 
 /** Every field as the record and its events have it. */
 function recordedValues(record: BatchOnRecord): Map<string, string | null> {
-  const at = (kind: string) => record.events.filter((event) => event.kind === kind).map((event) => event.at)
-  const [first, last, emptied] = [at('first-spray'), at('last-spray'), record.events.find(({ kind }) => kind === 'emptied')]
+  const shots = record.events.flatMap(({ kind, at, gunId }) => (kind === 'first-spray' || kind === 'last-spray' ? [{ kind, at, gunId, gunName: null }] : []))
+  const { firstAt, lastAt } = sprayedSpan(gunSprays(shots))
+  const emptied = record.events.find(({ kind }) => kind === 'emptied')
   const stoppedAt = record.snapshot.stopped && Math.min(Date.parse(record.snapshot.stopped.at), record.sealedAt)
   const leftover = emptied?.details.leftoverG
   const values = new Map<string, string | null>([
     ['reactiveAt', iso(record.reactiveAt)],
-    ['firstSprayAt', iso(first.length > 0 ? Math.min(...first) : null)],
-    ['lastSprayAt', iso(last.length > 0 ? Math.max(...last) : null)],
+    ['firstSprayAt', iso(firstAt)],
+    ['lastSprayAt', iso(lastAt)],
     ['closedAt', iso(emptied?.at ?? stoppedAt)],
     ['leftoverG', typeof leftover === 'string' ? print(new D(leftover)) : null],
     ['gunId', record.gunId], ['boothId', record.boothId], ['mixedByUserId', record.mixedByUserId], ['purpose', record.purpose],

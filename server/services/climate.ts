@@ -2,6 +2,7 @@ import type { Knex } from 'knex'
 import { calculateDewPoint } from '#shared/engine/climate'
 import { D } from '#shared/engine/decimal'
 import type { ClimateCreateBody, ClimateList, ClimateListQuery, ClimateReading } from '#shared/schemas/climate'
+import { climateWord } from '#shared/utils/climate-limits'
 import { toMs } from '#shared/utils/instant'
 import { audienceOf } from '../live/audience'
 import { insertReading, latestReadings, listReadings, type StoredReading } from '../repositories/climate'
@@ -21,7 +22,12 @@ const dewPointOf = ({ airC, rhPct, surfaceC }: Pick<StoredReading, 'airC' | 'rhP
 
 function describe(reading: StoredReading): ClimateReading {
   const { marginC, ok } = dewPointOf(reading)
-  return { ...reading, marginC, ok }
+  return {
+    ...reading, marginC, ok,
+    airWord: climateWord('temperature', reading.airC),
+    surfaceWord: reading.surfaceC === null ? null : climateWord('temperature', reading.surfaceC),
+    rhWord: climateWord('humidity', reading.rhPct),
+  }
 }
 
 /**

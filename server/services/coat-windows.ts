@@ -9,6 +9,9 @@ type WindowPurpose = 'coat-interval' | 'overcoat' | 'sand'
 export interface CoatWindow {
   purpose: WindowPurpose
   window: OvercoatWindow
+  /** The schedule's times that it follows from, milliseconds; `maxMs` null: it never closes. */
+  minMs: number
+  maxMs: number | null
 }
 
 type StepTimes = Pick<JobStep, 'coats' | 'coatIntervalMinMin' | 'coatIntervalMaxMin' | 'overcoatFromMin' | 'overcoatUntilMin' | 'sandFromMin' | 'sandUntilMin'>
@@ -24,8 +27,8 @@ export function windowAfter(step: StepTimes, coatNumber: number, firstSprayedAt:
   const next = nextTimes(step, coatNumber)
   if (next === null) return null
   const { purpose, min, max } = next
-  const window = overcoatWindow({ firstSprayedAt, lastSprayedAt, minMs: minutesMs(min), maxMs: max === null ? null : minutesMs(max) })
-  return { purpose, window }
+  const [minMs, maxMs] = [minutesMs(min), max === null ? null : minutesMs(max)]
+  return { purpose, window: overcoatWindow({ firstSprayedAt, lastSprayedAt, minMs, maxMs }), minMs, maxMs }
 }
 
 function nextTimes(step: StepTimes, coatNumber: number): { purpose: WindowPurpose; min: string; max: string | null } | null {

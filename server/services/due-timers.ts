@@ -5,6 +5,7 @@ import { getTimer, updateTimer } from '../repositories/timers'
 import { findWindows } from '../repositories/windows'
 import type { Context } from '../utils/context'
 import { mutate, type Mutation } from '../utils/transactions'
+import { publishBooth } from './booth-view'
 import { publishPot } from './pot-view'
 import { publishTimer } from './timers'
 import { publishWindow } from './windows'
@@ -49,6 +50,7 @@ async function fire(m: Mutation, timer: Timer): Promise<void> {
   await publishTimer(m, timer.id)
   if (timer.subjectType === 'batch') await publishPot(m, timer.subjectId)
   if (timer.subjectType === 'application') await publishWindow(m, timer.subjectId, timer.boothId)
+  if (timer.subjectType === 'booth') await publishBooth(m, timer.subjectId)
 }
 
 /** False when what the timer was set for has ended without it having been told. */

@@ -18,6 +18,7 @@ import { pageOf, readCursor, type Page } from './paging'
 import { pieceAreaWorking } from './piece-area'
 import { describeSteps } from './schedules'
 import { shopDay } from './shop'
+import { unendedWindows } from './unended-coats'
 import { toLiveWindow } from './windows'
 
 const mostBatches = 50
@@ -49,9 +50,9 @@ export async function jobById(ctx: Context, id: string): Promise<Job> {
   const job = await findJob(id, ctx.db)
   if (!job) throw notFound('The job')
   const { now, today } = await shopDay(ctx)
-  const [stored, bare, applications, windows, batchCount, batches, storedSteps] = await Promise.all([
+  const [stored, bare, applications, ended, unended, batchCount, batches, storedSteps] = await Promise.all([
     listPieces(id, ctx.db), listJobSteps(id, ctx.db), listApplications(id, ctx.db), findWindows({ jobIds: [id] }, ctx.db),
-    countJobBatches(id, ctx.db), listJobBatches(id, mostBatches, ctx.db), listSteps(job.scheduleRevisionId, ctx.db),
+    unendedWindows({ jobIds: [id] }, now, ctx.db), countJobBatches(id, ctx.db), listJobBatches(id, mostBatches, ctx.db), listSteps(job.scheduleRevisionId, ctx.db),
   ])
   const scheduled = new Map((await describeSteps(ctx, storedSteps)).map(step => [step.id, step]))
   const steps = bare.flatMap((step) => {
@@ -66,7 +67,7 @@ export async function jobById(ctx: Context, id: string): Promise<Job> {
     pieces,
     areaWorking: [line('area of the job', stored.map(piece => piece.areaM2).join(' + ') || '0', new D(job.areaM2), 'm²')],
     steps: steps.map(({ bare: step, asked }, place) => describeStep(step, asked, place, pieces, applications)),
-    windows: windows.map(window => ({ ...toLiveWindow(window, now), ...whereabouts(window.pieceIds, stored) })),
+    windows: [...ended, ...unended].map(window => ({ ...toLiveWindow(window, now), ...whereabouts(window.pieceIds, stored) })),
     ...needs,
     batchCount,
     batches,

@@ -1,21 +1,16 @@
-import type { LiveBooth, LiveSnapshot } from '#shared/schemas/live'
+import type { LiveSnapshot } from '#shared/schemas/live'
 import type { TimerList, TimerListQuery } from '#shared/schemas/timers'
-import type { Knex } from 'knex'
 import { toMs } from '#shared/utils/instant'
 import { audienceOf } from '../live/audience'
 import { readHead } from '../repositories/events'
 import { findPots } from '../repositories/pots'
-import { listBooths } from '../repositories/shop'
 import { readConsistent } from '../repositories/snapshot'
 import { listAlarms, listTimers } from '../repositories/timers'
 import type { Context } from '../utils/context'
 import { decodeCursor, encodeCursor } from '../utils/keyset'
 import { isoOf, toInstant } from '../utils/rows'
-import { latestClimate } from './climate'
+import { liveBooths } from './booth-view'
 import { windowsAt } from './windows'
-
-/** A shop has a handful of booths; no list of them is longer. */
-const mostBooths = 200
 
 /**
  * Everything that runs in one booth or the shop, as it stood when event `lastSeq` had been committed: a stream from
@@ -35,17 +30,9 @@ export function readLive(ctx: Context, wanted: string | undefined): Promise<Live
       pots: await findPots({ boothId, liveAt: now }, trx),
       windows: await windowsAt({ boothId }, now, trx),
       alarms: await listAlarms(boothId, trx),
-      booths: await liveBooths(boothId, trx),
+      booths: await liveBooths(boothId, now, trx),
     }
   })
-}
-
-async function liveBooths(boothId: string | null, trx: Knex.Transaction): Promise<LiveBooth[]> {
-  const booths = await listBooths({ inactive: false, after: null, limit: mostBooths }, trx)
-  const climate = await latestClimate(trx)
-  return booths
-    .filter(({ id }) => boothId === null || id === boothId)
-    .map(({ id, name, clearanceMin, extraction }) => ({ id, name, clearanceMin, extraction, climate: climate.get(id) ?? null }))
 }
 
 const running = ['waiting', 'fired', 'acknowledged'] as const

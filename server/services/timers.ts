@@ -1,5 +1,6 @@
 import type { Timer, TimerCreateBody, TimerExtendBody, TimerSilenceBody } from '#shared/schemas/timers'
 import { findTimerOf, getTimer, lockTimer, lockTimersOf, setTimer, timedApplicationsUnder, updateTimer, type TimerChange } from '../repositories/timers'
+import { activeName } from '../repositories/people'
 import { findWindows } from '../repositories/windows'
 import type { Context, Principal } from '../utils/context'
 import { userIdOf } from '../utils/context'
@@ -127,12 +128,12 @@ interface Step {
 }
 
 /** Locks the timer, asks what becomes of it, writes, audits and tells the screens. */
-function changeTimer(ctx: Context, id: string, decide: (timer: Timer, now: number) => Step): Promise<Timer> {
+function changeTimer(ctx: Context, id: string, decide: (timer: Timer, now: number, trx: Mutation['trx']) => Step | Promise<Step>): Promise<Timer> {
   return mutate(ctx, async (m) => {
     const timer = await lockTimer(id, m.trx)
     if (!timer) throw notFound('The timer')
     requireSameBooth(ctx.principal, timer)
-    const { action, facts, change } = decide(timer, m.now)
+    const { action, facts, change } = await decide(timer, m.now, m.trx)
     await updateTimer(id, change, m.now, m.trx)
     m.audit({ action, subject: `timer:${id}`, facts: { kind: timer.kind, about: `${timer.subjectType}:${timer.subjectId}`, before: timer.state, ...facts } })
     const changed = await publishTimer(m, id)
@@ -148,18 +149,31 @@ function requireFired(timer: Timer): void {
 }
 
 /**
+ * Who silences: the person who has signed in; on a screen where nobody has, the one who says so, or the screen itself.
+ *
+ * @throws Refusal 400 for somebody who does not work here, or for another person's name
+ */
+async function silencerName({ principal }: Context, byUserId: string | null, trx: Mutation['trx']): Promise<string> {
+  if (byUserId === null || byUserId === principal.user?.id) return answererName(principal)
+  if (principal.user) throw invalid([{ path: 'byUserId', message: 'You are signed in: it is silenced in your name.' }])
+  const name = await activeName(byUserId, trx)
+  if (name === null) throw invalid([{ path: 'byUserId', message: 'There is nobody of that name here.' }])
+  return name
+}
+
+/**
  * Ten minutes of quiet, given by a named person or by a booth's screen. It acknowledges too. A pot that is still
  * not emptied sounds again afterwards.
  *
- * @throws Refusal 404, 403 from another booth's screen, 422 `timer-not-fired` or `timer-ended`
+ * @throws Refusal 404, 403 from another booth's screen, 422 `timer-not-fired` or `timer-ended`, 400 for an unknown person
  */
 export function silenceTimer(ctx: Context, id: string, body: TimerSilenceBody): Promise<Timer> {
-  return changeTimer(ctx, id, (timer, now) => {
+  return changeTimer(ctx, id, async (timer, now, trx) => {
     requireFired(timer)
-    const by = answererName(ctx.principal)
+    const by = await silencerName(ctx, body.byUserId ?? null, trx)
     const until = now + silenceMs
     const change = { state: 'acknowledged', acknowledgedAt: now, acknowledgedBy: by, silencedUntil: until, silencedBy: by } as const
-    return { action: 'timer.silenced', facts: { until, reason: body.reason }, change }
+    return { action: 'timer.silenced', facts: { until, reason: body.reason, byUserId: body.byUserId ?? userIdOf(ctx.principal) }, change }
   })
 }
 

@@ -4,10 +4,11 @@ import type { LiveWindow } from '#shared/schemas/live'
 import { toMs } from '#shared/utils/instant'
 import { findWindows, type OpenWindow, type WindowFilter } from '../repositories/windows'
 import type { Mutation } from '../utils/transactions'
+import { unendedWindows } from './unended-coats'
 
-/** Windows that still count, as they stand at `now` (epoch milliseconds). */
-export async function windowsAt(filter: WindowFilter, now: number, db: Knex | Knex.Transaction): Promise<LiveWindow[]> {
-  const windows = await findWindows(filter, db)
+/** Windows that still count, as they stand at `now` (epoch milliseconds): of coats that are done, then of those being sprayed. */
+export async function windowsAt(filter: Omit<WindowFilter, 'applicationId'>, now: number, db: Knex | Knex.Transaction): Promise<LiveWindow[]> {
+  const windows = [...(await findWindows(filter, db)), ...(await unendedWindows(filter, now, db))]
   return windows.map((window) => toLiveWindow(window, now))
 }
 
@@ -27,6 +28,12 @@ export function stateOf(window: Pick<OpenWindow, 'opensAt' | 'closingAt' | 'clos
 
 /** Tells the screens what the window is now; one that has ended is told as null. */
 export async function publishWindow(m: Mutation, applicationId: string, boothId: string | null): Promise<void> {
-  const [window] = await windowsAt({ applicationId }, m.now, m.trx)
-  m.publish({ type: 'window', subject: `application:${applicationId}`, boothId, payload: window ?? null })
+  const [window] = await findWindows({ applicationId }, m.trx)
+  m.publish({ type: 'window', subject: `application:${applicationId}`, boothId, payload: window ? toLiveWindow(window, m.now) : null })
+}
+
+/** Tells the screens the window of a coat whose last spray was not noted; null once it was, or where there is none. */
+export async function publishUnended(m: Mutation, batchId: string, boothId: string | null): Promise<void> {
+  const [window] = await unendedWindows({ batchId }, m.now, m.trx)
+  m.publish({ type: 'window', subject: `batch:${batchId}`, boothId, payload: window ? toLiveWindow(window, m.now) : null })
 }

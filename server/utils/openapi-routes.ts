@@ -11,7 +11,7 @@ import { IdParams } from '#shared/schemas/common'
 import { Device, DeviceCreateBody, DeviceList, DeviceParams } from '#shared/schemas/devices'
 import { Draft, DraftBody, DraftDiscardBody, DraftList, DraftListQuery, DraftParams } from '#shared/schemas/drafts'
 import { Job, JobList, JobListQuery } from '#shared/schemas/jobs'
-import { EventsQuery, LiveQuery, LiveSnapshot, ServerTime } from '#shared/schemas/live'
+import { EventsQuery, LiveBooth, LiveQuery, LiveSnapshot, ServerTime } from '#shared/schemas/live'
 import { Lot, LotList, LotListQuery } from '#shared/schemas/lots'
 import { Material, MaterialList, MaterialListQuery } from '#shared/schemas/materials'
 import { Mix, MixList, MixListQuery } from '#shared/schemas/mixes'
@@ -19,7 +19,7 @@ import { NumberBlock, NumberBlockVoidBody } from '#shared/schemas/number-blocks'
 import { OpenApiDocument } from '#shared/schemas/openapi'
 import { Schedule, ScheduleList, ScheduleListQuery, ScheduleQuery } from '#shared/schemas/schedules'
 import { Approval, ApprovalBody, Session, SignInBody } from '#shared/schemas/session'
-import { BoothList, GunList, MixingCupList, ScaleList, ShopListQuery, UserList } from '#shared/schemas/shop'
+import { BoothExtractionBody, BoothList, GunList, MixingCupList, PeopleList, ScaleList, ShopListQuery, UserList } from '#shared/schemas/shop'
 import { Timer, TimerActionBody, TimerCreateBody, TimerExtendBody, TimerList, TimerListQuery, TimerSilenceBody } from '#shared/schemas/timers'
 import type { Action } from '#shared/utils/permissions'
 
@@ -82,7 +82,7 @@ export const apiRoutes: readonly ApiRoute[] = [
   get('/api/batches/facets', 'batches:search', 'What the log can be narrowed by', BatchFacets),
   get('/api/batches/export.csv', 'batches:search', 'The filtered log as a table', 'csv', { query: BatchExportQuery }),
   get('/api/batches/{id}', 'batches:read', 'A batch', Batch, { params: BatchParams }),
-  post('/api/batches/{id}/events', 'batches:event', 'First spray, last spray or a note', Batch, { params: BatchParams, body: BatchEventBody }),
+  post('/api/batches/{id}/events', 'batches:event', 'First or last spray of a gun, or the gun flushed', Batch, { params: BatchParams, body: BatchEventBody }),
   post('/api/batches/{id}/close', 'batches:close', 'A pot is emptied', Batch, { params: BatchParams, body: BatchCloseBody, status: 200 }),
   post('/api/batches/{id}/amendments', 'batches:amend', 'Puts one value right, with a reason', Batch, { params: BatchParams, body: AmendmentBody }),
   post('/api/batches/{id}/review', 'batches:review', 'A foreman settles what a batch was marked for', Batch, { params: BatchParams, body: BatchReviewBody }),
@@ -105,6 +105,8 @@ export const apiRoutes: readonly ApiRoute[] = [
   get('/api/booths', 'shop:read', 'Booths', BoothList, { query: ShopListQuery }),
   get('/api/booths/{id}/chemistry', 'shop:read', 'What was sprayed in a booth since it was clean', BoothChemistry, byId),
   post('/api/booths/{id}/clean', 'booths:clean', 'Records a booth, its duct and filters as clean', BoothChemistry, { ...byId, body: BoothCleanBody }),
+  post('/api/booths/{id}/extraction', 'booths:extraction', 'Whether the extraction of a booth runs', LiveBooth, { ...byId, body: BoothExtractionBody, status: 200 }),
+  get('/api/people', 'people:read', 'Names of the people of the shop', PeopleList),
   get('/api/guns', 'shop:read', 'Guns', GunList, { query: ShopListQuery }),
   get('/api/scales', 'shop:read', 'Scales', ScaleList, { query: ShopListQuery }),
   get('/api/mixing-cups', 'shop:read', 'Mixing cups', MixingCupList, { query: ShopListQuery }),

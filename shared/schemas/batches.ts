@@ -90,7 +90,7 @@ const named = {
   /** False: emptied, but the leftover was not weighed. Null: not emptied yet. */
   leftoverWeighed: z.nullable(z.boolean()),
   disposal: z.nullable(z.string()),
-  /** By the last spray: `in-time`, `late` (after the late limit) or `past-life`. Null: not sprayed, or no pot life. */
+  /** By the last spray: `in-time`, `late` (after the late limit) or `past-life`. Null: not noted, or no pot life. */
   used: z.nullable(z.enum(['in-time', 'late', 'past-life'])),
   worstDeviationPct: z.nullable(DecimalText),
   outOfTolerance: z.boolean(),
@@ -142,7 +142,7 @@ export const BatchComponent = z.strictObject({
 })
 export type BatchComponent = z.infer<typeof BatchComponent>
 
-const batchEventKinds = ['first-spray', 'last-spray', 'emptied', 'review-settled', 'note'] as const
+const batchEventKinds = ['first-spray', 'last-spray', 'emptied', 'review-settled', 'note', 'gun-flushed'] as const
 
 const BatchEvent = z.strictObject({
   id: Uuid,
@@ -216,6 +216,10 @@ export const Batch = z.strictObject({
     id: Uuid,
     firstAt: InstantText,
     lastAt: InstantText,
+    /** Nobody noted the first spray: the earliest that it can have been. */
+    firstAssumed: z.boolean(),
+    /** Nobody noted the last spray: the latest that it can have been. */
+    lastAssumed: z.boolean(),
     opensAt: z.nullable(InstantText),
     closingAt: z.nullable(InstantText),
     closesAt: z.nullable(InstantText),
@@ -244,18 +248,24 @@ export const BatchFacets = z.strictObject({
 })
 export type BatchFacets = z.infer<typeof BatchFacets>
 
-/** Body of `POST /api/batches/:id/events`. Without `at` it happened now. */
+/** Body of `POST /api/batches/:id/events`. Without `at` it happened now, without `gunId` by the gun that was planned. */
 export const BatchEventBody = z.strictObject({
-  kind: z.enum(['first-spray', 'last-spray']),
+  kind: z.enum(['first-spray', 'last-spray', 'gun-flushed']),
   gunId: z._default(z.nullable(Uuid), null),
   at: z._default(z.nullable(InstantText), null),
 })
 export type BatchEventBody = z.infer<typeof BatchEventBody>
 
-/** Body of `POST /api/batches/:id/close`. `leftoverG` null: there is some, but nobody weighed it. */
+/**
+ * Body of `POST /api/batches/:id/close`. `leftoverG` null: there is some, but nobody weighed it. `lastSprayAt` tells the
+ * last spray where it was not noted; left out, emptying is the latest that it can have been. `sprayed` false: not a gram
+ * of it was sprayed.
+ */
 export const BatchCloseBody = z.strictObject({
   leftoverG: z.nullable(GramsText),
   at: z._default(z.nullable(InstantText), null),
   disposal: z.optional(words(60)),
+  lastSprayAt: z.optional(z.nullable(InstantText)),
+  sprayed: z.optional(z.boolean()),
 })
 export type BatchCloseBody = z.infer<typeof BatchCloseBody>

@@ -23,6 +23,10 @@ export const ClimateReading = z.object({
   marginC: z.nullable(z.string()),
   /** False where condensation is to be feared; null where the surface was not measured. */
   ok: z.nullable(z.boolean()),
+  /** `cold`, `warm`, `dry` or `damp` where a value lies outside what is commonly sprayed in; null within. */
+  airWord: z.nullable(z.string()),
+  surfaceWord: z.nullable(z.string()),
+  rhWord: z.nullable(z.string()),
   source: z.enum(['typed', 'sensor']),
   userId: z.nullable(z.uuid()),
   at: z.string(),

@@ -7,6 +7,18 @@ import { Timer } from './timers'
 /** Instants are ISO 8601 UTC with milliseconds, quantities decimal strings, everywhere below. */
 const instant = z.nullable(z.string())
 
+/** What one gun did with a pot. */
+export const PotGun = z.object({
+  /** Null: nobody said which gun. */
+  gunId: z.nullable(z.uuid()),
+  gunName: z.nullable(z.string()),
+  firstSprayAt: instant,
+  lastSprayAt: instant,
+  /** When it was flushed after this pot. */
+  flushedAt: instant,
+})
+export type PotGun = z.infer<typeof PotGun>
+
 /** A batch while it lives: being mixed, or sealed and in a gun. */
 export const LivePot = z.object({
   id: z.uuid(),
@@ -19,6 +31,7 @@ export const LivePot = z.object({
   gunName: z.nullable(z.string()),
   mixName: z.string(),
   mixCode: z.string(),
+  jobId: z.nullable(z.uuid()),
   jobCode: z.nullable(z.string()),
   jobTitle: z.nullable(z.string()),
   stepTitle: z.nullable(z.string()),
@@ -31,8 +44,14 @@ export const LivePot = z.object({
   reactiveAt: instant,
   lateAt: instant,
   endsAt: instant,
+  /** By the data sheet it stands until then before it is sprayed; null where the sheet asks for no standing time. */
+  standsUntil: instant,
+  /** Of all guns the first. */
   firstSprayAt: instant,
+  /** Of all guns the last; null while one of them still sprays. */
   lastSprayAt: instant,
+  /** Every gun that was loaded from it, in the order of loading. */
+  guns: z.array(PotGun),
   containsIsocyanates: z.boolean(),
   /** Chemistry of the base. */
   chemistry: z.string(),
@@ -45,9 +64,12 @@ export const LivePot = z.object({
 })
 export type LivePot = z.infer<typeof LivePot>
 
+/** Where the last spray was not noted: the whole milliseconds from which the window follows. `maxMs` null: it never closes. */
+const unended = z.object({ minMs: z.number(), maxMs: z.nullable(z.number()) })
+
 /** When what was coated may be coated again. */
 export const LiveWindow = z.object({
-  /** Id of the application that started it. */
+  /** Id of the application that started it; of the batch while its last spray was not noted. */
   id: z.uuid(),
   jobId: z.uuid(),
   jobCode: z.string(),
@@ -65,8 +87,26 @@ export const LiveWindow = z.object({
   /** Null: it never closes. */
   closesAt: instant,
   state: z.enum(['too-early', 'open', 'closing', 'missed']),
+  /** A first or last spray behind it was not noted, so that it counts from the careful side. */
+  assumed: z.boolean(),
+  /** Not null while the last spray is not noted: it may be happening now, so that the opening moves on. */
+  unended: z.nullable(unended),
 })
 export type LiveWindow = z.infer<typeof LiveWindow>
+
+/**
+ * Why nobody enters a booth without air-fed mask. `spraying`: since the first shot of an isocyanate mix, whose last one
+ * was not noted. `counting`: until `clearAt`, with extraction running. `stopped`: the count rests and begins anew when
+ * the extraction runs.
+ */
+export const LiveClearance = z.object({
+  state: z.enum(['spraying', 'counting', 'stopped']),
+  /** First shot of what is being sprayed. */
+  since: instant,
+  lastShotAt: instant,
+  clearAt: instant,
+})
+export type LiveClearance = z.infer<typeof LiveClearance>
 
 /** A booth with what its instrument last said. */
 export const LiveBooth = z.object({
@@ -75,6 +115,10 @@ export const LiveBooth = z.object({
   clearanceMin: z.string(),
   extraction: z.enum(['running', 'off', 'unknown']),
   climate: z.nullable(ClimateReading),
+  /** Null: nobody needs a mask for isocyanates. */
+  clearance: z.nullable(LiveClearance),
+  /** Guns of this booth and of none: what a pot may be loaded into here. */
+  guns: z.array(z.object({ id: z.uuid(), name: z.string() })),
 })
 export type LiveBooth = z.infer<typeof LiveBooth>
 

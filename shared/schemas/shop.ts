@@ -1,6 +1,6 @@
 import * as z from 'zod/mini'
 import { pageOf, pageQuery } from './common'
-import { DateText, DecimalText, Flag, Uuid } from './fields'
+import { DateText, DecimalText, Flag, InstantText, Uuid } from './fields'
 import { roles } from '../types/roles'
 
 /** Lists of the shop's own things: all active ones, or with `inactive=true` those taken out of use. */
@@ -17,6 +17,12 @@ export const Booth = z.object({
   extraction: z.enum(['running', 'off', 'unknown']),
 })
 export type Booth = z.infer<typeof Booth>
+/** What a person sees of the booth's extraction, now or at an earlier instant. */
+export const BoothExtractionBody = z.strictObject({
+  state: z.enum(['running', 'off', 'unknown'], 'Say whether it runs.'),
+  at: z._default(z.nullable(InstantText), null),
+})
+export type BoothExtractionBody = z.infer<typeof BoothExtractionBody>
 export const BoothList = pageOf(Booth)
 export type BoothList = z.infer<typeof BoothList>
 
@@ -77,3 +83,7 @@ export const User = z.object({
 export type User = z.infer<typeof User>
 export const UserList = pageOf(User)
 export type UserList = z.infer<typeof UserList>
+
+/** Who may be asked for by name at a shared screen: active people, nothing but how they are called. */
+export const PeopleList = z.object({ items: z.array(z.object({ id: Uuid, name: z.string(), initials: z.string() })) })
+export type PeopleList = z.infer<typeof PeopleList>

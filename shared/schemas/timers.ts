@@ -22,7 +22,7 @@ export const Timer = z.object({
   dueAt: z.string(),
   state: z.enum(timerStates),
   firedAt: z.nullable(z.string()),
-  /** When it was last called out; moves on by a minute until somebody acknowledges. */
+  /** When it was last called out. It is again until somebody acknowledges, with pauses that grow with its age. */
   announcedAt: z.nullable(z.string()),
   silencedUntil: z.nullable(z.string()),
   silencedBy: z.nullable(z.string()),
@@ -59,8 +59,12 @@ export const TimerCreateBody = z.strictObject({
 })
 export type TimerCreateBody = z.infer<typeof TimerCreateBody>
 
-/** Ten minutes of quiet. A reason is welcome and not required. */
+/**
+ * Ten minutes of quiet. A reason is welcome and not required. `byUserId` names who stands before a screen on which
+ * nobody has signed in.
+ */
 export const TimerSilenceBody = z.strictObject({
+  byUserId: z.optional(z.nullable(Uuid)),
   reason: z._default(z.nullable(words(400)), null),
 })
 export type TimerSilenceBody = z.infer<typeof TimerSilenceBody>

@@ -35,6 +35,7 @@ export function applyEvent(state: LiveState, event: LiveEvent): LiveState {
     case 'pot': return { ...moved, pots: placePot(state, id, event.payload as LivePot | null) }
     case 'window': return { ...moved, windows: placeWindow(state, id, event.payload as LiveWindow | null) }
     case 'timer': return { ...moved, alarms: placeAlarm(state, event.payload as Timer) }
+    case 'booth': return { ...moved, booths: placeBooth(state, event.payload as LiveBooth) }
     case 'climate': return { ...moved, booths: placeClimate(state.booths, event.payload as ClimateReading) }
     default: return moved
   }
@@ -49,7 +50,9 @@ const isHere = (state: LiveState, boothId: string | null) => state.boothId === n
 
 function placePot(state: LiveState, id: string, pot: LivePot | null): LivePot[] {
   const others = state.pots.filter((known) => known.id !== id)
-  if (pot === null || pot.state === 'emptied' || pot.state === 'stopped' || !isHere(state, pot.boothId)) return others
+  if (pot === null || pot.state === 'emptied' || pot.state === 'stopped') return others
+  // A pot whose life is up hangs on every wall of the shop.
+  if (pot.state !== 'life-up' && !isHere(state, pot.boothId)) return others
   return [...others, pot].sort(byUrgency)
 }
 
@@ -65,7 +68,7 @@ function placeAlarm(state: LiveState, timer: Timer): Timer[] {
   return [...others, timer].sort((a, b) => compare(a.dueAt, b.dueAt) || compare(a.id, b.id))
 }
 
-const quiet = new Set<Timer['kind']>(['pot-late', 'window-opens', 'window-closing'])
+const quiet = new Set<Timer['kind']>(['pot-late', 'window-opens', 'window-closing', 'clearance'])
 
 /** True for timers that call for a person: a pot whose life is up until it is emptied, others until they are seen. */
 export function isAlarm({ kind, state }: Pick<Timer, 'kind' | 'state'>): boolean {
@@ -77,10 +80,40 @@ function placeClimate(booths: LiveBooth[], reading: ClimateReading): LiveBooth[]
   return booths.map((booth) => (booth.id === reading.boothId ? { ...booth, climate: reading } : booth))
 }
 
+function placeBooth(state: LiveState, booth: LiveBooth): LiveBooth[] {
+  if (!isHere(state, booth.id)) return state.booths
+  const known = state.booths.some(({ id }) => id === booth.id)
+  return known ? state.booths.map((one) => (one.id === booth.id ? booth : one)) : [...state.booths, booth]
+}
+
 /** What an alarm does at `now`, epoch milliseconds: a quiet that is over counts as over, told or not. */
 export function alarmAt(pot: Pick<LivePot, 'alarm' | 'silencedUntil'>, now: number): LivePot['alarm'] {
   if (pot.alarm !== 'silenced' || pot.silencedUntil === null) return pot.alarm
   return Date.parse(pot.silencedUntil) <= now ? 'sounding' : 'silenced'
+}
+
+/** The server says when a pot is closing or up; only what it has not said after so long is taken from the instants. */
+const serverSaysMs = 2_000
+
+/**
+ * The pot at `now`, epoch milliseconds. A screen that has lost the server goes on by the instants that it knows: the
+ * timers run on, and ring.
+ */
+export function potAt(pot: LivePot, now: number): LivePot {
+  if (pot.state !== 'fresh' && pot.state !== 'closing') return pot
+  const past = (instant: string | null) => instant !== null && Date.parse(instant) + serverSaysMs <= now
+  if (past(pot.endsAt)) return { ...pot, state: 'life-up', alarm: 'sounding' }
+  return past(pot.lateAt) ? { ...pot, state: 'closing' } : pot
+}
+
+/**
+ * Since when the bell of a booth rings at `now`, epoch milliseconds: the latest of its pots that are up and not silenced,
+ * so that another pot is heard as such. Null: it is quiet.
+ */
+export function soundingSince(pots: readonly Pick<LivePot, 'state' | 'alarm' | 'silencedUntil' | 'endsAt'>[], now: number): number | null {
+  const since = pots.filter((pot) => pot.state === 'life-up' && alarmAt(pot, now) === 'sounding')
+    .flatMap(({ endsAt, silencedUntil }) => silencedUntil ?? endsAt ?? []).map((at) => Date.parse(at))
+  return since.length > 0 ? Math.max(...since) : null
 }
 
 const urgency: Record<LivePot['state'], number> = { 'life-up': 0, closing: 1, fresh: 2, 'no-pot-life': 3, emptied: 4, stopped: 5 }

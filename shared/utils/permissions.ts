@@ -34,6 +34,8 @@ const permissions = {
   'jobs:read': [...people, 'bench'],
   'booths:clean': [...people, 'bench'],
   'shop:read': everyone,
+  'booths:extraction': people,
+  'people:read': everyone,
   'users:read': seniors,
   'devices:read': ['manager'],
   'devices:write': ['manager'],
