@@ -15,18 +15,21 @@ interface Bell {
   arm: () => Promise<void>
   /** Two soft strokes, once: a pot has entered its last quarter. */
   chime: () => void
+  /** One short stroke: somebody has silenced a pot. */
+  tick: () => void
 }
 
 /**
- * The booth's bell. It rings as long as `ringing` holds: a stroke every 4 s for a minute, then every 30 s.
+ * The booth's bell. It rings as long as `soundingSince` is an instant: a stroke every 4 s for a minute, then every 30 s.
+ * A screen that is opened later joins in where the ringing is.
  *
- * @param ringing whether a pot of this booth is up and not silenced
+ * @param soundingSince when the last pot of this booth that is up and not silenced began to ring, epoch milliseconds
+ * @param now the present by the same clock
  */
-export function useBell(ringing: MaybeRefOrGetter<boolean>): Bell {
+export function useBell(soundingSince: MaybeRefOrGetter<number | null>, now: () => number): Bell {
   const audio = ref<AudioContext | null>(null)
   const running = ref(false)
   let timer: ReturnType<typeof setTimeout> | undefined
-  let began = 0
 
   async function arm(): Promise<void> {
     audio.value ??= new AudioContext()
@@ -46,16 +49,18 @@ export function useBell(ringing: MaybeRefOrGetter<boolean>): Bell {
     setTimeout(() => sound(softLoudness, softHertz), softGapMs)
   }
 
+  const tick = (): void => sound(softLoudness, ringingHertz)
+
   function ring(): void {
+    const since = toValue(soundingSince)
+    if (since === null) return
     sound(1, ringingHertz)
-    timer = setTimeout(ring, untilNextStroke(performance.now() - began))
+    timer = setTimeout(ring, untilNextStroke(Math.max(0, now() - since)))
   }
 
-  watch([() => toValue(ringing), running], ([isRinging, canSound]) => {
+  watch([() => toValue(soundingSince), running], ([since, canSound]) => {
     clearTimeout(timer)
-    if (!isRinging || !canSound) return
-    began = performance.now()
-    ring()
+    if (since !== null && canSound) ring()
   }, { immediate: true })
 
   useEventListener(document, 'visibilitychange', () => {
@@ -66,5 +71,5 @@ export function useBell(ringing: MaybeRefOrGetter<boolean>): Bell {
     void audio.value?.close()
   })
 
-  return { armed: computed(() => running.value), arm, chime }
+  return { armed: computed(() => running.value), arm, chime, tick }
 }
