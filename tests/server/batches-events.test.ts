@@ -2,7 +2,8 @@ import { randomUUID } from 'node:crypto'
 import { afterAll, beforeAll, beforeEach, describe, expect, it } from 'vitest'
 import type { BatchEventBody } from '#shared/schemas/batches'
 import type { DraftInput } from '#shared/schemas/drafts'
-import { closeBatch, recordBatchEvent } from '../../server/services/batch-events'
+import { closeBatch } from '../../server/services/batch-close'
+import { recordBatchEvent } from '../../server/services/batch-events'
 import { sealBatch } from '../../server/services/batches'
 import { saveDraft } from '../../server/services/drafts'
 import type { Context } from '../../server/utils/context'
@@ -165,9 +166,9 @@ describe('emptying a pot', () => {
     const id = await pot(loose)
     later(50)
     const batch = await close(id, '120.5')
-    expect(batch).toMatchObject({ state: 'emptied', closedAt: minutesIn(50), leftoverG: '120.5', leftoverWeighed: true, disposal: 'reactive waste' })
+    expect(batch).toMatchObject({ state: 'emptied', closedAt: minutesIn(50), leftoverG: '120.5', leftoverWeighed: true, disposal: 'open-metal-can' })
     expect(await rows('timers', { subject_id: id })).toMatchObject([{ state: 'cancelled' }, { state: 'cancelled' }])
-    expect(await rows('waste_entries', { batch_id: id })).toMatchObject([{ kind: 'leftover', grams: '120.5000', weighed: 1, disposal: 'reactive waste', chemistry: 'polyurethane' }])
+    expect(await rows('waste_entries', { batch_id: id })).toMatchObject([{ kind: 'leftover', grams: '120.5000', weighed: 1, disposal: 'open-metal-can', chemistry: 'polyurethane' }])
     const event = await work.admin('events').where({ subject: `batch:${id}`, type: 'pot' }).orderBy('seq', 'desc').first<{ payload: string }>()
     expect(JSON.parse(event.payload)).toMatchObject({ state: 'emptied', leftoverG: '120.5' })
   })

@@ -2,7 +2,8 @@ import { randomUUID } from 'node:crypto'
 import { afterAll, afterEach, beforeAll, beforeEach, describe, expect, it } from 'vitest'
 import type { LivePot } from '#shared/schemas/live'
 import type { Timer } from '#shared/schemas/timers'
-import { closeBatch, recordBatchEvent } from '../../server/services/batch-events'
+import { closeBatch } from '../../server/services/batch-close'
+import { recordBatchEvent } from '../../server/services/batch-events'
 import { sealBatch } from '../../server/services/batches'
 import { saveDraft } from '../../server/services/drafts'
 import { readLive, readTimers } from '../../server/services/live'
@@ -158,7 +159,7 @@ describe('a pot', () => {
   it('does not ring when it was emptied in time', async () => {
     const id = await pot()
     pass(60)
-    await closeBatch(sprayer, id, { leftoverG: '10', at: new Date(live.time.now).toISOString(), disposal: 'reactive waste' })
+    await closeBatch(sprayer, id, { leftoverG: '10', at: new Date(live.time.now).toISOString(), disposal: 'open-metal-can', sprayed: false })
     here.startTimers()
     pass(120)
     const marker = await free('After the end', 1)
@@ -172,7 +173,7 @@ describe('a pot', () => {
 describe('the bell of a pot', () => {
   const announced = (id: string) => told<Timer>('timer', (timer) => timer.id === id && timer.state === 'fired').length
 
-  it('is called out again each minute until somebody acknowledges it', async () => {
+  it('is called out again after a minute, and after another, until somebody acknowledges it', async () => {
     const timer = await ring(await pot())
     for (const times of [2, 3]) {
       live.time.now += minuteMs
@@ -205,10 +206,29 @@ describe('the bell of a pot', () => {
     expect(await view(id)).toMatchObject({ alarm: 'sounding', silencedUntil: null })
   })
 
+  it('is silenced before a wall by whoever says so, and only by people of the shop', async () => {
+    const timer = await ring(await pot())
+    const screen = live.asScreen(live.shop.boothId, here.hub.wake)
+    await expect(silenceTimer(screen, timer.id, { reason: null, byUserId: randomUUID() })).rejects.toMatchObject({ status: 400, fields: [{ path: 'byUserId' }] })
+    await expect(silenceTimer(sprayer, timer.id, { reason: null, byUserId: live.shop.users.foreman })).rejects.toMatchObject({ status: 400, fields: [{ path: 'byUserId' }] })
+    const silenced = await silenceTimer(screen, timer.id, { reason: null, byUserId: live.shop.users.foreman })
+    expect(silenced).toMatchObject({ silencedBy: `foreman ${live.shop.mark}`, acknowledgedBy: `foreman ${live.shop.mark}` })
+  })
+
+  it('rings once over a restart at its moment', async () => {
+    const id = await pot()
+    const before = new Station(live)
+    before.startTimers()
+    await before.stop()
+    const timer = await ring(id)
+    expect(timerTold(timer.id, 'fired')).toHaveLength(1)
+    expect(await audited('timer.fired', timer.id)).toBe(1)
+  })
+
   it('stops for good when the pot is emptied', async () => {
     const id = await pot()
     const timer = await ring(id)
-    await closeBatch(live.asScreen(live.shop.boothId, here.hub.wake), id, { leftoverG: '0', at: new Date(live.time.now).toISOString(), disposal: 'reactive waste' })
+    await closeBatch(live.asScreen(live.shop.boothId, here.hub.wake), id, { leftoverG: '0', at: new Date(live.time.now).toISOString(), disposal: 'open-metal-can', sprayed: false })
     await ear.until(() => timerTold(timer.id, 'done').length === 1)
     expect((await readLive(sprayer, undefined)).alarms.map((alarm) => alarm.id)).not.toContain(timer.id)
     await expect(silenceTimer(sprayer, timer.id, { reason: null })).rejects.toMatchObject({ status: 422, code: 'timer-ended' })

@@ -15,7 +15,7 @@ const piece = (id: string, more: Partial<PieceFacts> = {}): PieceFacts =>
   ({ id, jobId: 'job', label: id, areaM2: '0.4', quantity: 1, faces: 'front', rack: null, heldReason: null, ...more })
 const window = (pieceIds: string[], opens: number, closes: number | null, more: Partial<OpenWindow> = {}): OpenWindow => ({
   id: `w${pieceIds.join('')}`, jobId: 'job', jobCode: 'J-0001', jobTitle: 'Fronts', jobStepId: 'seal', stepTitle: 'Seal', stepPosition: 2, pieces: pieceIds, pieceIds,
-  boothId: null, boothName: null, firstAt: iso(-300), lastAt: iso(-290), opensAt: iso(opens), closingAt: null, closesAt: closes === null ? null : iso(closes), ...more,
+  boothId: null, boothName: null, firstAt: iso(-300), lastAt: iso(-290), opensAt: iso(opens), closingAt: null, closesAt: closes === null ? null : iso(closes), assumed: false, unended: null, ...more,
 })
 const treated = (jobStepId: string, pieceIds: string[], minutesAgo = 290, times = 1) =>
   pieceIds.map((pieceId) => ({ jobStepId, pieceId, times, lastAt: now - minutesAgo * 60_000 }))

@@ -1,14 +1,14 @@
 import { describe, expect, it } from 'vitest'
 import type { LiveBooth, LiveEvent, LivePot, LiveSnapshot, LiveWindow } from '#shared/schemas/live'
 import type { Timer } from '#shared/schemas/timers'
-import { alarmAt, applyEvent, byUrgency, catchUp, fromSnapshot, isAlarm, type LiveState } from '#shared/utils/live-reducer'
+import { alarmAt, applyEvent, byUrgency, catchUp, fromSnapshot, isAlarm, potAt, soundingSince, type LiveState } from '#shared/utils/live-reducer'
 
 const at = '2026-11-17T07:00:00.000Z'
 
 const pot = (id: string, more: Partial<LivePot> = {}): LivePot => ({
   id, code: `B-${id}`, stage: 'sealed', state: 'fresh', boothId: 'one', boothName: 'Booth 1', gunId: null, gunName: null, mixName: 'Sealer',
-  mixCode: 'S', jobCode: null, jobTitle: null, stepTitle: null, purpose: 'Samples', potNumber: 1, potCount: 1, mixedByName: 'Ada', pouredG: '170',
-  mixedAt: at, reactiveAt: at, lateAt: '2026-11-17T08:30:00.000Z', endsAt: '2026-11-17T09:00:00.000Z', firstSprayAt: null, lastSprayAt: null,
+  mixCode: 'S', jobId: null, jobCode: null, jobTitle: null, stepTitle: null, purpose: 'Samples', potNumber: 1, potCount: 1, mixedByName: 'Ada', pouredG: '170',
+  mixedAt: at, reactiveAt: at, lateAt: '2026-11-17T08:30:00.000Z', endsAt: '2026-11-17T09:00:00.000Z', standsUntil: null, firstSprayAt: null, lastSprayAt: null, guns: [],
   containsIsocyanates: true, chemistry: 'polyurethane', silencedUntil: null, silencedBy: null, alarm: 'none', alarmTimerId: null, leftoverG: null, ...more,
 })
 
@@ -19,10 +19,10 @@ const timer = (id: string, more: Partial<Timer> = {}): Timer => ({
 
 const window = (id: string, more: Partial<LiveWindow> = {}): LiveWindow => ({
   id, jobId: 'j', jobCode: 'J-1', jobTitle: 'Fronts', jobStepId: 's', stepTitle: 'Sealer', pieces: ['1'], boothId: 'one', boothName: 'Booth 1',
-  firstAt: at, lastAt: at, opensAt: '2026-11-17T09:00:00.000Z', closingAt: null, closesAt: '2026-11-17T19:00:00.000Z', state: 'too-early', ...more,
+  firstAt: at, lastAt: at, opensAt: '2026-11-17T09:00:00.000Z', closingAt: null, closesAt: '2026-11-17T19:00:00.000Z', state: 'too-early', assumed: false, unended: null, ...more,
 })
 
-const booth = (id: string): LiveBooth => ({ id, name: id, clearanceMin: '30', extraction: 'running', climate: null })
+const booth = (id: string): LiveBooth => ({ id, name: id, clearanceMin: '30', extraction: 'running', climate: null, clearance: null, guns: [] })
 
 const snapshot = (more: Partial<LiveSnapshot> = {}): LiveSnapshot =>
   ({ serverNow: at, lastSeq: 10, boothId: 'one', pots: [pot('a')], windows: [window('w')], alarms: [], booths: [booth('one')], ...more })
@@ -118,4 +118,42 @@ it('orders pots by life up, closing, soonest end, and those without a life last'
     pot('c', { state: 'closing', endsAt: '2026-11-17T11:00:00.000Z' }), pot('u', { state: 'life-up' }),
   ]
   expect(ids(pots.sort(byUrgency))).toEqual(['u', 'c', 'f1', 'f2', 'n'])
+})
+
+describe('a booth', () => {
+  it('is told anew as a whole, and only its own to a wall', () => {
+    const stopped: LiveBooth = { ...booth('one'), extraction: 'off' }
+    const state = after(fromSnapshot(snapshot()), event(11, 'booth', 'booth:one', stopped), event(12, 'booth', 'booth:two', booth('two')))
+    expect(state.booths).toEqual([stopped])
+  })
+})
+
+describe('a pot whose life is up in another booth', () => {
+  it('hangs on every wall until it is gone', () => {
+    const up = pot('z', { boothId: 'two', state: 'life-up', alarm: 'sounding' })
+    const state = after(fromSnapshot(snapshot()), event(11, 'pot', 'batch:z', up))
+    expect(ids(state.pots)).toEqual(['z', 'a'])
+    expect(ids(after(state, event(12, 'pot', 'batch:z', null)).pots)).toEqual(['a'])
+  })
+})
+
+describe('a wall that has lost the server', () => {
+  const ends = Date.parse('2026-11-17T09:00:00.000Z')
+
+  it('goes on by the instants that it knows', () => {
+    expect(potAt(pot('a'), Date.parse('2026-11-17T08:30:01.000Z')).state).toBe('fresh')
+    expect(potAt(pot('a'), Date.parse('2026-11-17T08:30:02.000Z')).state).toBe('closing')
+    expect(potAt(pot('a'), ends + 2_000)).toMatchObject({ state: 'life-up', alarm: 'sounding' })
+    expect(potAt(pot('a', { state: 'emptied' }), ends + 2_000).state).toBe('emptied')
+  })
+
+  it('rings from the end of the pot that came last, and not for one that is silenced', () => {
+    const up = (id: string, more: Partial<LivePot> = {}) => pot(id, { state: 'life-up', alarm: 'sounding', ...more })
+    const later = '2026-11-17T09:05:00.000Z'
+    expect(soundingSince([pot('a')], ends)).toBeNull()
+    expect(soundingSince([up('a'), up('b', { endsAt: later })], ends + 600_000)).toBe(Date.parse(later))
+    const silenced = up('a', { alarm: 'silenced', silencedUntil: later })
+    expect(soundingSince([silenced], ends)).toBeNull()
+    expect(soundingSince([silenced], Date.parse(later))).toBe(Date.parse(later))
+  })
 })

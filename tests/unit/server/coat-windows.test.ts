@@ -11,7 +11,7 @@ const after = (more: Partial<Step>, coat: number) => windowAfter({ ...step, ...m
 
 describe('the window after a coat', () => {
   it('leads to the next coat while there are some to come: opens by the last spray, closes by the first', () => {
-    expect(after({}, 1)).toEqual({
+    expect(after({}, 1)).toMatchObject({
       purpose: 'coat-interval',
       window: { opensAt: last + 60 * minute, closesAt: first + 240 * minute, closingAt: first + 224 * minute, empty: false },
     })

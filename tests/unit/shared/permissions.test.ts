@@ -8,7 +8,7 @@ describe('the permission table', () => {
 
   it('lets a booth screen read its booth, silence, spray and empty, and nothing else', () => {
     expect(actions.filter((action) => may('screen', action)).sort()).toEqual([
-      'batches:close', 'batches:event', 'batches:read', 'climate:read', 'live:read', 'session:read', 'shop:read', 'time:read', 'timers:read', 'timers:silence',
+      'batches:close', 'batches:event', 'batches:read', 'climate:read', 'live:read', 'people:read', 'session:read', 'shop:read', 'time:read', 'timers:read', 'timers:silence',
     ])
   })
 
