@@ -1,5 +1,5 @@
 import { BatchCloseBody, BatchParams } from '#shared/schemas/batches'
-import { closeBatch } from '../../../services/batch-events'
+import { closeBatch } from '../../../services/batch-close'
 
 export default defineRoute({
   permission: 'batches:close',
