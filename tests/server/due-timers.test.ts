@@ -1,5 +1,6 @@
 import { randomUUID } from 'node:crypto'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
+import { findDue, nextDue } from '../../server/repositories/due-timers'
 import { findTimerOf } from '../../server/repositories/timers'
 import { saveDraft } from '../../server/services/drafts'
 import { settleDue } from '../../server/services/due-timers'
@@ -35,5 +36,23 @@ describe('a timer that comes due while its batch is being sealed', () => {
     await sealing.commit()
     expect(await settling).toBe(true)
     expect(await findTimerOf('pot-up', 'batch', id, live.db)).toMatchObject({ state: 'cancelled' })
+  })
+})
+
+describe('a pot that nobody empties from Friday to Monday', () => {
+  it('is called out a dozen times and not each minute', async () => {
+    const id = randomUUID()
+    const at = new Date(live.time.now).toISOString()
+    const components = (poured(live.shop, ['100', '50', '20']) ?? []).map((one) => ({ ...one, pours: one.pours.map((pour) => ({ ...pour, at })) }))
+    await saveDraft(live.as('sprayer'), id, draftBody(live.shop, { components, reactiveAt: at, plan: { totalG: '170', scaleDivisionG: '0.1' } }))
+    const timer = await findTimerOf('pot-up', 'batch', id, live.db)
+    const monday = live.time.now + 64 * 3_600_000
+    for (let next = await nextDue(live.db); next !== null && next <= monday; next = await nextDue(live.db)) {
+      live.time.now = Math.max(live.time.now, next)
+      for (const work of await findDue(live.time.now, 50, live.db)) await settleDue(live.as('sprayer'), work)
+    }
+    const calls = await live.admin('audit_entries').where({ action: 'timer.announced', subject: `timer:${timer?.id}` }).orderBy('seq').pluck<Date[]>('at')
+    const fired = Date.parse((await findTimerOf('pot-up', 'batch', id, live.db))?.firedAt ?? '')
+    expect(calls.map((call) => (call.getTime() - fired) / 60_000)).toEqual([1, 2, 4, 8, 16, 32, 64, 128, 256, 512, 1024, 2048])
   })
 })
