@@ -102,6 +102,8 @@ describe.each([
       .toMatchObject({ silenced_by: expect.stringMatching(/\S/) as string })
     await watcher.press(up.getByRole('button', { name: 'Emptied' }))
     const sheet = wall.page.getByRole('dialog')
+    // Nobody tapped a shot, so that it is asked for before the pot is gone.
+    await watcher.press(sheet.getByRole('button', { name: 'It was not sprayed' }))
     await watcher.press(sheet.getByRole('button', { name: '3', exact: true }))
     await watcher.press(sheet.getByRole('button', { name: '5', exact: true }))
     await watcher.press(sheet.getByRole('button', { name: 'Emptied, 35 g left' }))
