@@ -2,7 +2,7 @@
  * Every table of the project and what the application's database user may do with it.
  *
  * `record`: what happened; never changed, so INSERT and SELECT only. `mutable`: present state.
- * `erasable`: present state whose rows may go (keys that expire, limits, sessions, what can be made anew from the record). `reference`: read only.
+ * `erasable`: present state whose rows may go (keys that expire, limits, sessions, what can be made anew from the record, what nothing refers to). `reference`: read only.
  * A table that stands in no list fails a test, so that nobody forgets to decide.
  */
 export const tables = {
@@ -20,6 +20,7 @@ export const tables = {
     'booth_cleanings',
     'booth_extraction_changes',
     'events',
+    'lot_events',
     'lot_movements',
     'mix_components',
     'mix_revisions',
@@ -38,7 +39,6 @@ export const tables = {
     'jobs',
     'ledger_head',
     'lots',
-    'materials',
     'mixes',
     'mixing_cups',
     'number_blocks',
@@ -52,7 +52,7 @@ export const tables = {
     'timers',
     'users',
   ],
-  erasable: ['batch_uses', 'idempotency_keys', 'sessions', 'sign_in_limits'],
+  erasable: ['batch_uses', 'idempotency_keys', 'materials', 'sessions', 'sign_in_limits'],
   reference: ['chemistry_rules', 'hazard_statements', 'knex_migrations'],
 } as const
 

@@ -8,7 +8,7 @@ import { whereContains } from './search'
 type Db = Knex | Knex.Transaction
 
 /** A lot as stored, with its sums. What it means today is for the service to say. */
-export type StoredLot = Omit<Lot, 'condition' | 'expiresInDays' | 'batchCount' | 'low' | 'stockWorking' | 'movements' | 'batches'>
+export type StoredLot = Omit<Lot, 'condition' | 'expiresInDays' | 'batchCount' | 'low' | 'stockWorking' | 'movements' | 'batches' | 'events'>
 
 /** The days that decide what a lot is: today's date and the last use-by date that counts as soon. */
 export interface LotDays {

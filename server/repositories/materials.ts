@@ -1,6 +1,6 @@
 import type { Knex } from 'knex'
-import type { HazardStatement, Material, MaterialListQuery, MaterialUse } from '#shared/schemas/materials'
-import { decimalOf, decimalOrNull, isoOf } from '../utils/rows'
+import type { HazardStatement, Material, MaterialFields, MaterialListQuery, MaterialUse } from '#shared/schemas/materials'
+import { decimalOf, decimalOrNull, isoOf, toInstant } from '../utils/rows'
 import { stockSql, usableSql } from './lots'
 import { whereContains } from './search'
 
@@ -157,4 +157,58 @@ export async function usesOf(materialId: string, db: Db): Promise<MaterialUse[]>
     mixId: row.mix_id, mixCode: row.mix_code, mixName: row.mix_name, role: row.role,
     parts: decimalOf(row.parts), partsMax: decimalOrNull(row.parts_max),
   }))
+}
+
+/** Every statement that a material may carry, H before EUH before P, by number. */
+export async function listHazardStatements(db: Db): Promise<HazardStatement[]> {
+  return await db('hazard_statements').orderByRaw("FIELD(kind, 'H', 'EUH', 'P'), code").select<HazardStatement[]>('code', 'kind', 'text')
+}
+
+const columns: Record<keyof MaterialFields, string> = {
+  code: 'code', name: 'name', role: 'role', chemistry: 'chemistry', containsIsocyanates: 'contains_isocyanates', densityGPerMl: 'density_g_per_ml',
+  solidsPct: 'solids_pct', volumeSolidsPct: 'volume_solids_pct', reactsPct: 'reacts_pct', vocGPerL: 'voc_g_per_l', vocPct: 'voc_pct',
+  waterPct: 'water_pct', exemptPct: 'exempt_pct', flashPointC: 'flash_point_c', shelfLifeDays: 'shelf_life_days', supplier: 'supplier',
+  makerCode: 'maker_code', pricePerKg: 'price_per_kg', signalWord: 'signal_word', hazardCodes: 'hazard_codes',
+  protectionMixing: 'protection_mixing', protectionSpraying: 'protection_spraying', reorderPointG: 'reorder_point_g',
+}
+
+function toRow(fields: Partial<MaterialFields>): Record<string, unknown> {
+  return Object.fromEntries(Object.entries(fields).flatMap(([name, value]) =>
+    value === undefined ? [] : [[columns[name as keyof MaterialFields], name === 'hazardCodes' ? JSON.stringify(value) : value]]))
+}
+
+export async function insertMaterial(id: string, fields: MaterialFields, now: number, db: Db): Promise<void> {
+  const at = toInstant(now)
+  await db('materials').insert({ id, ...toRow(fields), created_at: at, updated_at: at })
+}
+
+/** Holds a material until the transaction ends, so that its lots are booked in and its references counted one by one. */
+export async function lockMaterial(id: string, trx: Knex.Transaction): Promise<StoredMaterial | null> {
+  const row = await trx('materials').where({ id }).forUpdate().first<Row | undefined>()
+  return row ? toMaterial(row) : null
+}
+
+/** Writes what is given. The row must be locked. */
+export async function updateMaterial(id: string, fields: Partial<MaterialFields>, archived: boolean | undefined, now: number, trx: Knex.Transaction): Promise<void> {
+  const at = toInstant(now)
+  await trx('materials').where({ id }).update({
+    ...toRow(fields), ...(archived === undefined ? {} : { archived_at: archived ? at : null }), updated_at: at, version: trx.raw('version + 1'),
+  })
+}
+
+export async function deleteMaterial(id: string, trx: Knex.Transaction): Promise<void> {
+  await trx('materials').where({ id }).delete()
+}
+
+/** True when a lot or any revision of a mix, in use or not, refers to the material. */
+export async function isReferenced(id: string, db: Db): Promise<boolean> {
+  const lot = await db('lots').where('material_id', id).first('id')
+  return lot !== undefined || (await db('mix_components').where('material_id', id).first('id')) !== undefined
+}
+
+/** Codes of the mixes in use that take the material by volume, so that its density must be known. */
+export async function volumeMixesOf(id: string, db: Db): Promise<string[]> {
+  return await db('mix_components as c').join('mixes as x', 'x.current_revision_id', 'c.mix_revision_id')
+    .join('mix_revisions as r', 'r.id', 'c.mix_revision_id')
+    .where({ 'c.material_id': id, 'r.basis': 'volume' }).whereNull('x.archived_at').orderBy('x.code').pluck<string[]>('x.code')
 }

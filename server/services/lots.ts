@@ -3,6 +3,7 @@ import { line, type WorkingLine } from '#shared/engine/working'
 import type { Lot, LotCondition, LotItem, LotListQuery, LotMovement } from '#shared/schemas/lots'
 import { lowSharePct, runsOutWithinDays } from '#shared/schemas/lots'
 import { addDays, daysBetween } from '#shared/utils/zone'
+import { listLotEvents } from '../repositories/lot-edits'
 import { countBatches, findLot, listLotBatches, listLots, listMovements, sumMovements, type StoredLot } from '../repositories/lots'
 import type { Context } from '../utils/context'
 import { notFound } from '../utils/errors'
@@ -70,14 +71,15 @@ export async function lotById(ctx: Context, id: string): Promise<Lot> {
   const lot = await findLot(id, ctx.db)
   if (!lot) throw notFound('The lot')
   const { today } = await shopDay(ctx)
-  const [[item], sums, movements, batches] = await Promise.all([
+  const [[item], sums, movements, batches, events] = await Promise.all([
     describeLots([lot], today, ctx),
     sumMovements(id, ctx.db),
     listMovements(id, mostRows, ctx.db),
     listLotBatches(id, mostRows, ctx.db),
+    listLotEvents(id, ctx.db),
   ])
   if (!item) throw notFound('The lot')
-  return { ...item, stockWorking: stockWorking(sums, lot.stockG), movements, batches, createdAt: lot.createdAt, updatedAt: lot.updatedAt }
+  return { ...item, stockWorking: stockWorking(sums, lot.stockG), movements, batches, events, createdAt: lot.createdAt, updatedAt: lot.updatedAt }
 }
 
 const kindWords: Record<LotMovement['kind'], string> = {

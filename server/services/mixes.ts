@@ -16,18 +16,27 @@ export async function mixesPage(ctx: Context, query: MixListQuery): Promise<Page
 
 /**
  * A mix with its current revision worked out, and all revisions it ever had.
- * @throws Refusal 404 when there is none
+ * @param revisionId of another revision to show beside the one in force
+ * @throws Refusal 404 when there is none, or the revision is of another mix
  */
-export async function mixById(ctx: Context, id: string): Promise<Mix> {
+export async function mixById(ctx: Context, id: string, revisionId?: string): Promise<Mix> {
   const mix = await findMix(id, ctx.db)
   if (!mix) throw notFound('The mix')
-  const [current, revisions, schedules] = await Promise.all([
-    findRevisions(mix.currentRevisionId === null ? [] : [mix.currentRevisionId], ctx.db),
+  const wanted = [...new Set([mix.currentRevisionId, revisionId].filter(one => one !== null && one !== undefined))]
+  const [found, revisions, schedules] = await Promise.all([
+    findRevisions(wanted, ctx.db),
     listRevisions(id, ctx.db),
     schedulesOf(id, ctx.db),
   ])
-  const { currentRevisionId: _id, ...head } = mix
-  return { ...head, current: current[0] ? describeRevision(current[0]) : null, revisions, schedules }
+  const { currentRevisionId, ...head } = mix
+  const described = (wantedId: string | null): MixRevision | null => {
+    const revision = found.find(one => one.id === wantedId && one.mixId === id)
+    return revision ? describeRevision(revision) : null
+  }
+  const current = described(currentRevisionId)
+  const shown = revisionId === undefined ? current : described(revisionId)
+  if (revisionId !== undefined && !shown) throw notFound('The revision')
+  return { ...head, current, shown, revisions, schedules }
 }
 
 /** A stored revision as the engine takes it. */

@@ -12,9 +12,9 @@ import { Device, DeviceCreateBody, DeviceList, DeviceParams } from '#shared/sche
 import { Draft, DraftBody, DraftDiscardBody, DraftList, DraftListQuery, DraftParams } from '#shared/schemas/drafts'
 import { Job, JobList, JobListQuery } from '#shared/schemas/jobs'
 import { EventsQuery, LiveBooth, LiveQuery, LiveSnapshot, ServerTime } from '#shared/schemas/live'
-import { Lot, LotList, LotListQuery } from '#shared/schemas/lots'
-import { Material, MaterialList, MaterialListQuery } from '#shared/schemas/materials'
-import { Mix, MixList, MixListQuery } from '#shared/schemas/mixes'
+import { Lot, LotCreateBody, LotList, LotListQuery, LotMovementBody, LotPatchBody, LotReasonBody } from '#shared/schemas/lots'
+import { HazardStatementList, Material, MaterialCreateBody, MaterialList, MaterialListQuery, MaterialPatchBody } from '#shared/schemas/materials'
+import { Mix, MixCreateBody, MixList, MixListQuery, MixPatchBody, MixQuery, MixRevisionBody } from '#shared/schemas/mixes'
 import { NumberBlock, NumberBlockVoidBody } from '#shared/schemas/number-blocks'
 import { OpenApiDocument } from '#shared/schemas/openapi'
 import { Schedule, ScheduleList, ScheduleListQuery, ScheduleQuery } from '#shared/schemas/schedules'
@@ -52,6 +52,7 @@ const get = (...[path, permission, summary, answer, extra]: Entry): ApiRoute =>
 const put = (...entry: Entry): ApiRoute => ({ ...get(...entry), method: 'put' })
 const post = (...[path, permission, summary, answer, extra]: Entry): ApiRoute =>
   ({ method: 'post', path, permission, summary, answer, status: 201, idempotent: true, ...extra })
+const patch = (...entry: Entry): ApiRoute => ({ ...get(...entry), method: 'patch' })
 const remove = (...entry: Entry): ApiRoute => ({ ...get(...entry), method: 'delete', status: 204 })
 
 const byId = { params: IdParams }
@@ -94,10 +95,22 @@ export const apiRoutes: readonly ApiRoute[] = [
   post('/api/timers/{id}/done', 'timers:acknowledge', 'A timer has served', Timer, { ...byId, body: TimerActionBody, status: 200 }),
   get('/api/materials', 'materials:read', 'Materials with their stock', MaterialList, { query: MaterialListQuery }),
   get('/api/materials/{id}', 'materials:read', 'A material', Material, byId),
+  get('/api/hazard-statements', 'materials:read', 'Statements of hazard and precaution, word for word', HazardStatementList),
+  post('/api/materials', 'materials:write', 'Enters a material', Material, { body: MaterialCreateBody }),
+  patch('/api/materials/{id}', 'materials:write', 'Changes a material, archives it or brings it back', Material, { ...byId, body: MaterialPatchBody }),
+  remove('/api/materials/{id}', 'materials:write', 'Takes away a material that nothing refers to', null, byId),
   get('/api/lots', 'lots:read', 'Lots with their stock', LotList, { query: LotListQuery }),
   get('/api/lots/{id}', 'lots:read', 'A lot with all that came and went', Lot, byId),
+  post('/api/lots', 'lots:create', 'Books a lot in', Lot, { body: LotCreateBody }),
+  patch('/api/lots/{id}', 'lots:write', 'Puts right what was booked in', Lot, { ...byId, body: LotPatchBody }),
+  post('/api/lots/{id}/movements', 'lots:write', 'Enters a count, more of the lot, or what was thrown away', Lot, { ...byId, body: LotMovementBody }),
+  post('/api/lots/{id}/block', 'lots:write', 'Takes a lot from the benches', Lot, { ...byId, body: LotReasonBody, status: 200 }),
+  post('/api/lots/{id}/release', 'lots:write', 'Gives a blocked lot back to the benches', Lot, { ...byId, body: LotReasonBody, status: 200 }),
   get('/api/mixes', 'mixes:read', 'Mixes', MixList, { query: MixListQuery }),
-  get('/api/mixes/{id}', 'mixes:read', 'A mix with its revisions', Mix, byId),
+  get('/api/mixes/{id}', 'mixes:read', 'A mix with its revisions', Mix, { ...byId, query: MixQuery }),
+  post('/api/mixes', 'mixes:write', 'Makes a mix with its first revision', Mix, { body: MixCreateBody }),
+  patch('/api/mixes/{id}', 'mixes:write', 'Renames a mix, archives it or brings it back', Mix, { ...byId, body: MixPatchBody }),
+  post('/api/mixes/{id}/revisions', 'mixes:write', 'Writes a mix\'s next revision', Mix, { ...byId, body: MixRevisionBody }),
   get('/api/schedules', 'schedules:read', 'Finishing schedules', ScheduleList, { query: ScheduleListQuery }),
   get('/api/schedules/{id}', 'schedules:read', 'A finishing schedule with the steps of a revision', Schedule, { ...byId, query: ScheduleQuery }),
   get('/api/jobs', 'jobs:read', 'Jobs, the one due first first', JobList, { query: JobListQuery }),

@@ -1,6 +1,7 @@
 import * as z from 'zod/mini'
 import { WorkingLine, pageOf, pageQuery, searchText, wholeNumber } from './common'
-import { DateText, DecimalText, Flag, InstantText, Uuid } from './fields'
+import { Version, decimalField, neededText, optionalText } from './editor-fields'
+import { DateText, DecimalText, Flag, GramsText, InstantText, Uuid } from './fields'
 import { MaterialRole } from './material-roles'
 
 /** A lot runs out soon from this many days before its use-by date on. */
@@ -81,6 +82,16 @@ export const LotMovement = z.object({
 })
 export type LotMovement = z.infer<typeof LotMovement>
 
+/** A lot was blocked or released, by whom and why. */
+export const LotEvent = z.object({
+  id: Uuid,
+  kind: z.enum(['blocked', 'released']),
+  reason: z.string(),
+  userName: z.nullable(z.string()),
+  at: InstantText,
+})
+export type LotEvent = z.infer<typeof LotEvent>
+
 /** A batch that a lot went into. */
 export const LotBatch = z.object({
   id: Uuid,
@@ -102,7 +113,64 @@ export const Lot = z.object({
   stockWorking: z.array(WorkingLine),
   movements: z.array(LotMovement),
   batches: z.array(LotBatch),
+  events: z.array(LotEvent),
   createdAt: InstantText,
   updatedAt: InstantText,
 })
 export type Lot = z.infer<typeof Lot>
+
+const lotNumber = neededText('Give the maker\'s batch number on the tin.', 60)
+const price = z.nullable(decimalField('Give a price.', 8, 4))
+
+/** More than nothing, to a tenth of a milligram. */
+const someGrams = decimalField('Give grams.', 9, 4, { above: true })
+
+/** One delivery of a material goes onto the shelf: in grams, or in litres where the material's density is known. */
+export const LotCreateBody = z.strictObject({
+  materialId: z.string('Choose a material.').check(z.regex(/^[0-9a-f]{8}-(?:[0-9a-f]{4}-){3}[0-9a-f]{12}$/, 'Choose a material.')),
+  lotNumber,
+  grams: z.nullable(someGrams),
+  litres: z.nullable(decimalField('Give litres.', 6, 4, { above: true })),
+  receivedOn: DateText,
+  /** The last day that it may be used. */
+  expiresOn: z.nullable(DateText),
+  pricePerKg: price,
+  place: optionalText(80),
+}).check((context) => {
+  const { grams, litres } = context.value
+  if ((grams === null) === (litres === null)) context.issues.push({ code: 'custom', path: ['grams'], message: 'Give the amount, in grams or in litres.', input: context.value })
+})
+export type LotCreateBody = z.infer<typeof LotCreateBody>
+
+/** Slips of the pen when it was booked in. Grams are put right by a movement. */
+export const LotPatchBody = z.strictObject({
+  version: Version,
+  lotNumber: z.optional(lotNumber),
+  receivedOn: z.optional(DateText),
+  expiresOn: z.optional(z.nullable(DateText)),
+  pricePerKg: z.optional(price),
+  place: z.optional(optionalText(80)),
+})
+export type LotPatchBody = z.infer<typeof LotPatchBody>
+
+const reason = neededText('Say why: the record keeps it.', 400)
+
+export const LotReasonBody = z.strictObject({ reason })
+export type LotReasonBody = z.infer<typeof LotReasonBody>
+
+/** Kinds of movement that a person may enter. */
+export const enteredKinds = ['counted', 'received', 'wasted'] as const
+
+/**
+ * Grams by hand. `counted`: what the tin holds now; the difference to the books is written. `received`: more of the same
+ * lot came. `wasted`: so much was thrown away.
+ */
+export const LotMovementBody = z.strictObject({
+  kind: z.enum(enteredKinds, 'Choose what happened.'),
+  grams: GramsText,
+  reason,
+}).check((context) => {
+  const { kind, grams } = context.value
+  if (kind !== 'counted' && !/[1-9]/.test(grams)) context.issues.push({ code: 'custom', path: ['grams'], message: 'It must be more than 0.', input: context.value })
+})
+export type LotMovementBody = z.infer<typeof LotMovementBody>

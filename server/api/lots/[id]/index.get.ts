@@ -1,5 +1,5 @@
 import { IdParams } from '#shared/schemas/common'
-import { lotById } from '../../services/lots'
+import { lotById } from '../../../services/lots'
 
 export default defineRoute({
   permission: 'lots:read',

@@ -1,0 +1,11 @@
+import { IdParams } from '#shared/schemas/common'
+import { LotReasonBody } from '#shared/schemas/lots'
+import { blockLot } from '../../../services/lot-edits'
+import { defineRoute } from '../../../utils/handler'
+
+export default defineRoute({
+  permission: 'lots:write',
+  params: IdParams,
+  body: LotReasonBody,
+  handle: ({ ctx, params, body }) => blockLot(ctx, params.id, body),
+})
