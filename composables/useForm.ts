@@ -1,6 +1,6 @@
 import type * as z from 'zod/mini'
 import { safeParse } from 'zod/mini'
-import { computed, nextTick, reactive, ref, shallowRef, toRaw, type ComputedRef, type Ref } from 'vue'
+import { computed, nextTick, reactive, ref, shallowRef, toRaw, type ComputedRef, type Ref, type ShallowRef } from 'vue'
 import { newUuid } from '#shared/utils/uuid'
 import { useKeptForm } from '~/composables/useKeptForm'
 import { toFailure, type ApiFailure } from '~/utils/api'
@@ -63,7 +63,7 @@ export function useForm<S extends z.ZodMiniType, T extends Record<string, unknow
   options: FormOptions<T> = {},
 ): Form<T> {
   const values = reactive(structuredClone(initial)) as T
-  const start = shallowRef(structuredClone(initial))
+  const start = shallowRef(structuredClone(initial)) as ShallowRef<T>
   const errors = ref<Record<string, string>>({})
   const failure = ref<string | null>(null)
   const busy = ref(false)
