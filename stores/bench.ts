@@ -65,7 +65,7 @@ export const useBenchStore = defineStore('bench', () => {
   const isAway = computed(() => isOffline.value || outbox.unreachable || navigator.onLine === false)
   const home = computed<BenchHome>(() => ({ boothId: session.device?.boothId ?? null, scaleId: session.device?.scaleId ?? null, userId: session.user?.id ?? null }))
   const reckoning = computed(() => (setup.value && snapshot.value ? reckon(setup.value, snapshot.value) : null))
-  const tools = computed(() => (run.value && snapshot.value ? benchTools(run.value.tools, snapshot.value) : null))
+  const tools = computed(() => (run.value && snapshot.value ? benchTools({ ...run.value.tools, revisionId: run.value.mixRevisionId }, snapshot.value) : null))
 
   /** Added to what the one clock of all screens says while that was not measured yet. */
   const startOffsetMs = computed(() => (timers.offsetMs === null ? keptOffsetMs.value ?? 0 : 0))

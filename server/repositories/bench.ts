@@ -28,10 +28,25 @@ interface MixRow {
   notes: string | null
 }
 
+const mixRow = ['r.*', 'x.id', 'x.code', 'x.name', 'r.id as revision_id'] as const
+
 /** Mixes in use with their present revision, by code. */
 export async function listBenchMixes(db: Db): Promise<BenchMix[]> {
   const rows = await db('mixes as x').join('mix_revisions as r', 'r.id', 'x.current_revision_id').whereNull('x.archived_at').orderBy('x.code')
-    .select<MixRow[]>('r.*', 'x.id', 'x.code', 'x.name', 'r.id as revision_id')
+    .select<MixRow[]>(...mixRow)
+  return await toBenchMixes(rows, db)
+}
+
+/** Revisions that pots are still being made by although they are no longer in use. */
+export async function listHeldMixes(db: Db): Promise<BenchMix[]> {
+  const rows = await db('mixes as x').join('mix_revisions as r', 'r.mix_id', 'x.id')
+    .whereIn('r.id', db('batch_drafts').where('state', 'open').select('mix_revision_id'))
+    .where(left => left.whereNotNull('x.archived_at').orWhereRaw('NOT (r.id <=> x.current_revision_id)')).orderBy(['x.code', 'r.number'])
+    .select<MixRow[]>(...mixRow)
+  return await toBenchMixes(rows, db)
+}
+
+async function toBenchMixes(rows: MixRow[], db: Db): Promise<BenchMix[]> {
   const components = await componentsOf(rows.map((row) => row.revision_id), db)
   return rows.map((row) => ({
     id: row.id,
@@ -71,9 +86,9 @@ interface MaterialRow {
   protection_spraying: string | null
 }
 
-/** Materials in use with the words of their hazards, by code. */
-export async function listBenchMaterials(db: Db): Promise<BenchMaterial[]> {
-  const rows = await db('materials').whereNull('archived_at').orderBy('code').select<MaterialRow[]>('*')
+/** Materials in use, and these others, with the words of their hazards, by code. */
+export async function listBenchMaterials(others: readonly string[], db: Db): Promise<BenchMaterial[]> {
+  const rows = await db('materials').where(used => used.whereNull('archived_at').orWhereIn('id', [...others])).orderBy('code').select<MaterialRow[]>('*')
   const statements = await db('hazard_statements').select<{ code: string; text: string }[]>('code', 'text')
   const texts = new Map(statements.map(({ code, text }) => [code, text]))
   return rows.map((row) => ({

@@ -3,7 +3,7 @@ import type { Gun } from '#shared/schemas/shop'
 import { toMs } from '#shared/utils/instant'
 import { shopDate, startOfShopDay } from '#shared/utils/zone'
 import type { Knex } from 'knex'
-import { listBenchCups, listBenchMaterials, listBenchMixes, listBenchLots, listBenchPeople, listOpenDrafts } from '../repositories/bench'
+import { listBenchCups, listBenchMaterials, listBenchMixes, listBenchLots, listBenchPeople, listHeldMixes, listOpenDrafts } from '../repositories/bench'
 import { readHead } from '../repositories/events'
 import { readShop } from '../repositories/settings'
 import { listBooths, listGuns, listScales } from '../repositories/shop'
@@ -29,11 +29,13 @@ export function readBench(ctx: Context): Promise<BenchSnapshot> {
     const now = await ctx.clock.now(trx)
     const { zone } = await readShop(trx)
     const today = shopDate(now, zone)
+    const heldMixes = await listHeldMixes(trx)
     return {
       serverNow: isoOf(toInstant(now)),
       lastSeq,
       mixes: await listBenchMixes(trx),
-      materials: await listBenchMaterials(trx),
+      heldMixes,
+      materials: await listBenchMaterials(heldMixes.flatMap(({ components }) => components.map(({ materialId }) => materialId)), trx),
       lots: await listBenchLots(trx),
       guns: (await listGuns(all, trx)).map(toBenchGun),
       scales: (await listScales(all, trx)).map(({ id, name, source, divisionG, capacityG, mpeG }) => ({ id, name, source, divisionG, capacityG, mpeG })),

@@ -195,6 +195,8 @@ export const BenchSnapshot = z.object({
   serverNow: z.string(),
   lastSeq: z.number(),
   mixes: z.array(BenchMix),
+  /** Revisions no longer in use that pots are still being made by; missing from what an older bench has kept. */
+  heldMixes: z.optional(z.array(BenchMix)),
   materials: z.array(BenchMaterial),
   lots: z.array(BenchLot),
   guns: z.array(BenchGun),

@@ -33,7 +33,7 @@ const OwnState = z.looseObject({
  */
 export function runOfDraft(draft: Draft, snapshot: BenchSnapshot, userId: string): BenchRun | null {
   const own = ownState(draft) ?? stateFromFacts(draft, snapshot)
-  if (own === null || benchTools(own.tools, snapshot) === null) return null
+  if (own === null || benchTools({ ...own.tools, revisionId: draft.mixRevisionId }, snapshot) === null) return null
   const {
     id, planId, potNumber, potCount, seq, mixRevisionId, jobStepId, purpose, pieceIds, plan, corrections, reactiveAt, climate, viscosity, approvals, stopped, code, potLife, device,
   } = draft
@@ -82,11 +82,11 @@ function stateFromFacts(draft: Draft, snapshot: BenchSnapshot): BenchOwnState | 
 }
 
 function toolsOf(draft: Draft, snapshot: BenchSnapshot): BenchTools | null {
-  const mix = snapshot.mixes.find(({ revisionId }) => revisionId === draft.mixRevisionId)
+  const mix = [...snapshot.mixes, ...snapshot.heldMixes ?? []].find(({ revisionId }) => revisionId === draft.mixRevisionId)
   const scale = snapshot.scales.find(({ id }) => id === draft.scaleId) ?? snapshot.scales[0]
   const cup = snapshot.cups.at(-1)
   if (!mix || !scale || !cup) return null
-  return benchTools({ mixId: mix.id, scaleId: scale.id, cupId: cup.id, gunId: draft.gunId, boothId: draft.boothId }, snapshot)
+  return benchTools({ mixId: mix.id, revisionId: mix.revisionId, scaleId: scale.id, cupId: cup.id, gunId: draft.gunId, boothId: draft.boothId }, snapshot)
 }
 
 /** The safe order, with what corrections added behind the step that they followed. */

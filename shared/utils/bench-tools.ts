@@ -34,6 +34,8 @@ export interface BenchTools {
 
 export interface ToolChoice {
   mixId: string
+  /** The revision that a pot was begun by; the one in use where not given. */
+  revisionId?: string
   scaleId: string
   cupId: string
   gunId: string | null
@@ -46,7 +48,7 @@ export interface ToolChoice {
  * @throws EngineError for a mix that cannot be reckoned
  */
 export function benchTools(choice: ToolChoice, snapshot: BenchSnapshot): BenchTools | null {
-  const mix = snapshot.mixes.find(({ id }) => id === choice.mixId)
+  const mix = mixOf(choice, snapshot)
   const scale = snapshot.scales.find(({ id }) => id === choice.scaleId)
   const cup = snapshot.cups.find(({ id }) => id === choice.cupId)
   if (!mix || !scale || !cup) return null
@@ -72,6 +74,12 @@ export function benchTools(choice: ToolChoice, snapshot: BenchSnapshot): BenchTo
     fillLineG: inGrams(cup.fillLineMl, densityGPerMl),
     limitG: limit === null ? null : print(limit),
   }
+}
+
+/** A pot keeps the revision that it was begun by, whatever was written since. */
+function mixOf({ mixId, revisionId }: ToolChoice, { mixes, heldMixes = [] }: BenchSnapshot): BenchMix | undefined {
+  if (revisionId === undefined) return mixes.find(({ id }) => id === mixId)
+  return [...mixes, ...heldMixes].find(mix => mix.revisionId === revisionId)
 }
 
 function partsOf(mix: BenchMix, snapshot: BenchSnapshot): BenchPart[] | null {
