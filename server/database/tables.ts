@@ -2,7 +2,9 @@
  * Every table of the project and what the application's database user may do with it.
  *
  * `record`: what happened; never changed, so INSERT and SELECT only. `mutable`: present state.
- * `erasable`: present state whose rows may go (keys that expire, limits, sessions, what can be made anew from the record, what nothing refers to). `reference`: read only.
+ * `erasable`: present state whose rows may go (keys that expire, limits, sessions, what can be made anew from the record).
+ * `removable`: what a person may take away again while nothing refers to it; the foreign keys hold everything else.
+ * `reference`: read only.
  * A table that stands in no list fails a test, so that nobody forgets to decide.
  */
 export const tables = {
@@ -31,20 +33,16 @@ export const tables = {
     'approvals',
     'batch_current',
     'batch_drafts',
-    'booths',
     'climate_readings',
     'devices',
-    'guns',
     'job_steps',
     'jobs',
     'ledger_head',
     'lots',
     'mixes',
-    'mixing_cups',
     'number_blocks',
     'number_series',
     'pieces',
-    'scales',
     'schedule_revisions',
     'schedule_steps',
     'schedules',
@@ -52,7 +50,8 @@ export const tables = {
     'timers',
     'users',
   ],
-  erasable: ['batch_uses', 'idempotency_keys', 'materials', 'sessions', 'sign_in_limits'],
+  erasable: ['batch_uses', 'idempotency_keys', 'sessions', 'sign_in_limits'],
+  removable: ['booths', 'guns', 'materials', 'mixing_cups', 'scales'],
   reference: ['chemistry_rules', 'hazard_statements', 'knex_migrations'],
 } as const
 
@@ -62,5 +61,6 @@ export const privileges: Record<TableKind, string> = {
   record: 'SELECT, INSERT',
   mutable: 'SELECT, INSERT, UPDATE',
   erasable: 'SELECT, INSERT, UPDATE, DELETE',
+  removable: 'SELECT, INSERT, UPDATE, DELETE',
   reference: 'SELECT',
 }

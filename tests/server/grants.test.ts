@@ -19,6 +19,7 @@ const forbidden: Record<TableKind, ('insert' | 'update' | 'delete')[]> = {
   record: ['update', 'delete'],
   mutable: ['delete'],
   erasable: [],
+  removable: [],
   reference: ['insert', 'update', 'delete'],
 }
 
