@@ -1,6 +1,6 @@
 /** What the invented shop stands on. Figures are common practice, no source. */
 
-export const shop = { name: 'Kridtvang Finishing', zone: 'Europe/Copenhagen' }
+export const shop = { name: 'Kridtvang Finishing', zone: 'Europe/Copenhagen', currency: 'EUR' }
 
 /** Local times of the shop; Monday is 1. */
 export const workingHours = { days: [1, 2, 3, 4, 5], from: '07:00', to: '16:00', breaks: [{ from: '11:30', to: '12:00' }] }

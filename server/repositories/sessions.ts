@@ -12,13 +12,14 @@ interface UserRow {
   initials: string
   role: Role
   password_hash: string | null
+  must_change_password: number
 }
 
 /** What is needed to check a password. Inactive people are not found. */
 export async function findSignInUser(email: string, db: Db): Promise<UserRow | undefined> {
   return db('users')
     .where({ email, active: true })
-    .first<UserRow | undefined>('id', 'email', 'name', 'initials', 'role', 'password_hash')
+    .first<UserRow | undefined>('id', 'email', 'name', 'initials', 'role', 'password_hash', 'must_change_password')
 }
 
 interface NewSession {
@@ -55,12 +56,14 @@ export async function findSessionUser(id: string, db: Db): Promise<UserPrincipal
     .where('s.expires_at', '>', db.raw('UTC_TIMESTAMP(3)'))
     .where('u.active', true)
     .first<(Omit<UserRow, 'password_hash'> & { stale: number }) | undefined>(
-      'u.id', 'u.email', 'u.name', 'u.initials', 'u.role',
+      'u.id', 'u.email', 'u.name', 'u.initials', 'u.role', 'u.must_change_password',
       db.raw('(s.last_seen_at < UTC_TIMESTAMP(3) - INTERVAL 5 MINUTE) as stale'),
     )
   if (!row) return null
   if (Number(row.stale) === 1) await touchSession(id, db)
-  return { id: row.id, email: row.email, name: row.name, initials: row.initials, role: row.role, sessionId: id }
+  return {
+    id: row.id, email: row.email, name: row.name, initials: row.initials, role: row.role, sessionId: id, mustChangePassword: row.must_change_password === 1,
+  }
 }
 
 /** Use of a session pushes its end out again, at most once in five minutes. */

@@ -1,27 +1,28 @@
 import type { Knex } from 'knex'
-import type { Booth, Gun, MixingCup, Scale, User } from '#shared/schemas/shop'
+import type { Booth, Gun, MixingCup, Scale } from '#shared/schemas/shop'
 import { decimalOf, decimalOrNull } from '../utils/rows'
 
 type Db = Knex | Knex.Transaction
 
 /** Which page of a list by name. */
 export interface NamePage {
+  /** True: those taken out of use; false: those in use. */
   inactive: boolean
   after: { name: string, id: string } | null
   limit: number
 }
 
-interface Head {
+export interface Head {
   id: string
   name: string
   active: number
   version: number
 }
 
-const headOf = (row: Head) => ({ id: row.id, name: row.name, active: row.active === 1, version: row.version })
+export const headOf = (row: Head) => ({ id: row.id, name: row.name, active: row.active === 1, version: row.version })
 
-function page(query: Knex.QueryBuilder, table: string, { inactive, after, limit }: NamePage): Knex.QueryBuilder {
-  if (!inactive) void query.where(`${table}.active`, true)
+export function page(query: Knex.QueryBuilder, table: string, { inactive, after, limit }: NamePage): Knex.QueryBuilder {
+  void query.where(`${table}.active`, !inactive)
   if (after) void query.whereRaw(`(${table}.name, ${table}.id) > (?, ?)`, [after.name, after.id])
   return query.orderBy([`${table}.name`, `${table}.id`]).limit(limit)
 }
@@ -35,13 +36,21 @@ interface BoothRow extends Head {
 /** Booths by name. */
 export async function listBooths(options: NamePage, db: Db): Promise<Booth[]> {
   const rows: BoothRow[] = await page(db('booths').select('booths.*'), 'booths', options)
-  return rows.map(row => ({
-    ...headOf(row),
-    clearanceMin: decimalOf(row.clearance_min),
-    clearanceMeasured: row.clearance_measured === 1,
-    extraction: row.extraction,
-  }))
+  return rows.map(toBooth)
 }
+
+/** A booth, in use or not. */
+export async function findBooth(id: string, db: Db): Promise<Booth | null> {
+  const row = await db('booths').where({ id }).first<BoothRow | undefined>('*')
+  return row ? toBooth(row) : null
+}
+
+const toBooth = (row: BoothRow): Booth => ({
+  ...headOf(row),
+  clearanceMin: decimalOf(row.clearance_min),
+  clearanceMeasured: row.clearance_measured === 1,
+  extraction: row.extraction,
+})
 
 interface GunRow extends Head {
   kind: Gun['kind']
@@ -102,17 +111,25 @@ interface ScaleRow extends Head {
 /** Scales by name; how far off the next check is depends on the day. */
 export async function listScales(options: NamePage, db: Db): Promise<Omit<Scale, 'nextCheckInDays'>[]> {
   const rows: ScaleRow[] = await page(db('scales').select('scales.*'), 'scales', options)
-  return rows.map(row => ({
-    ...headOf(row),
-    source: row.source,
-    divisionG: decimalOf(row.division_g),
-    capacityG: decimalOf(row.capacity_g),
-    mpeG: decimalOrNull(row.mpe_g),
-    accuracyClass: row.accuracy_class,
-    verificationIntervalG: decimalOrNull(row.verification_interval_g),
-    nextCheckOn: row.next_check_on,
-  }))
+  return rows.map(toScale)
 }
+
+/** A scale, in use or not. */
+export async function findScaleFacts(id: string, db: Db): Promise<Omit<Scale, 'nextCheckInDays'> | null> {
+  const row = await db('scales').where({ id }).first<ScaleRow | undefined>('*')
+  return row ? toScale(row) : null
+}
+
+const toScale = (row: ScaleRow): Omit<Scale, 'nextCheckInDays'> => ({
+  ...headOf(row),
+  source: row.source,
+  divisionG: decimalOf(row.division_g),
+  capacityG: decimalOf(row.capacity_g),
+  mpeG: decimalOrNull(row.mpe_g),
+  accuracyClass: row.accuracy_class,
+  verificationIntervalG: decimalOrNull(row.verification_interval_g),
+  nextCheckOn: row.next_check_on,
+})
 
 interface CupRow extends Head {
   capacity_ml: string
@@ -122,25 +139,14 @@ interface CupRow extends Head {
 /** Mixing cups by name. */
 export async function listMixingCups(options: NamePage, db: Db): Promise<MixingCup[]> {
   const rows: CupRow[] = await page(db('mixing_cups').select('mixing_cups.*'), 'mixing_cups', options)
-  return rows.map(row => ({ ...headOf(row), capacityMl: decimalOf(row.capacity_ml), fillLineMl: decimalOf(row.fill_line_ml) }))
+  return rows.map(toCup)
 }
 
-interface UserRow extends Head {
-  email: string
-  initials: string
-  role: User['role']
-  isocyanate_training_until: string | null
+/** A mixing cup, in use or not. */
+export async function findMixingCup(id: string, db: Db): Promise<MixingCup | null> {
+  const row = await db('mixing_cups').where({ id }).first<CupRow | undefined>('*')
+  return row ? toCup(row) : null
 }
 
-/** People by name. Passwords and PINs are not read at all. */
-export async function listUsers(options: NamePage, db: Db): Promise<Omit<User, 'isocyanateTraining'>[]> {
-  const columns = ['id', 'name', 'active', 'version', 'email', 'initials', 'role', 'isocyanate_training_until']
-  const rows: UserRow[] = await page(db('users').select(columns.map(column => `users.${column}`)), 'users', options)
-  return rows.map(row => ({
-    ...headOf(row),
-    email: row.email,
-    initials: row.initials,
-    role: row.role,
-    isocyanateTrainingUntil: row.isocyanate_training_until,
-  }))
-}
+const toCup = (row: CupRow): MixingCup =>
+  ({ ...headOf(row), capacityMl: decimalOf(row.capacity_ml), fillLineMl: decimalOf(row.fill_line_ml) })

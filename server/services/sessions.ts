@@ -1,14 +1,16 @@
+import type { OwnPasswordBody } from '#shared/schemas/people'
 import type { Approval, ApprovalBody, Session, SignInBody } from '#shared/schemas/session'
 import { may } from '#shared/utils/permissions'
 import { insertApproval } from '../repositories/approvals'
+import { endSessionsOf, updatePassword } from '../repositories/people'
 import { endSession, findSignInUser, insertSession, sessionHours } from '../repositories/sessions'
 import { readShop } from '../repositories/settings'
 import type { Context, UserPrincipal } from '../utils/context'
-import { forbidden, Refusal } from '../utils/errors'
+import { forbidden, Refusal, ruleBroken } from '../utils/errors'
 import { sha256 } from '../utils/hash'
 import { newId } from '../utils/ids'
 import { signInLimit } from '../utils/limits'
-import { verifyNobody, verifySecret } from '../utils/password'
+import { hashSecret, verifyNobody, verifySecret } from '../utils/password'
 import { isoOf, toInstant } from '../utils/rows'
 import { mutate } from '../utils/transactions'
 
@@ -33,6 +35,7 @@ export async function signIn(ctx: Context, body: SignInBody, token: string): Pro
   const deviceId = ctx.principal.device?.id ?? null
   const principal: UserPrincipal = {
     id: user.id, name: user.name, initials: user.initials, email: user.email, role: user.role, sessionId,
+    mustChangePassword: user.must_change_password === 1,
   }
   const asUser: Context = { ...ctx, principal: { kind: 'user', user: principal, device: ctx.principal.device } }
   const replaced = ctx.principal.user
@@ -61,13 +64,16 @@ export async function signOut(ctx: Context): Promise<void> {
   })
 }
 
-const sessionEnded = (id: string) => ({ type: 'session-ended', subject: `session:${id}`, boothId: null, payload: {} })
+/** Closes the streams of a session in every process. */
+export const sessionEnded = (id: string) => ({ type: 'session-ended', subject: `session:${id}`, boothId: null, payload: {} })
 
 /** Who this browser is. */
 export async function describeSession(ctx: Pick<Context, 'db' | 'principal'>): Promise<Session> {
   const { user, device } = ctx.principal
   return {
-    user: user && { id: user.id, name: user.name, initials: user.initials, email: user.email, role: user.role },
+    user: user && {
+      id: user.id, name: user.name, initials: user.initials, email: user.email, role: user.role, mustChangePassword: user.mustChangePassword ?? false,
+    },
     device,
     shop: await readShop(ctx.db),
   }
@@ -82,6 +88,8 @@ export async function describeSession(ctx: Pick<Context, 'db' | 'principal'>): P
 export async function approve(ctx: Context, body: ApprovalBody): Promise<Approval> {
   const user = await checkPassword(ctx, body)
   if (!may(user.role, 'approvals:give')) throw forbidden('A foreman or manager has to approve this.')
+  // A first password is known to whoever typed it: that is nobody's word yet.
+  if (user.must_change_password === 1) throw forbidden('Sign in once and choose a password of your own first.')
   return mutate(ctx, async ({ trx, now, audit }) => {
     const id = newId()
     const expiresAt = now + approvalMs
@@ -92,12 +100,37 @@ export async function approve(ctx: Context, body: ApprovalBody): Promise<Approva
   })
 }
 
-async function checkPassword(ctx: Context, { email, password }: SignInBody) {
+/**
+ * Sets the asking person's own password. Every session that was open ends, in every process; the asking browser gets a new one.
+ *
+ * @param token random value that goes into the cookie; only its hash is stored
+ * @throws Refusal 422 beside the field for a wrong present password, 429 after too many of them
+ */
+export async function changeOwnPassword(ctx: Context, body: OwnPasswordBody, token: string): Promise<Session> {
+  const user = ctx.principal.user
+  if (!user) throw forbidden()
+  await checkPassword(ctx, { email: user.email, password: body.currentPassword }, () =>
+    ruleBroken('wrong-password', 'The present password is another one.', [{ path: 'currentPassword', message: 'The present password is another one.' }]))
+  const passwordHash = await hashSecret(body.newPassword)
+  const sessionId = sha256(token)
+  const asUser: Context = { ...ctx, principal: { ...ctx.principal, kind: 'user', user: { ...user, sessionId, mustChangePassword: false } } }
+  await mutate(asUser, async ({ trx, now, audit, publish }) => {
+    await updatePassword(user.id, passwordHash, false, now, trx)
+    const ended = await endSessionsOf(user.id, 'password-changed', now, trx)
+    await insertSession({ id: sessionId, userId: user.id, deviceId: ctx.principal.device?.id ?? null, now, expiresAt: now + sessionHours * hourMs }, trx)
+    audit({ action: 'user.password-changed', subject: `user:${user.id}`, facts: { endedSessions: ended.length } })
+    for (const id of ended) publish(sessionEnded(id))
+    return null
+  })
+  return describeSession(asUser)
+}
+
+async function checkPassword(ctx: Context, { email, password }: SignInBody, refusal: () => Refusal = wrong) {
   const limit = signInLimit(ctx.db, email, ctx.principal.device?.id ?? null)
   await limit.consume()
   const user = await findSignInUser(email, ctx.db)
   const right = user?.password_hash ? await verifySecret(user.password_hash, password) : await verifyNobody(password)
-  if (!user || !right) throw wrong()
+  if (!user || !right) throw refusal()
   await limit.clear()
   return user
 }

@@ -1,6 +1,6 @@
 import type { Timer, TimerCreateBody, TimerExtendBody, TimerSilenceBody } from '#shared/schemas/timers'
 import { findTimerOf, getTimer, lockTimer, lockTimersOf, setTimer, timedApplicationsUnder, updateTimer, type TimerChange } from '../repositories/timers'
-import { activeName } from '../repositories/people'
+import { activeName } from '../repositories/people-names'
 import { findWindows } from '../repositories/windows'
 import type { Context, Principal } from '../utils/context'
 import { userIdOf } from '../utils/context'

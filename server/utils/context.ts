@@ -21,6 +21,8 @@ export interface UserPrincipal {
   initials: string
   email: string
   sessionId: string
+  /** True while somebody else knows the password: only changing it is answered. */
+  mustChangePassword?: boolean
 }
 
 /** Who asks. A signed-in person at an enrolled tablet is a user with a device. */

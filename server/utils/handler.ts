@@ -72,6 +72,9 @@ function admit(event: H3Event, permission: Action | 'public'): Principal {
   if (permission === 'public') return principal ?? nobody
   if (!principal) throw new Refusal(401, 'signed-out', 'Sign in first.')
   requirePermission(principal, permission)
+  if (principal.user?.mustChangePassword && permission !== 'password:change') {
+    throw new Refusal(403, 'password-change-due', 'Choose a password of your own first.')
+  }
   return principal
 }
 

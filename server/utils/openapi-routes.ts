@@ -17,9 +17,12 @@ import { HazardStatementList, Material, MaterialCreateBody, MaterialList, Materi
 import { Mix, MixCreateBody, MixList, MixListQuery, MixPatchBody, MixQuery, MixRevisionBody } from '#shared/schemas/mixes'
 import { NumberBlock, NumberBlockVoidBody } from '#shared/schemas/number-blocks'
 import { OpenApiDocument } from '#shared/schemas/openapi'
+import { OwnPasswordBody, PasswordResetBody, PersonCreateBody, PersonPatchBody } from '#shared/schemas/people'
 import { Schedule, ScheduleList, ScheduleListQuery, ScheduleQuery } from '#shared/schemas/schedules'
 import { Approval, ApprovalBody, Session, SignInBody } from '#shared/schemas/session'
-import { BoothExtractionBody, BoothList, GunList, MixingCupList, PeopleList, ScaleList, ShopListQuery, UserList } from '#shared/schemas/shop'
+import { Settings, SettingsPatchBody } from '#shared/schemas/settings'
+import { Booth, BoothExtractionBody, BoothList, Gun, GunList, MixingCup, MixingCupList, PeopleList, Scale, ScaleList, ShopListQuery, User, UserList } from '#shared/schemas/shop'
+import { BoothBody, BoothPatchBody, GunBody, GunPatchBody, MixingCupBody, MixingCupPatchBody, ScaleBody, ScalePatchBody } from '#shared/schemas/shop-edit'
 import { Timer, TimerActionBody, TimerCreateBody, TimerExtendBody, TimerList, TimerListQuery, TimerSilenceBody } from '#shared/schemas/timers'
 import type { Action } from '#shared/utils/permissions'
 
@@ -50,6 +53,7 @@ type Entry = [path: string, permission: ApiRoute['permission'], summary: string,
 const get = (...[path, permission, summary, answer, extra]: Entry): ApiRoute =>
   ({ method: 'get', path, permission, summary, answer, status: 200, idempotent: false, ...extra })
 const put = (...entry: Entry): ApiRoute => ({ ...get(...entry), method: 'put' })
+const patch = (...entry: Entry): ApiRoute => ({ ...get(...entry), method: 'patch' })
 const post = (...[path, permission, summary, answer, extra]: Entry): ApiRoute =>
   ({ method: 'post', path, permission, summary, answer, status: 201, idempotent: true, ...extra })
 const patch = (...entry: Entry): ApiRoute => ({ ...get(...entry), method: 'patch' })
@@ -66,6 +70,7 @@ export const apiRoutes: readonly ApiRoute[] = [
   get('/api/session', 'public', 'Who this browser is', Session),
   post('/api/session', 'public', 'Signs in', Session, { body: SignInBody, idempotent: false }),
   remove('/api/session', 'public', 'Signs out', null),
+  post('/api/session/password', 'password:change', 'Sets one\'s own password; every other session ends', Session, { body: OwnPasswordBody, status: 200, idempotent: false }),
   post('/api/approvals', 'approvals:create', 'A foreman allows one thing, once', Approval, { body: ApprovalBody }),
   get('/api/time', 'time:read', 'The shop\'s clock', ServerTime),
   get('/api/live', 'live:read', 'Pots, windows and alarms at one instant', LiveSnapshot, { query: LiveQuery }),
@@ -120,10 +125,32 @@ export const apiRoutes: readonly ApiRoute[] = [
   post('/api/booths/{id}/clean', 'booths:clean', 'Records a booth, its duct and filters as clean', BoothChemistry, { ...byId, body: BoothCleanBody }),
   post('/api/booths/{id}/extraction', 'booths:extraction', 'Whether the extraction of a booth runs', LiveBooth, { ...byId, body: BoothExtractionBody, status: 200 }),
   get('/api/people', 'people:read', 'Names of the people of the shop', PeopleList),
+  get('/api/booths/{id}', 'shop:read', 'A booth, in use or not', Booth, byId),
+  post('/api/booths', 'shop:write', 'Enters a booth', Booth, { body: BoothBody }),
+  patch('/api/booths/{id}', 'shop:write', 'Changes a booth or takes it out of use', Booth, { ...byId, body: BoothPatchBody }),
+  remove('/api/booths/{id}', 'shop:write', 'Takes a booth away that nothing refers to', null, byId),
   get('/api/guns', 'shop:read', 'Guns', GunList, { query: ShopListQuery }),
+  get('/api/guns/{id}', 'shop:read', 'A gun, in use or not', Gun, byId),
+  post('/api/guns', 'shop:write', 'Enters a gun', Gun, { body: GunBody }),
+  patch('/api/guns/{id}', 'shop:write', 'Changes a gun or takes it out of use', Gun, { ...byId, body: GunPatchBody }),
+  remove('/api/guns/{id}', 'shop:write', 'Takes a gun away that nothing refers to', null, byId),
   get('/api/scales', 'shop:read', 'Scales', ScaleList, { query: ShopListQuery }),
+  get('/api/scales/{id}', 'shop:read', 'A scale, in use or not', Scale, byId),
+  post('/api/scales', 'shop:write', 'Enters a scale', Scale, { body: ScaleBody }),
+  patch('/api/scales/{id}', 'shop:write', 'Changes a scale or takes it out of use', Scale, { ...byId, body: ScalePatchBody }),
+  remove('/api/scales/{id}', 'shop:write', 'Takes a scale away that nothing refers to', null, byId),
   get('/api/mixing-cups', 'shop:read', 'Mixing cups', MixingCupList, { query: ShopListQuery }),
+  get('/api/mixing-cups/{id}', 'shop:read', 'A mixing cup, in use or not', MixingCup, byId),
+  post('/api/mixing-cups', 'shop:write', 'Enters a mixing cup', MixingCup, { body: MixingCupBody }),
+  patch('/api/mixing-cups/{id}', 'shop:write', 'Changes a mixing cup or takes it out of use', MixingCup, { ...byId, body: MixingCupPatchBody }),
+  remove('/api/mixing-cups/{id}', 'shop:write', 'Takes a mixing cup away that nothing refers to', null, byId),
   get('/api/users', 'users:read', 'People', UserList, { query: ShopListQuery }),
+  get('/api/users/{id}', 'users:read', 'A person', User, byId),
+  post('/api/users', 'users:write', 'Enters a person with a first password', User, { body: PersonCreateBody }),
+  patch('/api/users/{id}', 'users:write', 'Changes a person or takes the right to sign in away', User, { ...byId, body: PersonPatchBody }),
+  post('/api/users/{id}/password', 'users:write', 'Gives a person a new first password', User, { ...byId, body: PasswordResetBody, status: 200 }),
+  get('/api/settings', 'settings:read', 'What holds for the whole shop', Settings),
+  patch('/api/settings', 'settings:write', 'Changes what holds for the whole shop', Settings, { body: SettingsPatchBody }),
   get('/api/devices', 'devices:read', 'Enrolled benches and screens', DeviceList),
   post('/api/devices', 'devices:write', 'Makes this browser a bench or a screen', Device, { body: DeviceCreateBody }),
   remove('/api/devices/{id}', 'devices:write', 'Takes a bench\'s or screen\'s right away', null, { params: DeviceParams }),

@@ -23,6 +23,8 @@ const SessionUser = z.object({
   initials: z.string(),
   email: z.string(),
   role: z.enum(roles),
+  /** Somebody else knows the password: nothing else is answered before it is changed. */
+  mustChangePassword: z.boolean(),
 })
 
 /** What this browser was made to be. */
@@ -38,7 +40,7 @@ const SessionDevice = z.object({
 export const Session = z.object({
   user: z.nullable(SessionUser),
   device: z.nullable(SessionDevice),
-  shop: z.object({ name: z.string(), zone: z.string(), demo: z.boolean() }),
+  shop: z.object({ name: z.string(), zone: z.string(), currency: z.nullable(z.string()), demo: z.boolean() }),
 })
 export type Session = z.infer<typeof Session>
 

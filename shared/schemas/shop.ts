@@ -79,6 +79,10 @@ export const User = z.object({
   isocyanateTrainingUntil: z.nullable(DateText),
   /** By the shop's today; null where no training is recorded. */
   isocyanateTraining: z.nullable(z.enum(['valid', 'ends-soon', 'over'])),
+  /** False for those taken out of use and those without a password. */
+  canSignIn: z.boolean(),
+  /** Somebody else knows the password; it has to be changed at the next sign-in. */
+  mustChangePassword: z.boolean(),
 })
 export type User = z.infer<typeof User>
 export const UserList = pageOf(User)

@@ -291,7 +291,7 @@ describe('making a first manager', () => {
     expect(others).toEqual([])
     expect(user).toMatchObject({ email: 'ada@shop.example', initials: 'AL', role: 'manager', demo_password: 0 })
     expect(await verifySecret(user?.password_hash ?? '', password)).toBe(true)
-    expect(await readShop(empty.db)).toEqual({ name: 'Lind', zone: 'Europe/Dublin', demo: false })
+    expect(await readShop(empty.db)).toEqual({ name: 'Lind', zone: 'Europe/Dublin', currency: null, demo: false })
     expect(await rows('SELECT code FROM hazard_statements WHERE code = \'H226\'', [], empty.db)).toHaveLength(1)
     expect((await verifyChain(empty.db)).ok).toBe(true)
     expect((await create(password, manager)).stderr).toContain('has people in it already')

@@ -1,4 +1,4 @@
-import { listPeople } from '../../services/people'
+import { listPeople } from '../../services/people-names'
 
 export default defineRoute({
   permission: 'people:read',

@@ -1,0 +1,9 @@
+import { IdParams } from '#shared/schemas/common'
+import { gunKind, removeThing } from '../../../services/shop-edit'
+
+export default defineRoute({
+  permission: 'shop:write',
+  params: IdParams,
+  status: 204,
+  handle: ({ ctx, params }) => removeThing(ctx, gunKind, params.id),
+})
