@@ -57,6 +57,15 @@ export function percent(value: string, options: { decimals?: number, signed?: bo
   return `${sign}${groups.join(THIN)}${fraction && `.${fraction}`}\u00A0%`
 }
 
+/**
+ * A price: `11.20 EUR`. The space does not break.
+ *
+ * @param currency code of ISO 4217; without one the figure stands alone
+ */
+export function money(value: string, currency: string | null | undefined): string {
+  return currency ? `${grams(value, 2)}\u00A0${currency}` : grams(value, 2)
+}
+
 /** Area in m², two decimals: `21.60`. */
 export function area(valueM2: string, decimals = 2): string {
   return grams(valueM2, decimals)

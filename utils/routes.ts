@@ -1,6 +1,9 @@
 /** The only place that spells the path of a page. Ids are opaque strings (UUIDs, codes). */
 const at = (base: string, id: string): string => `${base}/${encodeURIComponent(id)}`
 
+/** Stands in an address where the id of what is there already would stand. */
+export const newThing = 'new'
+
 export const routes = {
   home: (): string => '/',
   signIn: (): string => '/sign-in',
@@ -28,4 +31,18 @@ export const routes = {
   bench: (): string => '/bench',
   screen: (boothId: string): string => at('/screen', boothId),
   shop: (): string => '/shop',
+  /** Of a booth, gun and so on; `newThing` instead of an id opens an empty form. */
+  booth: (id: string): string => at('/shop/booths', id),
+  gun: (id: string): string => at('/shop/guns', id),
+  scale: (id: string): string => at('/shop/scales', id),
+  mixingCup: (id: string): string => at('/shop/cups', id),
+  person: (id: string): string => at('/shop/people', id),
+  settings: (): string => '/shop/settings',
+  /** The signed-in person's own page. */
+  me: (): string => '/shop/me',
 } as const
+
+/** A path of this shop out of an address, or null: an address from outside must not be able to send people elsewhere. */
+export function localPath(to: unknown): string | null {
+  return typeof to === 'string' && /^\/(?![/\\])/.test(to) ? to : null
+}

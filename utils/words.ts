@@ -20,6 +20,8 @@ export const GUN_SHAPE_WORDS = { flat: 'flat panels', frames: 'frames', sticks: 
 
 export const GUN_WORDS = { 'cup-gun': 'Cup gun', 'pressure-pot': 'Pressure pot', 'pump': 'Pump' } as const
 
+export const EXTRACTION_WORDS = { running: 'running', off: 'off', unknown: 'not known' } as const
+
 export const PERSON_WORDS = { sprayer: 'Sprayer', foreman: 'Foreman', manager: 'Manager' } as const
 
 export const REVISION_WORDS = { draft: 'Draft', released: 'Released', superseded: 'Superseded' } as const
