@@ -42,10 +42,16 @@ export function useEventStream(boothId: MaybeRefOrGetter<string | null> = null):
     if (jumped) void clock.renew()
   }
 
+  function hear(event: LiveEvent): void {
+    heed(store.hearEvent(event))
+    // Booths, guns and names stand in the snapshot alone; they change rarely.
+    if (event.type === 'shop') connection.connect()
+  }
+
   const connection = new LiveConnection({
     load,
     open,
-    onEvent: (data) => heed(store.hearEvent(JSON.parse(data) as LiveEvent)),
+    onEvent: (data) => hear(JSON.parse(data) as LiveEvent),
     onBeat: (data) => heed(store.hearBeat(JSON.parse(data) as LiveBeat)),
     onStale: store.markStale,
     onFailure: (error) => { refused.value = error instanceof ApiFailure && (error.status === 401 || error.status === 403) },
