@@ -9,21 +9,26 @@ afterAll(() => admin.destroy())
 
 /** Tables whose newest row has a page of its own. */
 const things = ['batches', 'jobs', 'materials', 'lots', 'mixes', 'schedules'] as const
+
+/** Editors of the shop, where their things lie in the database. */
+const editors = { booths: 'booths', guns: 'guns', scales: 'scales', cups: 'mixing_cups', people: 'users' } as const
 const ids = new Map<string, string>()
 
 beforeAll(async () => {
-  for (const table of things) {
+  for (const table of [...things, ...Object.values(editors)]) {
     const row = await admin(table).orderBy('id').first<{ id: string }>('id')
     ids.set(table, row.id)
   }
 })
 
-const pages = [...things.map((table) => `/${table}`), ...things.map((table) => `/${table}/:id`), '/shop']
+const pages = [...things.map((table) => `/${table}`), ...things.map((table) => `/${table}/:id`), '/shop', '/shop/settings', '/shop/me']
+const forms = Object.entries(editors).flatMap(([path, table]) => [[`/shop/${path}/new`, ''], [`/shop/${path}/:id`, table]] as const)
+const looked = [...pages.map((path) => [path, path.split('/')[1] ?? ''] as const), ...forms]
 
 describe('office pages', () => {
-  it.each(pages)('%s has a heading, fits desk and phone, and axe finds nothing', async (path) => {
+  it.each(looked)('%s has a heading, fits desk and phone, and axe finds nothing', async (path, table) => {
     const { page } = await visitAs('manager')
-    await page.goto(baseUrl + path.replace(':id', ids.get(path.split('/')[1] ?? '') ?? ''))
+    await page.goto(baseUrl + path.replace(':id', ids.get(table) ?? ''))
     await page.getByRole('heading', { level: 1 }).waitFor()
     expect(await overflowsSideways(page)).toBe(false)
     expect(await axeFaults(page)).toEqual([])
