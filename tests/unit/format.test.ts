@@ -1,11 +1,18 @@
 import { describe, expect, it } from 'vitest'
-import { area, calendarDay, clock, clockNear, clockSeconds, day, dayClock, decimalsOf, duration, grams, numberParts, over, percent, ratio, weekday } from '~/utils/format'
+import { area, calendarDay, clock, clockNear, clockSeconds, day, dayClock, decimalsOf, duration, grams, money, numberParts, over, percent, ratio, weekday } from '~/utils/format'
 
 const SECOND = 1000
 const MIN = 60 * SECOND
 const HOUR = 60 * MIN
 const DAY = 24 * HOUR
 const ZONE = 'Europe/Berlin'
+
+describe('money', () => {
+  it('names the currency of the shop, and stands alone where there is none', () => {
+    expect(money('1234.5', 'EUR')).toBe('1\u2009234.50\u00A0EUR')
+    expect(money('11.205', null)).toBe('11.21')
+  })
+})
 
 describe('grams', () => {
   it.each([
