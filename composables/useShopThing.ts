@@ -1,4 +1,4 @@
-import { computed, ref } from 'vue'
+import { computed, ref, shallowRef } from 'vue'
 import { may, type Action } from '#shared/utils/permissions'
 import { useThing } from '~/composables/useThing'
 import { useSessionStore } from '~/stores/session'
@@ -17,7 +17,7 @@ export function useShopThing<T>(path: string, action: Action) {
   const isNew = id === newThing
   const mayWrite = computed(() => session.user !== null && may(session.user.role, action))
   const reading = isNew
-    ? { thing: ref<T | null>(null), failure: ref(null), pending: ref(false), refresh: () => Promise.resolve() }
+    ? { thing: shallowRef<T | null>(null), failure: ref(null), pending: ref(false), refresh: () => Promise.resolve() }
     : useThing<T>(`${path}/${encodeURIComponent(id)}`)
   return { ...reading, isNew, mayWrite }
 }

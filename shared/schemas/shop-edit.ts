@@ -18,7 +18,7 @@ const boothShape = {
   clearanceMin: z.nullable(quantity({ least: '1', most: '1440', decimals: 1 }, 'Give minutes from 1 to 1440, with at most one decimal.')),
 }
 const clearanceGiven = z.refine(
-  (booth: { clearanceMeasured?: boolean, clearanceMin?: string | null }) => booth.clearanceMeasured !== true || booth.clearanceMin !== null,
+  (booth: { clearanceMeasured?: boolean | undefined, clearanceMin?: string | null | undefined }) => booth.clearanceMeasured !== true || booth.clearanceMin !== null,
   { error: 'Give the minutes that were measured.', path: ['clearanceMin'] },
 )
 export const BoothBody = z.strictObject(boothShape).check(clearanceGiven)
