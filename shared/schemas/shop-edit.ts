@@ -17,8 +17,8 @@ const boothShape = {
   /** Minutes; not read where the time was not measured. */
   clearanceMin: z.nullable(quantity({ least: '1', most: '1440', decimals: 1 }, 'Give minutes from 1 to 1440, with at most one decimal.')),
 }
-const clearanceGiven = z.refine(
-  (booth: { clearanceMeasured?: boolean | undefined, clearanceMin?: string | null | undefined }) => booth.clearanceMeasured !== true || booth.clearanceMin !== null,
+const clearanceGiven = z.refine<{ clearanceMeasured?: boolean | undefined, clearanceMin?: string | null | undefined }>(
+  booth => booth.clearanceMeasured !== true || booth.clearanceMin !== null,
   { error: 'Give the minutes that were measured.', path: ['clearanceMin'] },
 )
 export const BoothBody = z.strictObject(boothShape).check(clearanceGiven)
@@ -63,18 +63,18 @@ const isLess = (one: string | null | undefined, other: string | null | undefined
   typeof one === 'string' && typeof other === 'string' && new D(one).lt(other)
 
 const scaleRules = [
-  z.refine(({ divisionG, capacityG }: ScaleFields) => !isLess(capacityG, divisionG), { error: 'A scale carries more than one division.', path: ['capacityG'] }),
-  z.refine(
-    ({ accuracyClass, verificationIntervalG }: ScaleFields) => !(typeof accuracyClass === 'string' && verificationIntervalG === null),
+  z.refine<ScaleFields>(({ divisionG, capacityG }) => !isLess(capacityG, divisionG), { error: 'A scale carries more than one division.', path: ['capacityG'] }),
+  z.refine<ScaleFields>(
+    ({ accuracyClass, verificationIntervalG }) => !(typeof accuracyClass === 'string' && verificationIntervalG === null),
     { error: 'A class needs its verification interval e.', path: ['verificationIntervalG'] },
   ),
-  z.refine(
-    ({ accuracyClass, verificationIntervalG }: ScaleFields) => !(accuracyClass === null && typeof verificationIntervalG === 'string'),
+  z.refine<ScaleFields>(
+    ({ accuracyClass, verificationIntervalG }) => !(accuracyClass === null && typeof verificationIntervalG === 'string'),
     { error: 'The interval e belongs to a class.', path: ['accuracyClass'] },
   ),
   // OIML R 76-1, 3.4.2: d < e ≤ 10 d with an auxiliary indicating device, e = d without. From memory.
-  z.refine(
-    ({ divisionG, verificationIntervalG }: ScaleFields) => !isLess(verificationIntervalG, divisionG),
+  z.refine<ScaleFields>(
+    ({ divisionG, verificationIntervalG }) => !isLess(verificationIntervalG, divisionG),
     { error: 'The interval e is never smaller than the division.', path: ['verificationIntervalG'] },
   ),
 ] as const
@@ -84,8 +84,8 @@ export const ScalePatchBody = z.extend(z.partial(z.strictObject(scaleShape)), ch
 
 const millilitres = quantity({ above: '0', most: '1000000', decimals: 1 }, 'Give millilitres above 0, with at most one decimal.')
 const cupShape = { name, capacityMl: millilitres, fillLineMl: millilitres }
-const fillLineInside = z.refine(
-  ({ capacityMl, fillLineMl }: { capacityMl?: string | undefined, fillLineMl?: string | undefined }) => !isLess(capacityMl, fillLineMl),
+const fillLineInside = z.refine<{ capacityMl?: string | undefined, fillLineMl?: string | undefined }>(
+  ({ capacityMl, fillLineMl }) => !isLess(capacityMl, fillLineMl),
   { error: 'The fill line cannot lie above the rim.', path: ['fillLineMl'] },
 )
 export const MixingCupBody = z.strictObject(cupShape).check(fillLineInside)
