@@ -51,6 +51,8 @@ export default defineNuxtConfig({
     defaults: { nuxtLink: { prefetchOn: { visibility: false, interaction: true } } },
   },
   vite: {
+    // All components are written with setup; the other way of writing them need not travel.
+    vue: { features: { optionsAPI: false } },
     // An inlined font would break the content security policy.
     build: { assetsInlineLimit: 0 },
     // Found late, each of these would make the development server reload the page.

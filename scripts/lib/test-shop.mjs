@@ -17,7 +17,7 @@ const PREFIX = 'test-'
 const GRACE_MS = 1600
 
 /** Suites that need a shop, each with a schema of its own. */
-const SCHEMAS = { server: 'potbell_server', e2e: 'potbell_e2e' }
+const SCHEMAS = { 'server': 'potbell_server', 'e2e': 'potbell_e2e', 'bench': 'potbell_bench', 'bench-large': 'potbell_bench_large' }
 
 /** Removes data folders of test runs that were killed, with whatever they left running. */
 async function sweep(base) {
@@ -72,9 +72,10 @@ export async function openTestShop(folder, env, suites) {
  * Starts the built server for one suite.
  * @param {Awaited<ReturnType<typeof openTestShop>>} shop
  * @param {keyof typeof SCHEMAS} suite
+ * @param {Record<string, string>} [more] of the server's environment
  * @returns {Promise<{ env: Record<string, string>, close: () => Promise<void> }>} what the suite's tests are given
  */
-export async function openTestServer(shop, suite) {
+export async function openTestServer(shop, suite, more = { POTBELL_TEST_CLOCK: '1' }) {
   const env = shop.environment(SCHEMAS[suite])
   await mustRunFile('The demo shop could not be refreshed:', 'seeds/refresh.ts', env, { capture: true })
   const host = '127.0.0.1'
@@ -87,7 +88,7 @@ export async function openTestServer(shop, suite) {
   const { child, url } = await serve({
     env: {
       ...serverEnvironment(env, { databaseUrl: env.DATABASE_URL, sessionSecret: shop.secrets.sessionSecret, host, port, dataFolder }),
-      POTBELL_TEST_CLOCK: '1',
+      ...more,
     },
     host,
     port,
