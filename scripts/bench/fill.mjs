@@ -4,17 +4,11 @@ import { asOwner, restartDatabase } from './place.mjs'
 /** So many copies of the demo's batches go in with one statement. */
 const AT_ONCE = 100
 
-const COLUMNS = {
-  batches: `code, plan_id, pot_number, pot_count, outcome, mix_revision_id, job_id, job_step_id, purpose, booth_id, gun_id, scale_id,
-    mixed_by_user_id, device_id, mixed_at, reactive_at, sealed_at, target_total_g, poured_total_g, area_m2, film_weight_gsm, film_weight_is, coats,
-    transfer_efficiency_pct, pot_life_min, pot_life_basis, late_at, ends_at, review, snapshot`,
-  batch_components: 'component_index, material_id, role, parts, planned_g, target_g, poured_g, deviation_pct, verdict',
-  batch_current: `state, mixed_at, booth_id, reactive_at, late_at, ends_at, first_spray_at, last_spray_at, closed_at, leftover_g,
-    leftover_weighed, disposal, used, worst_deviation_pct, out_of_tolerance, corrected, review_open, amended, version, created_at, updated_at`,
-}
+/** What the log reads of a batch, and the column that holds the batch's id. */
+const TABLES = { batches: 'id', batch_components: 'batch_id', batch_current: 'batch_id', batch_uses: 'batch_id' }
 
-/** A copy's instants lie some hours before its pattern's, so that the log reaches back and days mix. */
-const copied = {
+/** What differs in a copy: its instants lie some hours before its pattern's, so that the log reaches back and days mix. */
+const COPIED = {
   code: 'CONCAT(LPAD(s.seq, 6, \'0\'), t.code)',
   // The snapshot of a batch's sums is read with one batch only and would fill the disk.
   snapshot: '\'{}\'',
@@ -22,11 +16,17 @@ const copied = {
   state: 'IF(t.state = \'stopped\', t.state, \'emptied\')',
 }
 
-function copyInto(table, id, from, until) {
-  const names = COLUMNS[table].split(',').map(name => name.trim())
-  const values = names.map(name => copied[name] ?? `t.${name}`)
-  return `INSERT INTO ${table} (${id}, ${names.join(', ')})
-    SELECT CONCAT(LPAD(LOWER(HEX(s.seq)), 8, '0'), SUBSTR(p.id, 9)), ${values.join(', ')}
+/** A column whose value the database works out by itself is not copied. */
+async function columnsOf(place, schema, table) {
+  const names = await asOwner(place, `SELECT column_name FROM information_schema.columns
+    WHERE table_schema = '${schema}' AND table_name = '${table}' AND is_generated = 'NEVER'`)
+  return names.split('\n').filter(name => name !== TABLES[table])
+}
+
+function copyInto(table, names, from, until) {
+  const id = TABLES[table]
+  return `INSERT INTO ${table} (${[id, ...names].map(name => `\`${name}\``).join(', ')})
+    SELECT CONCAT(LPAD(LOWER(HEX(s.seq)), 8, '0'), SUBSTR(p.id, 9)), ${names.map(name => COPIED[name] ?? `t.\`${name}\``).join(', ')}
     FROM bench_patterns p JOIN ${table} t ON t.${id} = p.id JOIN seq_${from}_to_${until} s`
 }
 
@@ -46,15 +46,13 @@ export async function fillBatches(place, schema, count) {
   // For the filling alone: the database is started anew afterwards.
   await asOwner(place, `SET GLOBAL innodb_buffer_pool_size = 2147483648; SET GLOBAL innodb_flush_log_at_trx_commit = 0;
     ${use} CREATE TABLE bench_patterns (id CHAR(36) CHARACTER SET ascii COLLATE ascii_bin PRIMARY KEY) SELECT id FROM batches`)
+  const columns = []
+  for (const table of Object.keys(TABLES)) columns.push([table, await columnsOf(place, schema, table)])
   for (let from = 1; from <= copies; from += AT_ONCE) {
     const until = Math.min(copies, from + AT_ONCE - 1)
-    await asOwner(place, `${use} ${[
-      copyInto('batches', 'id', from, until),
-      copyInto('batch_components', 'batch_id', from, until),
-      copyInto('batch_current', 'batch_id', from, until),
-    ].join(';\n')}`)
+    await asOwner(place, `${use} ${columns.map(([table, names]) => copyInto(table, names, from, until)).join(';\n')}`)
   }
-  await asOwner(place, `USE \`${schema}\`; DROP TABLE bench_patterns; ANALYZE TABLE batches, batch_components, batch_current`)
+  await asOwner(place, `USE \`${schema}\`; DROP TABLE bench_patterns; ANALYZE TABLE ${Object.keys(TABLES).join(', ')}`)
 }
 
 /** As the product's own database runs: its settings, its cache cold. */

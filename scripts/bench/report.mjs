@@ -33,7 +33,10 @@ Made by \`npm run bench\`, each as a ratio within one run where a machine's spee
 between the marks are written by hand; a run keeps them.
 `
 
-/** One line of a table with its verdict. */
+/**
+ * One line of a table with its verdict.
+ * @param {Row} row
+ */
 export function tableRow({ figure, target, measured, value, least, most }) {
   return `| ${figure} | ${target} | ${measured} | ${value === undefined ? '' : verdict(value, { least, most })} |`
 }
@@ -79,7 +82,11 @@ export function mergeReport(report, measured, note) {
   return [HEAD, ...parts].join('\n')
 }
 
-/** Writes the parts that were measured into docs/bench-report.md. */
+/**
+ * Writes the parts that were measured into docs/bench-report.md.
+ * @param {Partial<Record<string, Row[]>>} measured
+ * @param {{ quick: boolean }} options
+ */
 export function writeReport(measured, { quick }) {
   const report = existsSync(file) ? readFileSync(file, 'utf8') : ''
   const day = new Date().toISOString().slice(0, 10)
