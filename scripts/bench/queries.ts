@@ -3,7 +3,7 @@ import type { Role } from '#shared/types/roles'
 import mysql from 'mysql2'
 import * as z from 'zod/mini'
 import { createKnex } from '../../server/database/connection'
-import { listBatches } from '../../server/services/batches'
+import { listBatches } from '../../server/services/batch-log'
 import type { Principal } from '../../server/utils/context'
 import { encodeCursor } from '../../server/utils/keyset'
 
