@@ -56,7 +56,6 @@ const put = (...entry: Entry): ApiRoute => ({ ...get(...entry), method: 'put' })
 const patch = (...entry: Entry): ApiRoute => ({ ...get(...entry), method: 'patch' })
 const post = (...[path, permission, summary, answer, extra]: Entry): ApiRoute =>
   ({ method: 'post', path, permission, summary, answer, status: 201, idempotent: true, ...extra })
-const patch = (...entry: Entry): ApiRoute => ({ ...get(...entry), method: 'patch' })
 const remove = (...entry: Entry): ApiRoute => ({ ...get(...entry), method: 'delete', status: 204 })
 
 const byId = { params: IdParams }
