@@ -21,7 +21,7 @@ const principal: Principal = {
 /** What a page is answered with; the shop's settings, which are read too, are not the page. */
 async function selectOf(query: Record<string, string>): Promise<string> {
   const said: string[] = []
-  const hear = ({ sql, bindings }: { sql: string, bindings: unknown[] }) => void said.push(mysql.format(sql, bindings, false, 'Z'))
+  const hear = ({ sql, bindings }: { sql: string, bindings: Parameters<typeof mysql.format>[1] }) => void said.push(mysql.format(sql, bindings, false, 'Z'))
   db.on('query', hear)
   await listBatches({ db, principal }, z.parse(BatchListQuery, query))
   db.removeListener('query', hear)
