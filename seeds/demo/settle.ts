@@ -1,10 +1,10 @@
 import { findDue } from '../../server/repositories/due-timers'
 import { findWindows } from '../../server/repositories/windows'
+import { getBatch } from '../../server/services/batches'
 import { settleDue } from '../../server/services/due-timers'
+import { settleReview } from '../../server/services/reviews'
 import { acknowledgeTimer, cancelTimers } from '../../server/services/timers'
 import type { Context } from '../../server/utils/context'
-import { newId } from '../../server/utils/ids'
-import { toInstant } from '../../server/utils/rows'
 import { mutate } from '../../server/utils/transactions'
 
 const page = 200
@@ -40,16 +40,8 @@ export async function acknowledgeMissed(ctx: Context): Promise<void> {
 /** The foreman has looked at whatever waits for him. */
 export async function settleReviews(ctx: Context): Promise<void> {
   const open = await ctx.db('batch_current').where('review_open', true).orderBy('mixed_at').select<{ batch_id: string }[]>('batch_id')
-  for (const { batch_id: batchId } of open) {
-    await mutate(ctx, async (m) => {
-      const at = toInstant(m.now)
-      const details = { reason: 'Test panel hard after a week, accepted.' }
-      await m.trx('batch_events').insert({
-        id: newId(), batch_id: batchId, kind: 'review-settled', at, user_id: ctx.principal.user?.id ?? null, device_id: null, gun_id: null, booth_id: null,
-        details: JSON.stringify(details), created_at: at,
-      })
-      await m.trx('batch_current').where('batch_id', batchId).update({ review_open: false, version: m.trx.raw('version + 1'), updated_at: at })
-      m.audit({ action: 'batch.review-settled', subject: `batch:${batchId}`, facts: details })
-    })
+  for (const { batch_id: id } of open) {
+    const { openReview } = await getBatch(ctx, id)
+    await settleReview(ctx, id, { codes: openReview, reason: 'Test panel hard after a week, accepted.' })
   }
 }

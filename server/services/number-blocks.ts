@@ -93,7 +93,7 @@ export function voidBlock(ctx: Context, id: string, { reason }: NumberBlockVoidB
     if (numbers.length === 0) throw ruleBroken('nothing-to-void', 'Every number of this block is used or voided.')
     await insertVoidedNumbers({ series: block.series, numbers, reason, userId: userIdOf(ctx.principal) }, m.now, m.trx)
     await moveBlock(id, block.lastNumber + 1, m.trx)
-    m.audit({ action: 'number-block.voided', subject: `number-block:${id}`, facts: { series: block.series, numbers, reason } })
+    m.audit({ action: 'number-block.voided', subject: `number-block:${id}`, facts: { series: block.series, numbers } })
     return readBlock(id, m.trx)
   })
 }

@@ -95,7 +95,7 @@ export async function approve(ctx: Context, body: ApprovalBody): Promise<Approva
     const expiresAt = now + approvalMs
     const { action, subject, reason } = body
     await insertApproval({ id, action, subject, reason, approvedByUserId: user.id, now, expiresAt }, trx)
-    audit({ action: 'approval.given', subject: `approval:${id}`, facts: { action, about: subject, reason, approvedByUserId: user.id } })
+    audit({ action: 'approval.given', subject: `approval:${id}`, facts: { action, about: subject, approvedByUserId: user.id } })
     return { id, action, subject, approvedByUserId: user.id, expiresAt: isoOf(toInstant(expiresAt)) }
   })
 }
