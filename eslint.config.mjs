@@ -10,7 +10,7 @@ export default withNuxt(
     rules: {
       '@typescript-eslint/no-explicit-any': 'error',
       'no-console': 'error',
-      'vue/multi-word-component-names': ['error', { ignores: ['default', 'office', 'bench', 'screen', 'plain', 'error', 'app', 'index', 'new', 'edit', 'revise', '[id]', '[boothId]', 'shop', 'me', 'settings', 'parts'] }],
+      'vue/multi-word-component-names': ['error', { ignores: ['default', 'office', 'bench', 'screen', 'plain', 'error', 'app', 'index', 'new', 'edit', 'revise', '[id]', '[boothId]', 'shop', 'me', 'settings', 'sheet', 'parts'] }],
       'vue/html-self-closing': ['error', { html: { void: 'any', normal: 'any', component: 'any' } }],
       'vue/require-default-prop': 'off',
       'vue/no-multiple-template-root': 'off',

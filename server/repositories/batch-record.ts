@@ -22,7 +22,7 @@ export interface RecordPour {
 export type RecordComponent = Pick<BatchComponent, 'index' | 'role' | 'materialId' | 'targetG' | 'pouredG' | 'deviationPct' | 'verdict'>
 
 /** What happened to a batch, in the order in which it was noted. `at` is in epoch milliseconds. */
-export interface RecordEvent {
+interface RecordEvent {
   kind: Batch['events'][number]['kind']
   at: number
   gunId: string | null
@@ -30,14 +30,14 @@ export interface RecordEvent {
 }
 
 /** A value that was put right. `at` is in epoch milliseconds. */
-export interface RecordAmendment {
+interface RecordAmendment {
   field: string
   to: string | null
   at: number
 }
 
 /** What the snapshot keeps for reckoning a batch again. */
-export interface ReckonableSnapshot extends BatchSnapshot {
+interface ReckonableSnapshot extends BatchSnapshot {
   mix: MixRevision
   scale: ScaleRecord | null
   approvals: { action: string; subject: string }[]

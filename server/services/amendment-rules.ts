@@ -1,6 +1,7 @@
 import { D, sum } from '#shared/engine/decimal'
 import { pourFieldOf } from '#shared/schemas/amendments'
-import { addDays, shopDate, startOfShopDay } from '#shared/utils/zone'
+import { amendRefusal } from '#shared/utils/amend-rights'
+import { shopDate } from '#shared/utils/zone'
 import type { BatchOnRecord } from '../repositories/batch-record'
 import { isThere } from '../repositories/draft-references'
 import { findStockLots, type StockLot } from '../repositories/lot-stock'
@@ -23,13 +24,11 @@ const broken = (code: string, message: string) => ruleBroken(code, message, [{ p
 export async function requireAmender(m: Mutation, principal: Principal, batch: EffectiveBatch, field: string): Promise<void> {
   const { user } = principal
   if (!user) throw forbidden('Sign in to amend a batch.')
-  if (user.role !== 'sprayer') return
-  const { mixedByUserId, mixedAt } = batch.current
-  if (mixedByUserId !== user.id) throw forbidden('This batch is another person\'s. A foreman can amend it.')
   const { zone } = await readShop(m.trx)
-  const dayEnds = startOfShopDay(addDays(shopDate(mixedAt, zone), 1), zone)
-  if (m.now >= dayEnds) throw forbidden('A batch can be amended by its sprayer until the end of its day. A foreman can amend it now.')
-  if (field === 'mixedByUserId') throw forbidden('Who mixed a batch is put right by a foreman.')
+  const refusal = amendRefusal(user, batch.current, zone, m.now)
+  if (refusal === 'other-person') throw forbidden('This batch is another person\'s. A foreman can amend it.')
+  if (refusal === 'day-over') throw forbidden('A batch can be amended by its sprayer until the end of its day. A foreman can amend it now.')
+  if (user.role === 'sprayer' && field === 'mixedByUserId') throw forbidden('Who mixed a batch is put right by a foreman.')
 }
 
 /**

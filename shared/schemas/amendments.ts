@@ -9,8 +9,6 @@ export const plainFields = [
 export type PlainField = (typeof plainFields)[number]
 
 /** `pours.COMPONENT.POSITION.grams` or `.lotId`, both counted from 0; or one of the plain fields. */
-export type AmendField = PlainField | `pours.${number}.${number}.${'grams' | 'lotId'}`
-
 const fieldPattern = new RegExp(`^(?:${plainFields.join('|')}|pours\\.[0-7]\\.\\d{1,3}\\.(?:grams|lotId))$`)
 
 const value = z.nullable(z.string('Give a text, or null for nothing.').check(z.trim(), z.maxLength(500, 'Use at most 500 characters.')))

@@ -94,3 +94,19 @@ export function zonedIso(ms: number, zone: string): string {
   const two = (count: number) => String(Math.floor(count)).padStart(2, '0')
   return `${new Date(ms + offset).toISOString().slice(0, 19)}${offset < 0 ? '-' : '+'}${two(minutes / 60)}:${two(minutes % 60)}`
 }
+
+/**
+ * The instant at which a zone's wall clock shows this, epoch milliseconds; where it shows it twice, the first time.
+ * @param wall `2026-11-17T13:26` or with seconds
+ * @throws RangeError for anything else
+ */
+export function instantOfWall(wall: string, zone: string): number {
+  const utc = Date.parse(`${wall.length === 16 ? `${wall}:00` : wall}.000Z`)
+  if (!/^\d{4}-\d\d-\d\dT\d\d:\d\d(?::\d\d)?$/.test(wall) || Number.isNaN(utc)) throw new RangeError('not a wall clock time')
+  const [early, late] = [utc - offsetMs(utc - dayMs / 2, zone), utc - offsetMs(utc + dayMs / 2, zone)]
+  const fits = [early, late].filter((at) => at + offsetMs(at, zone) === utc)
+  return Math.min(...(fits.length > 0 ? fits : [early]))
+}
+
+/** What the wall clock shows at an instant, to the second: `2026-11-17T13:26:05`. */
+export const wallText = (ms: number, zone: string): string => new Date(ms + offsetMs(ms, zone)).toISOString().slice(0, 19)

@@ -73,7 +73,7 @@ describe('pages, components, stores and composables', () => {
 
 describe('migrations', () => {
   it('are TypeScript with a time, a verb and a name', () => {
-    expect(migrations.filter((file) => !/^migrations\/\d{14}_(create|add|change|drop|rename|insert)_[a-z_]+\.ts$/.test(file))).toEqual([])
+    expect(migrations.filter((file) => !/^migrations\/\d{14}_(create|fill|add|change|drop|rename|insert)_[a-z_]+\.ts$/.test(file))).toEqual([])
   })
 
   it('go back as well as forward', () => {
