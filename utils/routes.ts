@@ -10,6 +10,7 @@ export const routes = {
   batches: (): string => '/batches',
   batch: (id: string): string => at('/batches', id),
   label: (batchId: string): string => at('/labels', batchId),
+  batchSheet: (id: string): string => `${at('/batches', id)}/sheet`,
   jobs: (): string => '/jobs',
   job: (id: string): string => at('/jobs', id),
   schedules: (): string => '/schedules',
