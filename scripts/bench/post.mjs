@@ -65,13 +65,20 @@ async function prepareDrafts(people, count) {
   return ids
 }
 
+/** The columns of each table that a value can be given for: some the database works out by itself. */
+async function columnsOf(connection) {
+  const [rows] = await connection.query(`SELECT table_name AS tableName, column_name AS columnName FROM information_schema.columns
+    WHERE table_schema = '${SCHEMA}' AND is_generated = 'NEVER'`)
+  return table => rows.filter(({ tableName }) => tableName === table).map(({ columnName }) => columnName)
+}
+
 /** The rows of a sealed batch as statements with their values, one a table. */
-async function rowsOf(connection, id) {
+async function rowsOf(connection, id, columns) {
   const statements = []
   for (const [table, where] of Object.entries(TABLES)) {
     const [rows] = await connection.query(`SELECT * FROM ${SCHEMA}.${table} WHERE ${where}`, { id })
     if (rows.length === 0) continue
-    const names = Object.keys(rows[0])
+    const names = columns(table)
     statements.push({ sql: `INSERT INTO ${BARE}.${table} (${names.map(name => `\`${name}\``).join(', ')}) VALUES ?`, values: [rows.map(row => names.map(name => row[name]))] })
   }
   for (const table of ['batches', 'audit_entries', 'events', 'idempotency_keys']) {
@@ -90,8 +97,9 @@ async function insertBare(connection, statements) {
 async function round(drafts, { people, lanes, atOnce }) {
   let turn = 0
   const ours = await rate(drafts, atOnce, draftId => people[turn++ % people.length].send('POST', '/api/batches', { draftId }, draftId))
+  const columns = await columnsOf(lanes[0])
   const statements = []
-  for (const id of drafts) statements.push(await rowsOf(lanes[0], id))
+  for (const id of drafts) statements.push(await rowsOf(lanes[0], id, columns))
   const theirs = await rate(statements, atOnce, (one, lane) => insertBare(lanes[lane], one))
   return [ours, theirs]
 }
