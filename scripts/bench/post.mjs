@@ -18,7 +18,8 @@ const TABLES = {
   batch_pieces: 'batch_id = :id',
   batch_current: 'batch_id = :id',
   lot_movements: 'batch_id = :id',
-  timers: 'subject_id = :id',
+  // Those that the draft had set already stand in the copy.
+  timers: `subject_id = :id AND id NOT IN (SELECT id FROM ${BARE}.timers WHERE subject_id = :id)`,
   audit_entries: `seq = ${SEALED}`,
   // What is told belongs to the entry before it.
   events: `seq > ${SEALED} AND seq < (SELECT COALESCE(MIN(seq), ~0) FROM ${SCHEMA}.audit_entries WHERE seq > ${SEALED})`,
