@@ -90,7 +90,7 @@ export async function chemistriesOf(revisionIds: readonly string[], db: Db): Pro
 }
 
 /** Which chemistries may not follow each other in a booth. */
-export async function listBoothRules(db: Db): Promise<ChemistryRule[]> {
+export async function listBoothRules(db: Db): Promise<(ChemistryRule & { scope: 'booth' })[]> {
   const rows = await db('chemistry_rules').where({ scope: 'booth' }).orderBy(['first_chemistry', 'second_chemistry'])
     .select<{ first_chemistry: string, second_chemistry: string, verdict: ChemistryRule['verdict'], advice: string }[]>('*')
   return rows.map(row => ({ scope: 'booth', first: row.first_chemistry, second: row.second_chemistry, verdict: row.verdict, advice: row.advice }))
