@@ -88,6 +88,9 @@ export const materials: readonly DemoMaterial[] = [
     { code: 'P-610', name: 'Accelerator, cobalt', role: 'accelerator', density: '0.9', solidsPct: '12', volumeSolidsPct: '8', vocGPerL: '792', flashPointC: '28', shelfDays: 365, pricePerKg: '19.4', signal: 'Warning', hazards: ['H226', 'H317', 'H412'], reorderG: 300, deliveryG: 1000 },
     { code: 'P-710', name: 'Peroxide hardener', role: 'peroxide', density: '1.12', solidsPct: '35', volumeSolidsPct: '31', vocGPerL: '728', flashPointC: '61', shelfDays: 180, pricePerKg: '16.7', signal: 'Danger', hazards: ['H242', 'H302', 'H314'], reorderG: 300, deliveryG: 1000 },
   ]),
+  ...of('polyurethane', solventBorne, [
+    { code: 'U-590', name: 'Hardener, very quick, for practice', role: 'hardener', isocyanates: true, density: '1.05', solidsPct: '50', volumeSolidsPct: '44', vocGPerL: '525', flashPointC: '27', shelfDays: 270, pricePerKg: '11.2', signal: 'Warning', hazards: isocyanateHardener, reorderG: 300, deliveryG: 5000 },
+  ]),
 ]
 
 /** What to wear, by what a material brings along; the safety data sheet decides. */

@@ -114,4 +114,8 @@ export const mixes: readonly DemoMix[] = [
     ],
     potLifeMin: '25', notes: 'Accelerator into the base, stir, then the peroxide; never one into the other.',
   }),
+  one('XP-50', 'Practice mix, its bell rings after 3 minutes', {
+    parts: [base('U-110'), hardener('U-590', '50')],
+    potLifeMin: '3', notes: 'For trying out the bench and the bell; not for work.',
+  }),
 ]
