@@ -36,6 +36,9 @@ const thinner = (material: string, parts: string, partsMax?: string): DemoPart =
 const one = (code: string, name: string, revision: DemoRevision): DemoMix => ({ code, name, revisions: [revision] })
 const din = (from: string, to: string) => ({ cup: 'din-4', from, to })
 
+/** The mix that newcomers try the bell with; no work was ever done with it. */
+export const practiceMix = 'XP-50'
+
 export const mixes: readonly DemoMix[] = [
   one('NS-40', 'Nitro sealer, clear', { parts: [base('N-100'), thinner('N-900', '40', '50')], viscosity: din('16', '19') }),
   one('NG-40', 'Nitro ground, dark walnut', { parts: [base('N-140'), thinner('N-900', '40')], viscosity: din('16', '19') }),
@@ -114,7 +117,7 @@ export const mixes: readonly DemoMix[] = [
     ],
     potLifeMin: '25', notes: 'Accelerator into the base, stir, then the peroxide; never one into the other.',
   }),
-  one('XP-50', 'Practice mix, its bell rings after 3 minutes', {
+  one(practiceMix, 'Practice mix, its bell rings after 3 minutes', {
     parts: [base('U-110'), hardener('U-590', '50')],
     potLifeMin: '3', notes: 'For trying out the bench and the bell; not for work.',
   }),

@@ -6,7 +6,7 @@ import { planBatch } from '#shared/engine/batch'
 import { cutLists, areaOf, m2Of } from '../../../seeds/demo/cut-lists'
 import { rackPieces } from '../../../seeds/demo/jobs'
 import { materials } from '../../../seeds/demo/materials'
-import { mixes } from '../../../seeds/demo/mixes'
+import { mixes, practiceMix } from '../../../seeds/demo/mixes'
 import { looseMixes, orders } from '../../../seeds/demo/orders'
 import { boothOf, schedules } from '../../../seeds/demo/schedules'
 import { mixInputOf } from '../../../seeds/demo/pot'
@@ -42,8 +42,8 @@ describe('lists of the demo shop', () => {
     expect(reacts).toBe(revision.potLifeMin !== undefined || revision.potLifeTable !== undefined)
   })
 
-  it('use every mix in a schedule or a loose mix', () => {
-    const used = new Set([...coats.map(({ mix }) => mix), ...looseMixes.map(({ mix }) => mix)])
+  it('use every mix in a schedule or a loose mix, the practice mix aside', () => {
+    const used = new Set([practiceMix, ...coats.map(({ mix }) => mix), ...looseMixes.map(({ mix }) => mix)])
     expect(codes(mixes).filter((code) => !used.has(code))).toEqual([])
   })
 
