@@ -4,7 +4,7 @@ import { Stop } from '../lib/process.mjs'
 const PASSWORD = 'let the pot ring'
 
 /** One browser: it keeps its cookies and sends the origin of the shop. */
-export class Visitor {
+class Visitor {
   #cookies = new Map()
 
   constructor(url) {

@@ -19,7 +19,7 @@ export interface ClearanceFacts {
   changes: ExtractionChangeRow[]
 }
 
-export interface ExtractionChangeRow {
+interface ExtractionChangeRow {
   at: number
   extraction: Extraction
   before: Extraction

@@ -76,7 +76,7 @@ async function openLot(id: string, at: Date, now: Date, trx: Knex.Transaction): 
 }
 
 /** Present stock by the movements, in grams; a lot without any is left out; below nothing when more was poured than was booked in. */
-export async function stockOf(lotIds: readonly string[], db: Db): Promise<{ id: string; stockG: string }[]> {
+async function stockOf(lotIds: readonly string[], db: Db): Promise<{ id: string; stockG: string }[]> {
   const rows = await db('lot_movements').whereIn('lot_id', [...lotIds]).groupBy('lot_id').orderBy('lot_id')
     .select<{ lot_id: string; stock: string }[]>('lot_id', db.raw('SUM(grams) AS stock'))
   return rows.map(({ lot_id: id, stock }) => ({ id, stockG: decimalOf(stock) }))

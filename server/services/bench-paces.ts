@@ -18,7 +18,7 @@ export async function benchPaces(now: number, db: Knex | Knex.Transaction): Prom
 }
 
 /** Σ area × coats ÷ Σ time, to a tenth; pots come the youngest first. */
-export function pacesOf(pots: readonly SprayedPot[]): BenchPace[] {
+function pacesOf(pots: readonly SprayedPot[]): BenchPace[] {
   const byHand = new Map<string, SprayedPot[]>()
   for (const pot of pots) {
     const key = `${pot.userId} ${pot.gunId}`

@@ -8,7 +8,7 @@ export interface Sprayed {
   lastSprayedAt: number
 }
 
-export interface WindowInput extends Sprayed {
+interface WindowInput extends Sprayed {
   /** Earliest: counted from the **last** spray. */
   minMs: number
   /** Latest: counted from the **first** spray. Null: never. */

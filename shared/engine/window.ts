@@ -8,7 +8,7 @@ import { between, overcoatWindow, readSprayed, type Sprayed } from './overcoat'
 import { DEFAULT_HALVES_PER_C } from './pot-life'
 import type { OvercoatWindow } from './window-state'
 
-export { overcoatWindow, type Sprayed, type WindowInput } from './overcoat'
+export { overcoatWindow, type Sprayed } from './overcoat'
 
 /** A coat on both faces and edges is several applications; together they run from the first to the last of them. */
 export function spanOf(applications: readonly Sprayed[]): Sprayed {

@@ -182,7 +182,7 @@ export const BenchDraft = z.object({
 export type BenchDraft = z.infer<typeof BenchDraft>
 
 /** Which chemistries may not follow each other in a booth. */
-export const BenchChemistryRule = z.object({
+const BenchChemistryRule = z.object({
   scope: z.literal('booth'), first: z.string(), second: z.string(), verdict: z.enum(['blocked', 'caution']), advice: z.string(),
 })
 

@@ -159,7 +159,7 @@ export const LotReasonBody = z.strictObject({ reason })
 export type LotReasonBody = z.infer<typeof LotReasonBody>
 
 /** Kinds of movement that a person may enter. */
-export const enteredKinds = ['counted', 'received', 'wasted'] as const
+const enteredKinds = ['counted', 'received', 'wasted'] as const
 
 /**
  * Grams by hand. `counted`: what the tin holds now; the difference to the books is written. `received`: more of the same

@@ -4,7 +4,7 @@ import { isGuessable } from '../utils/passwords'
 import { DateText } from './fields'
 
 /** A password that somebody is going to use from now on. */
-export const NewPassword = z.string('Choose a password.').check(
+const NewPassword = z.string('Choose a password.').check(
   z.minLength(10, { error: 'Use at least 10 characters.', abort: true }),
   z.maxLength(256, 'That password is too long.'),
   z.refine(text => !isGuessable(text), 'That password is among the first that are guessed. Choose another.'),

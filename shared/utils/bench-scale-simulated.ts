@@ -7,7 +7,7 @@ import type { ScaleReading, ScaleSource, ScaleSourceState, SourceClock } from '.
 export type SimulatedFlow = 'pour' | 'thin' | 'drops'
 
 /** Between two readings. */
-export const TICK_MS = 100
+const TICK_MS = 100
 /** Grams that run in between two readings. */
 const FLOW_G: Record<SimulatedFlow, string> = { pour: '12', thin: '1.2', drops: '0.1' }
 /** The empty cup. */
