@@ -264,6 +264,7 @@ describe('a review', () => {
     expect(await getBatch(work.as('sprayer'), id)).toMatchObject({ openReview: ['out-of-tolerance', 'not-complete'] })
     expect(await settleReview(work.as('foreman'), id, { codes: ['not-complete'], reason: 'Sprayed unthinned' })).toMatchObject({ openReview: ['out-of-tolerance'], reviewOpen: true })
     await expect(settleReview(work.as('foreman'), id, { codes: ['not-complete'], reason: 'Again' })).rejects.toMatchObject({ status: 409, code: 'not-open', extra: { current: { id } } })
+    work.clock.now += 1000
     const batch = await settleReview(work.as('manager'), id, { codes: ['out-of-tolerance'], reason: 'Hard after a week' })
     expect(batch).toMatchObject({ review: ['out-of-tolerance', 'not-complete'], openReview: [], reviewOpen: false })
     expect(batch.events.filter(({ kind }) => kind === 'review-settled')).toMatchObject([
