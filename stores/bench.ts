@@ -206,7 +206,7 @@ export const useBenchStore = defineStore('bench', () => {
     const { value } = run
     if (value === null) return
     await save()
-    await outbox.put({ subject: value.id, kind: 'seal', method: 'POST', path: `/api/batch-drafts/${value.id}/discard`, body: { reason } })
+    await outbox.put({ subject: value.id, kind: 'seal', method: 'POST', path: `/api/batch-drafts/${value.id}/discard`, body: { reason, holder: holder.value } })
     await leave()
   }
 

@@ -61,7 +61,7 @@ export async function findBatch(id: string, db: Db): Promise<Batch | null> {
   return {
     ...toNamed(row),
     ...page,
-    openReview: row.review_open === 1 ? openReviewOf(page.review, events) : [],
+    openReview: row.review_open === 1 ? facts?.openReview ?? openReviewOf(page.review, events) : [],
     components,
     chemistry,
     containsIsocyanates,
@@ -77,13 +77,11 @@ export async function findBatch(id: string, db: Db): Promise<Batch | null> {
   }
 }
 
-/** Codes that no settling names; one without names settled all that the record had. */
+/** Codes that no settling names; one without names settled all that the record had. For batches that were never amended. */
 function openReviewOf(review: Batch['review'], events: Batch['events']): Batch['review'] {
   const settled = events.filter(({ kind }) => kind === 'review-settled')
   const named = new Set(settled.flatMap(({ details }) => (Array.isArray(details.codes) ? details.codes.map(String) : review)))
-  const open = review.filter((code) => !named.has(code))
-  // All named and still open: a weight was amended after it was settled.
-  return open.length > 0 ? open : review
+  return review.filter((code) => !named.has(code))
 }
 
 function toPage(row: PageRow, facts: EffectiveFacts | null) {

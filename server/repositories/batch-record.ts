@@ -86,6 +86,8 @@ export interface EffectiveFacts {
   viscositySeconds: string | null
   potLife: BatchOnRecord['potLife']
   review: ReviewCode[]
+  /** Codes that nobody settled, or that an amended weight opened again. */
+  openReview: ReviewCode[]
   note: string | null
 }
 

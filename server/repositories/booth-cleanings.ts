@@ -56,11 +56,11 @@ const longestPotMs = 60 * 86_400_000
  * first spray: the careful side.
  */
 export async function mixesInBooth(boothId: string, from: number | null, to: number | null, db: Db): Promise<BoothMix[]> {
-  // One group a mix, each found by the index's end: the length of the log does not matter.
-  const made = db('batches').where({ outcome: 'mixed', booth_id: boothId }).groupBy('mix_revision_id')
-    .select<MixRow[]>('mix_revision_id', db.raw('MAX(mixed_at) AS last_at'))
-  if (from !== null) void made.where('mixed_at', '>', toInstant(from))
-  if (to !== null) void made.where('mixed_at', '<=', toInstant(to))
+  // The booth as it is known now: a pot whose booth was put right counts where it really was.
+  const made = db('batch_current as c').join('batches as b', 'b.id', 'c.batch_id').where('c.booth_id', boothId).where('b.outcome', 'mixed')
+    .groupBy('b.mix_revision_id').select<MixRow[]>('b.mix_revision_id', db.raw('MAX(c.mixed_at) AS last_at'))
+  if (from !== null) void made.where('c.mixed_at', '>', toInstant(from))
+  if (to !== null) void made.where('c.mixed_at', '<=', toInstant(to))
   const rows = [...await made, ...(from === null ? [] : await leftStanding(boothId, from, db))]
   return rows.map(row => ({ mixRevisionId: row.mix_revision_id, at: row.last_at.getTime() }))
 }

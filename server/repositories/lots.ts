@@ -138,9 +138,9 @@ function whereLow(query: Knex.QueryBuilder, low: boolean): void {
 /** How many batches each lot went into. */
 export async function countBatches(lotIds: readonly string[], db: Db): Promise<Map<string, number>> {
   if (lotIds.length === 0) return new Map()
-  const rows = await db('batch_pours').whereIn('lot_id', [...lotIds]).groupBy('lot_id')
-    .select<{ lot_id: string, batches: string }[]>('lot_id', db.raw('COUNT(DISTINCT batch_id) AS batches'))
-  return new Map(rows.map(row => [row.lot_id, Number(row.batches)]))
+  const rows = await db('batch_uses').whereIn('used_id', [...lotIds]).groupBy('used_id')
+    .select<{ used_id: string, batches: string }[]>('used_id', db.raw('COUNT(DISTINCT batch_id) AS batches'))
+  return new Map(rows.map(row => [row.used_id, Number(row.batches)]))
 }
 
 /** What came to a lot and left it, kind by kind. */

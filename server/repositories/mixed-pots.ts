@@ -61,7 +61,7 @@ interface SealedRow {
 async function listSealedPots(jobIds: readonly string[], db: Db): Promise<MixedPot[]> {
   const rows = await db('batches as b')
     .join('batch_current as c', 'c.batch_id', 'b.id')
-    .join('users as u', 'u.id', 'b.mixed_by_user_id')
+    .join('users as u', 'u.id', 'c.mixed_by_user_id')
     .where('b.outcome', 'mixed')
     .whereIn('b.job_id', jobIds)
     .whereNotNull('b.job_step_id')

@@ -36,7 +36,7 @@ export async function deleteThing(table: ShopTable, id: string, trx: Knex.Transa
 
 /** True while a pot of the booth lives or a batch is being made for it. */
 export async function hasLivePots(boothId: string, db: Db): Promise<boolean> {
-  const pot = await db('batch_current').where({ booth_id: boothId }).whereIn('state', ['fresh', 'closing', 'life-up']).first('batch_id')
+  const pot = await db('batch_current').where({ booth_id: boothId }).whereIn('state', ['fresh', 'closing', 'life-up', 'no-pot-life']).first('batch_id')
   if (pot !== undefined) return true
   return (await db('batch_drafts').where({ booth_id: boothId, state: 'open' }).first('id')) !== undefined
 }

@@ -8,7 +8,7 @@ import { findPotContent, listSprays, type PotContent } from '../repositories/spr
 import { userIdOf, type Context } from '../utils/context'
 import { toInstant } from '../utils/rows'
 import { mutate, type Mutation } from '../utils/transactions'
-import { usedOf } from './batch-events'
+import { usedOf } from './batch-effective'
 import { noteShot } from './booth-air'
 import { earliestShot, writeCoat } from './coats'
 import { notAfter } from './device-clock'
@@ -107,7 +107,7 @@ async function endSpraying(ctx: Context, m: Mutation, pot: CurrentBatch, guns: r
       }, m.trx)
     }
   }
-  const { firstAt } = sprayedSpan(guns)
+  const { firstSprayAt: firstAt } = pot
   const lastAt = Math.max(ending.at, ...guns.flatMap((gun) => gun.lastAt ?? []))
   return writeCoat(ctx, m, pot, {
     gunId: ending.gunIds.at(-1) ?? null, firstAt: firstAt ?? Math.min(earliestShot(pot), lastAt), lastAt, firstAssumed: firstAt === null, lastAssumed: ending.assumed,

@@ -43,7 +43,7 @@ export function effectiveOf(record: BatchOnRecord, now: number): EffectiveBatch 
   const leftoverG = get('leftoverG')
   const facts: EffectiveFacts = {
     ...cup, airC: get('airC'), rhPct: get('rhPct'), surfaceC: get('surfaceC'), materialC: get('materialC'), viscosityCup: get('viscosityCup'),
-    viscositySeconds: get('viscositySeconds'), potLife: life.potLife, review: review.review, note: get('note'),
+    viscositySeconds: get('viscositySeconds'), potLife: life.potLife, review: review.review, openReview, note: get('note'),
   }
   const amended = record.amendments.length > 0
   return {
@@ -144,7 +144,8 @@ function stateOf({ outcome }: BatchOnRecord, closedAt: number | null, { lateAt, 
   return potState({ startsAt: lateAt, lateAt, endsAt, now })
 }
 
-function usedOf({ lateAt, endsAt }: Life, lastSprayAt: number | null): EffectiveCurrent['used'] {
+/** Whether the pot was still good at its last spray; null where it was not sprayed or has no pot life. */
+export function usedOf({ lateAt, endsAt }: Pick<Life, 'lateAt' | 'endsAt'>, lastSprayAt: number | null): EffectiveCurrent['used'] {
   if (lastSprayAt === null || lateAt === null || endsAt === null) return null
   if (lastSprayAt > endsAt) return 'past-life'
   return lastSprayAt > lateAt ? 'late' : 'in-time'

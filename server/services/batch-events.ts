@@ -1,7 +1,8 @@
 import type { Batch, BatchEventBody } from '#shared/schemas/batches'
-import { gunSprays, sprayedSpan, type GunSpray } from '#shared/utils/pot-sprays'
+import { gunSprays, type GunSpray } from '#shared/utils/pot-sprays'
 import type { CurrentBatch, CurrentChange } from '../repositories/batch-current'
 import { updateCurrent } from '../repositories/batch-current'
+import { readRecord } from '../repositories/batch-record'
 import { insertBatchEvent } from '../repositories/batches'
 import { isThere } from '../repositories/draft-references'
 import { standsUntil } from '../repositories/pots'
@@ -10,6 +11,7 @@ import type { Context } from '../utils/context'
 import { invalid } from '../utils/errors'
 import { toInstant } from '../utils/rows'
 import { mutate, type Mutation } from '../utils/transactions'
+import { effectiveOf, type EffectiveBatch } from './batch-effective'
 import { noteShot } from './booth-air'
 import { earliestShot, writeCoat } from './coats'
 import { notAfter } from './device-clock'
@@ -49,18 +51,29 @@ async function settleSprays(
   ctx: Context, m: Mutation, pot: CurrentBatch, events: readonly SprayEvent[], kind: BatchEventBody['kind'],
 ): Promise<{ applicationId: string | null; used: CurrentChange['used'] }> {
   const guns = gunSprays(events)
-  const { firstAt, lastAt } = sprayedSpan(guns)
-  const used = lastAt === null ? null : usedOf(pot, lastAt)
+  // What was put right by an amendment stands over what was tapped.
+  const { firstSprayAt: firstAt, lastSprayAt: lastAt, used } = await effectiveNow(m, pot.id)
   await updateCurrent(pot.id, { ...(firstAt === null ? {} : { firstSprayAt: firstAt }), lastSprayAt: lastAt, used }, m.now, m.trx)
   if (kind === 'gun-flushed') return { applicationId: null, used }
   if (kind === 'first-spray' || lastAt === null) {
     await publishUnended(m, pot.id, pot.boothId)
     return { applicationId: null, used }
   }
-  const gunId = guns.filter((gun) => gun.lastAt === lastAt).at(-1)?.gunId ?? null
+  const gunId = lastGunOf(guns)
   // The careful side where nobody noted the first spray: the window closes by it.
   const moments = { gunId, firstAt: firstAt ?? Math.min(earliestShot(pot), lastAt), lastAt, firstAssumed: firstAt === null, lastAssumed: false }
   return { applicationId: await writeCoat(ctx, m, pot, moments), used }
+}
+
+async function effectiveNow(m: Mutation, id: string): Promise<EffectiveBatch['current']> {
+  const record = await readRecord(id, m.trx)
+  if (!record) throw new Error('a batch was lost in its own transaction')
+  return effectiveOf(record, m.now).current
+}
+
+/** The gun that sprayed last. */
+function lastGunOf(guns: readonly GunSpray[]): string | null {
+  return guns.reduce<GunSpray | null>((last, gun) => (gun.lastAt !== null && gun.lastAt >= (last?.lastAt ?? 0) ? gun : last), null)?.gunId ?? null
 }
 
 /** Spraying before the standing time of the sheet is over is a fact and is kept as such. */
@@ -91,11 +104,4 @@ async function refuseShot(m: Mutation, pot: CurrentBatch, { kind, gunId, at }: S
   }
   if (gun?.lastAt) throw await taken(m, pot.id, 'already-recorded', 'The last spray of this gun is recorded already.')
   if (gun?.firstAt && at < gun.firstAt) throw broken('spray-reversed', 'at', 'That is before the first spray.')
-}
-
-/** Whether the pot was still good at its last spray; null where it has no pot life. */
-export function usedOf({ lateAt, endsAt }: Pick<CurrentBatch, 'lateAt' | 'endsAt'>, lastSprayAt: number): CurrentChange['used'] {
-  if (lateAt === null || endsAt === null) return null
-  if (lastSprayAt > endsAt) return 'past-life'
-  return lastSprayAt > lateAt ? 'late' : 'in-time'
 }

@@ -1,4 +1,4 @@
-import { isCurrent, rewriteCurrent } from '../repositories/batch-current'
+import { isCurrent, lockCurrent, rewriteCurrent } from '../repositories/batch-current'
 import { batchIdsAfter, readRecord } from '../repositories/batch-record'
 import { rewriteUses } from '../repositories/batch-uses'
 import type { Context } from '../utils/context'
@@ -34,7 +34,7 @@ function rebuildPage(ctx: Context, ids: readonly string[]): Promise<string[]> {
   return mutate(ctx, async (m) => {
     const changed: string[] = []
     for (const id of ids) {
-      const record = await readRecord(id, m.trx)
+      const record = (await lockCurrent(id, m.trx)) && (await readRecord(id, m.trx))
       if (!record) continue
       const effective = effectiveOf(record, m.now)
       if (!(await isCurrent(effective.current, m.trx))) {

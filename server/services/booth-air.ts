@@ -14,7 +14,7 @@ import { cancelTimers } from './timers'
  * Brings the booth's clearance timer to what the shots and the extraction say, and tells the screens. Call it after
  * everything that changes one of them.
  */
-async function settleClearance(m: Mutation, boothId: string): Promise<void> {
+export async function settleClearance(m: Mutation, boothId: string): Promise<void> {
   const [facts] = await findClearanceFacts(boothId, m.trx)
   if (!facts) return
   const clearance = judgeClearance(facts, m.now)

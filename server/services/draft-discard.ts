@@ -5,6 +5,7 @@ import { insertVoidedNumbers } from '../repositories/number-blocks'
 import { userIdOf, type Context } from '../utils/context'
 import { notFound, Refusal, ruleBroken } from '../utils/errors'
 import { mutateUnlessDone } from '../utils/settled'
+import { mayHold, takenOver } from './draft-holder'
 import { getDraft } from './drafts'
 import { requireMixer } from './mixers'
 import { publishPot } from './pot-view'
@@ -14,15 +15,16 @@ import { cancelTimers } from './timers'
  * Ends a draft into whose cup nothing came: no batch of nothing enters the record, its number is voided with the
  * reason and never used again. Discarding twice answers the draft.
  *
- * @throws Refusal 404 without a draft, 403 for another person's, 409 `already-sealed`, 422 `something-poured`
+ * @throws Refusal 404 without a draft, 403 for another person's, 409 `already-sealed`, 409 `taken-over`, 422 `something-poured`
  */
-export function discardDraft(ctx: Context, id: string, { reason }: DraftDiscardBody): Promise<Draft> {
+export function discardDraft(ctx: Context, id: string, { reason, holder = null }: DraftDiscardBody): Promise<Draft> {
   return mutateUnlessDone<Draft>(ctx, async (m, keep) => {
     const draft = await lockDraft(id, m.trx)
     if (!draft) throw notFound('The draft')
     await requireMixer(ctx.principal, draft.mixedByUserId, draft.mixedByUserId, m.trx)
     if (draft.state === 'discarded') keep(() => getDraft(ctx, id))
     if (draft.state !== 'open') throw new Refusal(409, 'already-sealed', 'This batch is in the log already.', [], { current: await getDraft({ db: m.trx }, id) })
+    if (!mayHold(draft.body.holder, holder)) throw await takenOver(draft, await getDraft({ db: m.trx }, id), m.trx)
     if (inCup(draft).gt(0)) throw ruleBroken('something-poured', 'Something is in this cup: stop it, so that it is logged as waste.')
     const number = numberOf(draft.code)
     await cancelTimers(m, 'batch', id)

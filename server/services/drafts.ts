@@ -1,3 +1,4 @@
+import { D } from '#shared/engine/decimal'
 import type { Knex } from 'knex'
 import type { Draft, DraftBody, DraftList, DraftListQuery, DraftNote, PotLife } from '#shared/schemas/drafts'
 import { shopDate } from '#shared/utils/zone'
@@ -96,7 +97,7 @@ function saveOnce(ctx: Context, id: string, body: DraftBody): Promise<Draft> {
     planOf(references.revision, body.plan, references.scale)
     // Reckoned even before anything reacts, so that a temperature that cannot be is said at once.
     potTimesOf(references.revision, body, m.now)
-    if (!stored && body.components.length === 0) await refuseClash(body.boothId, references.revision, m.now, m.trx)
+    if (isChoiceOfBooth(body, stored)) await refuseClash(body.boothId, references.revision, m.now, m.trx)
     const moment = momentOf(body, references.revision, stored, m.now)
     const approved = await checkApprovals(m, id, body, stored, references)
     const extras: DraftExtras = { notes: notesOf(body, stored, moment.note), approved }
@@ -108,6 +109,12 @@ function saveOnce(ctx: Context, id: string, body: DraftBody): Promise<Draft> {
     await publishPot(m, id)
     return readDraft(id, m.trx)
   })
+}
+
+/** Nothing is poured yet, and the booth or the mix is new: what is in a cup already is a fact and is not refused. */
+function isChoiceOfBooth({ boothId, mixRevisionId, components }: DraftBody, stored: StoredDraft | null): boolean {
+  const isEmpty = components.every(({ pours }) => pours.every(({ grams }) => new D(grams).eq(0)))
+  return isEmpty && (stored === null || stored.body.boothId !== boothId || stored.body.mixRevisionId !== mixRevisionId)
 }
 
 /** The device that writes; one that goes on without being enrolled takes the earlier one's name off. */

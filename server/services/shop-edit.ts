@@ -11,6 +11,7 @@ import type { Context } from '../utils/context'
 import { invalid, type FieldFault } from '../utils/errors'
 import { newId } from '../utils/ids'
 import { isDuplicate, mutate, type Mutation } from '../utils/transactions'
+import { settleClearance } from './booth-air'
 import { readBooth, readGun, readMixingCup, readScale } from './shop'
 
 interface Thing {
@@ -33,6 +34,8 @@ export interface Kind<Body extends { name: string }, T extends Thing> {
   faults?: (body: Body, before: T | null, trx: Knex.Transaction) => Promise<FieldFault[]>
   /** Why it may not be taken out of use now, or null. */
   keptFor?: (thing: T, trx: Knex.Transaction) => Promise<string | null>
+  /** What follows from a change. */
+  after?: (m: Mutation, id: string) => Promise<void>
 }
 
 /** Stands where a booth's clearance was not measured. Minutes; the engine's own figure. */
@@ -47,6 +50,8 @@ export const boothKind: Kind<BoothBody, Booth> = {
   toRow: ({ name, clearanceMin, clearanceMeasured }) =>
     ({ name, clearance_measured: clearanceMeasured, clearance_min: clearanceMeasured ? clearanceMin : unmeasuredClearanceMin }),
   keptFor: async ({ id }, trx) => (await hasLivePots(id, trx)) ? 'Pots of this booth are alive. Empty them first.' : null,
+  // Another clearance time moves the moment at which the booth may be entered.
+  after: settleClearance,
 }
 
 export const gunKind: Kind<GunBody, Gun> = {
@@ -121,6 +126,7 @@ export function changeThing<Body extends { name: string }, T extends Thing>(
     if (reason !== null) throw inUse(reason)
     await named(() => updateThing(kind.table, id, { ...kind.toRow(body), active: stays }, m.now, m.trx))
     const [from, to] = differences({ ...kind.toBody(before), active: before.active }, { ...body, active: stays })
+    await kind.after?.(m, id)
     m.audit({ action: `${kind.word}.changed`, subject: `${kind.word}:${id}`, facts: { from, to } })
     m.publish(told(kind.word, id))
     return kind.read(ctx, id, m.trx)

@@ -147,7 +147,7 @@ export type DraftInput = z.input<typeof DraftBody>
 export const DraftParams = z.strictObject({ id: Uuid })
 
 /** Body of `POST /api/batch-drafts/:id/discard`: why a mix into whose cup nothing came is given up. */
-export const DraftDiscardBody = z.strictObject({ reason: words(400) })
+export const DraftDiscardBody = z.strictObject({ reason: words(400), holder: z.optional(z.nullable(DraftHolder)) })
 export type DraftDiscardBody = z.infer<typeof DraftDiscardBody>
 
 const potLifeBases = ['sheet', 'table', 'held', 'rule'] as const
