@@ -70,7 +70,7 @@ describe('today\'s list after a pot', () => {
     const batch = await seal({ pieceIds: [] })
     expect(await row()).toMatchObject({ ready: 'mixing', reason: `Mixed, to be sprayed: ${batch.code}.`, areaM2: '0' })
     live.time.now = morning + 20 * 60_000
-    await closeBatch(live.as('foreman'), batch.id, { leftoverG: '900', at: null })
+    await closeBatch(live.as('foreman'), batch.id, { leftoverG: '900', at: null, sprayed: false })
     expect(await row()).toMatchObject({ ready: 'done', reason: `All pieces are mixed: ${batch.code}.` })
   })
 

@@ -98,7 +98,7 @@ describe('a pot that feeds two guns', () => {
     await shot(id, 'first-spray', secondGun)
     await shot(id, 'last-spray', secondGun)
     expect((await rebuildBatches(work.asSystem())).changed).not.toContain(id)
-  })
+  }, 60_000)
 })
 
 describe('a last spray that nobody tapped', () => {
