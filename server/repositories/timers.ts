@@ -19,6 +19,7 @@ interface TimerRow {
   announced_at: Date | null
   silenced_until: Date | null
   silenced_by: string | null
+  silenced_reason: string | null
   acknowledged_at: Date | null
   acknowledged_by: string | null
   created_at: Date
@@ -40,6 +41,7 @@ function toTimer(row: TimerRow): Timer {
     announcedAt: isoOrNull(row.announced_at),
     silencedUntil: isoOrNull(row.silenced_until),
     silencedBy: row.silenced_by,
+    silencedReason: row.silenced_reason,
     acknowledgedAt: isoOrNull(row.acknowledged_at),
     acknowledgedBy: row.acknowledged_by,
     createdAt: isoOf(row.created_at),
@@ -74,7 +76,7 @@ export async function setTimer(timer: NewTimer, now: number, db: Db): Promise<vo
     `INSERT INTO timers (id, kind, subject_type, subject_id, booth_id, label, due_at, state, created_by_user_id, version, created_at, updated_at)
      VALUES (?, ?, ?, ?, ?, ?, ?, 'waiting', ?, 1, ?, ?)
      ON DUPLICATE KEY UPDATE ${kept('fired_at', 'NULL')}, ${kept('announced_at', 'NULL')}, ${kept('silenced_until', 'NULL')},
-       ${kept('silenced_by', 'NULL')}, ${kept('acknowledged_at', 'NULL')}, ${kept('acknowledged_by', 'NULL')}, ${kept('state', '\'waiting\'')},
+       ${kept('silenced_by', 'NULL')}, ${kept('silenced_reason', 'NULL')}, ${kept('acknowledged_at', 'NULL')}, ${kept('acknowledged_by', 'NULL')}, ${kept('state', '\'waiting\'')},
        booth_id = VALUES(booth_id), label = VALUES(label), due_at = VALUES(due_at), version = version + 1, updated_at = VALUES(updated_at)`,
     [newId(), timer.kind, timer.subjectType, timer.subjectId, timer.boothId, timer.label, toInstant(timer.dueAt), timer.createdByUserId ?? null, at, at],
   )
@@ -131,6 +133,7 @@ export interface TimerChange {
   announcedAt?: number | null
   silencedUntil?: number | null
   silencedBy?: string | null
+  silencedReason?: string | null
   acknowledgedAt?: number | null
   acknowledgedBy?: string | null
 }
@@ -145,6 +148,7 @@ export async function updateTimer(id: string, change: TimerChange, now: number, 
   if (change.announcedAt !== undefined) columns.announced_at = instantOrNull(change.announcedAt)
   if (change.silencedUntil !== undefined) columns.silenced_until = instantOrNull(change.silencedUntil)
   if (change.silencedBy !== undefined) columns.silenced_by = change.silencedBy
+  if (change.silencedReason !== undefined) columns.silenced_reason = change.silencedReason
   if (change.acknowledgedAt !== undefined) columns.acknowledged_at = instantOrNull(change.acknowledgedAt)
   if (change.acknowledgedBy !== undefined) columns.acknowledged_by = change.acknowledgedBy
   await db('timers').where({ id }).update(columns)

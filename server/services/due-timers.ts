@@ -67,7 +67,7 @@ async function announce(m: Mutation, timer: Timer): Promise<void> {
 }
 
 async function unmute(m: Mutation, timer: Timer): Promise<void> {
-  await updateTimer(timer.id, { state: 'fired', announcedAt: m.now, silencedUntil: null, silencedBy: null }, m.now, m.trx)
+  await updateTimer(timer.id, { state: 'fired', announcedAt: m.now, silencedUntil: null, silencedBy: null, silencedReason: null }, m.now, m.trx)
   audit(m, timer, 'timer.unmuted')
   await publishTimer(m, timer.id)
   await publishPot(m, timer.subjectId)

@@ -172,8 +172,8 @@ export function silenceTimer(ctx: Context, id: string, body: TimerSilenceBody): 
     requireFired(timer)
     const by = await silencerName(ctx, body.byUserId ?? null, trx)
     const until = now + silenceMs
-    const change = { state: 'acknowledged', acknowledgedAt: now, acknowledgedBy: by, silencedUntil: until, silencedBy: by } as const
-    return { action: 'timer.silenced', facts: { until, reason: body.reason, byUserId: body.byUserId ?? userIdOf(ctx.principal) }, change }
+    const change = { state: 'acknowledged', acknowledgedAt: now, acknowledgedBy: by, silencedUntil: until, silencedBy: by, silencedReason: body.reason } as const
+    return { action: 'timer.silenced', facts: { until, byUserId: body.byUserId ?? userIdOf(ctx.principal) }, change }
   })
 }
 
@@ -200,7 +200,7 @@ export function extendTimer(ctx: Context, id: string, body: TimerExtendBody): Pr
     if (timer.kind !== 'free') throw ruleBroken('timer-not-free', 'Only a timer of your own can be extended.')
     if (timer.state === 'done' || timer.state === 'cancelled') throw ruleBroken('timer-ended', 'This timer has ended.')
     const dueAt = (timer.state === 'waiting' ? Date.parse(timer.dueAt) : now) + body.minutes * minuteMs
-    const quiet = { firedAt: null, announcedAt: null, silencedUntil: null, silencedBy: null, acknowledgedAt: null, acknowledgedBy: null }
+    const quiet = { firedAt: null, announcedAt: null, silencedUntil: null, silencedBy: null, silencedReason: null, acknowledgedAt: null, acknowledgedBy: null }
     return { action: 'timer.extended', facts: { minutes: body.minutes, dueAt }, change: { ...quiet, state: 'waiting', dueAt } }
   })
 }

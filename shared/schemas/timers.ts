@@ -26,6 +26,8 @@ export const Timer = z.object({
   announcedAt: z.nullable(z.string()),
   silencedUntil: z.nullable(z.string()),
   silencedBy: z.nullable(z.string()),
+  /** Their own words, where they gave some. */
+  silencedReason: z.nullable(z.string()),
   acknowledgedAt: z.nullable(z.string()),
   acknowledgedBy: z.nullable(z.string()),
   createdAt: z.string(),

@@ -241,8 +241,16 @@ describe('the bell of a pot', () => {
     expect((await readLive(elsewhere, undefined)).alarms.map(({ id }) => id)).toContain(timer.id)
     await expect(silenceTimer(elsewhere, timer.id, { reason: null })).rejects.toMatchObject({ status: 403 })
     expect(await audited('timer.silenced', timer.id)).toBe(0)
-    await silenceTimer(live.asScreen(boothId), timer.id, { reason: 'Flushing now' })
+    expect(await silenceTimer(live.asScreen(boothId), timer.id, { reason: 'Flushing now' })).toMatchObject({ silencedReason: 'Flushing now' })
     expect(await audited('timer.silenced', timer.id)).toBe(1)
+  })
+
+  it('keeps the words of who silenced it out of the audit', async () => {
+    const timer = await ring(await pot())
+    await silenceTimer(sprayer, timer.id, { reason: 'Jonas flushes his gun' })
+    const [entry] = await live.admin('audit_entries').where({ action: 'timer.silenced', subject: `timer:${timer.id}` }).select<{ bytes: string }[]>('bytes')
+    expect(entry?.bytes).toContain('"until"')
+    expect(entry?.bytes).not.toContain('Jonas')
   })
 
   it('cannot be lengthened, ended by hand, or silenced before it rings', async () => {

@@ -14,7 +14,7 @@ const pot = (id: string, more: Partial<LivePot> = {}): LivePot => ({
 
 const timer = (id: string, more: Partial<Timer> = {}): Timer => ({
   id, kind: 'pot-up', subjectType: 'batch', subjectId: 'a', boothId: 'one', boothName: 'Booth 1', label: 'B-a Sealer', dueAt: at, state: 'fired',
-  firedAt: at, announcedAt: at, silencedUntil: null, silencedBy: null, acknowledgedAt: null, acknowledgedBy: null, createdAt: at, version: 1, ...more,
+  firedAt: at, announcedAt: at, silencedUntil: null, silencedBy: null, silencedReason: null, acknowledgedAt: null, acknowledgedBy: null, createdAt: at, version: 1, ...more,
 })
 
 const window = (id: string, more: Partial<LiveWindow> = {}): LiveWindow => ({
