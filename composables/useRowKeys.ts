@@ -1,4 +1,4 @@
-import { nextTick, type Ref } from 'vue'
+import { nextTick, watch, type Ref } from 'vue'
 import { useEventListener } from '@vueuse/core'
 
 interface RowKeys {
@@ -7,7 +7,10 @@ interface RowKeys {
   open: (id: string | null) => void
 }
 
-/** While a row is open beside its list, the arrows up and down open its neighbours, wherever in the two the keyboard is. */
+/**
+ * While a row is open beside its list, the arrows up and down open its neighbours, wherever in the two the keyboard is.
+ * The open row stays in sight: the list gets narrower beside the drawer, and its rows move.
+ */
 export function useRowKeys({ items, openId, open }: RowKeys): void {
   useEventListener('keydown', (event: KeyboardEvent) => {
     const step = { ArrowDown: 1, ArrowUp: -1 }[event.key]
@@ -22,7 +25,11 @@ export function useRowKeys({ items, openId, open }: RowKeys): void {
     if (!next) return
     open(next.id)
     const row = document.querySelectorAll<HTMLElement>('tr[data-row]')[here + step]
-    row?.scrollIntoView({ block: 'nearest' })
     if (target?.closest('tr[data-row]')) void nextTick(() => row?.focus())
   }, { capture: true })
+  watch(openId, async (id) => {
+    if (id === null) return
+    await nextTick()
+    document.querySelector('tr[data-selected]')?.scrollIntoView({ block: 'nearest' })
+  }, { flush: 'post' })
 }
