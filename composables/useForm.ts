@@ -83,7 +83,11 @@ export function useForm<S extends z.ZodMiniType, T extends Record<string, unknow
     failure.value = null
     const parsed = safeParse(schema, options.body ? options.body(values) : values)
     errors.value = parsed.success ? {} : byPath(parsed.error.issues.map((issue) => ({ path: issue.path.join('.'), message: issue.message })))
-    if (!parsed.success) return await showFirstFault()
+    if (!parsed.success) {
+      // What is wrong with the whole has no field to stand beside.
+      failure.value = parsed.error.issues.find((issue) => issue.path.length === 0)?.message ?? null
+      return await showFirstFault()
+    }
     busy.value = true
     try {
       await sendOften(parsed.data)

@@ -38,11 +38,13 @@ export function materialValues(material?: Material) {
 
 /** The fields as the API takes them. */
 export function materialBody(values: MaterialValues): unknown {
-  const days = values.shelfLifeDays.trim()
+  const { version, ...fields } = values
+  const days = fields.shelfLifeDays.trim()
   return {
-    ...blanksToNull(values) as object,
+    ...blanksToNull(fields) as object,
     shelfLifeDays: days === '' ? null : /^\d{1,6}$/.test(days) ? parseInt(days, 10) : days,
-    version: values.version,
+    // A new one has no version, and the schema takes no key that it does not know.
+    ...(version === undefined ? {} : { version }),
   }
 }
 
