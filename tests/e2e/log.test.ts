@@ -50,7 +50,7 @@ describe('the log of batches', () => {
     await page.locator('tr[data-selected]').getByText('amended').waitFor()
     const [row] = await admin('amendments').where({ batch_id: batches.emptied.id, field: 'closedAt' })
     expect(row).toMatchObject({ reason: 'Noted when the gun was flushed' })
-  })
+  }, 120_000)
 
   it('says beside the field why a value cannot be, and keeps what was typed', async () => {
     const { page } = await visitAs('foreman', { expectedStatuses: [422] })
@@ -118,7 +118,7 @@ describe('the log of batches', () => {
     const { page } = await visitAs('foreman')
     await page.goto(`${baseUrl}/batches`)
     await alive(page)
-    await page.getByText(/^Needs review/).click()
+    await page.getByRole('search').getByText('Needs review').click()
     await page.locator('tr[data-row]', { hasText: batches.review.code }).click()
     const drawer = page.getByRole('dialog', { name: batches.review.code })
     await drawer.getByText('A component is out of tolerance and nobody approved it.').waitFor()

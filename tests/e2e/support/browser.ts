@@ -70,9 +70,14 @@ export async function visit(browser: Browser, options: VisitorOptions = {}): Pro
   return { context, page, faults, close: () => context.close() }
 }
 
-/** Waits until the page that the server drew answers to presses. */
+/** What Nuxt leaves at its root, as far as it is needed here. */
+interface Root extends Element {
+  __vue_app__?: { $nuxt?: { isHydrating?: boolean } }
+}
+
+/** Waits until the page that the server drew answers to presses: mounted, and what it waited for itself has come. */
 export async function alive(page: Page): Promise<void> {
-  await page.waitForFunction(() => '__vue_app__' in (document.querySelector('#__nuxt') ?? {}))
+  await page.waitForFunction(() => document.querySelector<Root>('#__nuxt')?.__vue_app__?.$nuxt?.isHydrating === false)
 }
 
 /** Signs in through the form, as a person would. */
