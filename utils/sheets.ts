@@ -1,7 +1,7 @@
 import { defineAsyncComponent, type Component } from 'vue'
 
 /** Parts that a page shows only once they are opened. They are as large as many a page, so they are fetched apart from it. */
-const apart = <Part extends Component>(fetch: () => Promise<{ default: Part }>) => ({
+export const apart = <Part extends Component>(fetch: () => Promise<{ default: Part }>) => ({
   fetch,
   Sheet: defineAsyncComponent({ loader: fetch, suspensible: false }),
 })
