@@ -1,6 +1,7 @@
 import type { Knex } from 'knex'
 import { msOrNull, toInstant } from '../utils/rows'
 import { newId } from '../utils/ids'
+import { stillSpraying } from './open-guns'
 
 type Db = Knex | Knex.Transaction
 
@@ -55,14 +56,14 @@ export async function findClearanceFacts(boothId: string | null, db: Db): Promis
   return facts
 }
 
-/** The first shot of each booth's pots with isocyanates that still stand and of which a gun was not ended. */
+/** The first shot of each booth's pots with isocyanates that still stand and that a gun still sprays, as far as anybody noted. */
 async function sprayingSince(boothId: string | null, db: Db): Promise<Map<string, number>> {
   const query = db('batch_current as c')
     .join('batch_events as f', 'f.batch_id', 'c.batch_id')
     .whereIn('c.state', ['fresh', 'closing', 'life-up', 'no-pot-life'])
     .whereNotNull('c.booth_id')
     .where('f.kind', 'first-spray')
-    .whereNotExists((ended) => ended.select(db.raw('1')).from('batch_events as l').whereRaw('l.batch_id = f.batch_id AND l.kind = \'last-spray\' AND l.gun_id <=> f.gun_id'))
+    .whereRaw(stillSpraying)
     .whereExists((reacts) => reacts.select(db.raw('1')).from('batch_components as x').join('materials as a', 'a.id', 'x.material_id')
       .whereRaw('x.batch_id = c.batch_id AND a.contains_isocyanates = 1'))
     .groupBy('c.booth_id')

@@ -1,9 +1,10 @@
 import { D } from '#shared/engine/decimal'
 import type { Batch, BatchCloseBody } from '#shared/schemas/batches'
 import { disposalFor } from '#shared/utils/disposal'
-import { gunSprays, sprayedSpan, type GunSpray } from '#shared/utils/pot-sprays'
+import { gunSprays, latestShot, sprayedSpan, type GunSpray } from '#shared/utils/pot-sprays'
 import { updateCurrent, type CurrentBatch, type CurrentChange } from '../repositories/batch-current'
 import { insertBatchEvent, insertWaste } from '../repositories/batches'
+import { findOpenGuns } from '../repositories/open-guns'
 import { findPotContent, listSprays, type PotContent } from '../repositories/sprays'
 import { userIdOf, type Context } from '../utils/context'
 import { toInstant } from '../utils/rows'
@@ -35,7 +36,7 @@ export function closeBatch(ctx: Context, id: string, body: BatchCloseBody): Prom
     const content = await findPotContent(id, m.trx)
     const disposal = body.disposal ?? disposalFor(content.chemistry, pot.reactiveAt !== null).key
     const weighed = body.leftoverG !== null
-    const ending = endingOf(pot, body, guns, { at, told })
+    const ending = endingOf(pot, body, guns, { at, told, latestAt: latestShot(await findOpenGuns([id], m.trx), at) })
     const details = { leftoverG: body.leftoverG, weighed, disposal, ...(ending?.assumed ? { lastSprayAssumed: true } : {}) }
     await updateCurrent(id, {
       ...changeBy(pot, ending, guns), state: 'emptied', closedAt: at, leftoverG: body.leftoverG, leftoverWeighed: weighed, disposal,
@@ -55,6 +56,11 @@ export function closeBatch(ctx: Context, id: string, body: BatchCloseBody): Prom
 interface Moments {
   at: number
   told: number | null
+}
+
+/** With the latest that it can have been sprayed where nobody tells. */
+interface EndMoments extends Moments {
+  latestAt: number
 }
 
 function refuseClosing(pot: CurrentBatch, leftoverG: string | null, guns: readonly GunSpray[], { at, told }: Moments): void {
@@ -82,13 +88,13 @@ interface Ending {
  * @returns null where everything was noted, or nothing of the pot was sprayed: because somebody says so, or because all
  * of it is left
  */
-function endingOf(pot: CurrentBatch, body: BatchCloseBody, guns: readonly GunSpray[], { at, told }: Moments): Ending | null {
+function endingOf(pot: CurrentBatch, body: BatchCloseBody, guns: readonly GunSpray[], { told, latestAt }: EndMoments): Ending | null {
   const { unended, lastAt } = sprayedSpan(guns)
   if (unended.length === 0 && lastAt !== null) return null
   const allLeft = body.leftoverG !== null && new D(body.leftoverG).eq(pot.pouredTotalG)
   if (unended.length === 0 && (body.sprayed === false || (body.sprayed === undefined && told === null && allLeft))) return null
   const gunIds = unended.length > 0 ? unended.map(({ gunId }) => gunId) : [pot.gunId]
-  return told === null ? { at, assumed: true, gunIds } : { at: told, assumed: false, gunIds }
+  return told === null ? { at: latestAt, assumed: true, gunIds } : { at: told, assumed: false, gunIds }
 }
 
 /** What was told is noted as any last spray; what is only assumed stands in the coat and not in the pot's own times. */

@@ -5,6 +5,7 @@ import { updateCurrent } from '../repositories/batch-current'
 import { readRecord } from '../repositories/batch-record'
 import { insertBatchEvent } from '../repositories/batches'
 import { isThere } from '../repositories/draft-references'
+import { findPotsInGun } from '../repositories/open-guns'
 import { standsUntil } from '../repositories/pots'
 import { findPotContent, listSprays, type PotContent, type SprayEvent } from '../repositories/sprays'
 import type { Context } from '../utils/context'
@@ -40,6 +41,7 @@ export function recordBatchEvent(ctx: Context, id: string, body: BatchEventBody)
     await insertBatchEvent({ ...actorOf(ctx), batchId: id, kind: body.kind, at: toInstant(at), gunId, boothId: pot.boothId, details: early, createdAt: toInstant(m.now) }, m.trx)
     const settled = await settleSprays(ctx, m, pot, [...before, { batchId: id, kind: body.kind, gunId, gunName: null, at }], body.kind)
     if (pot.boothId !== null && content.containsIsocyanates) await noteShot(m, pot.boothId, body.kind === 'first-spray' ? null : at)
+    if (body.kind === 'first-spray' && gunId !== null) await endInOtherPots(m, gunId, { at, except: id })
     m.audit({ action: `batch.${body.kind}`, subject: `batch:${id}`, facts: { at, gunId, ...settled, ...early } })
     await publishPot(m, id)
     return potAnswer(m, id)
@@ -74,6 +76,15 @@ async function effectiveNow(m: Mutation, id: string): Promise<EffectiveBatch['cu
 /** The gun that sprayed last. */
 function lastGunOf(guns: readonly GunSpray[]): string | null {
   return guns.reduce<GunSpray | null>((last, gun) => (gun.lastAt !== null && gun.lastAt >= (last?.lastAt ?? 0) ? gun : last), null)?.gunId ?? null
+}
+
+/** One gun holds one pot: what it was loaded from before, it has sprayed by `at` at the latest, noted or not. */
+async function endInOtherPots(m: Mutation, gunId: string, moment: { at: number; except: string }): Promise<void> {
+  for (const { batchId, boothId } of await findPotsInGun(gunId, moment, m.trx)) {
+    await publishUnended(m, batchId, boothId)
+    const { containsIsocyanates } = await findPotContent(batchId, m.trx)
+    if (boothId !== null && containsIsocyanates) await noteShot(m, boothId, moment.at)
+  }
 }
 
 /** Spraying before the standing time of the sheet is over is a fact and is kept as such. */

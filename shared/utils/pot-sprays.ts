@@ -52,3 +52,10 @@ export function sprayedSpan(guns: readonly GunSpray[]): SpraySpan {
     unended,
   }
 }
+
+/**
+ * The latest that guns which were not ended can have sprayed a pot: `now`, or before it the moment at which each of them
+ * was loaded from another pot. Instants are epoch milliseconds.
+ */
+export const latestShot = (open: readonly { movedOnAt: number | null }[], now: number): number =>
+  open.length === 0 ? now : Math.max(...open.map(({ movedOnAt }) => Math.min(movedOnAt ?? now, now)))

@@ -107,6 +107,22 @@ describe('the clearance of a booth', () => {
   })
 })
 
+describe('a gun that is loaded with something without isocyanates', () => {
+  it('has ended spraying the pot before: the clearance counts from then, tapped or not', async () => {
+    at(410)
+    const before = await pot()
+    await shot(before, 'first-spray')
+    expect(await clearance()).toMatchObject({ state: 'spraying' })
+    at(425)
+    const plain = await pot({ mixRevisionId: work.shop.plainMixRevisionId, components: poured(work.shop, ['500']) })
+    await shot(plain, 'first-spray')
+    expect(await clearance()).toMatchObject({ state: 'counting', lastShotAt: minutesIn(425), clearAt: minutesIn(455) })
+    await shot(plain, 'last-spray')
+    at(456)
+    expect(await clearance()).toBeNull()
+  })
+})
+
 describe('the extraction', () => {
   it('is noted with its person, and what was before', async () => {
     at(500)

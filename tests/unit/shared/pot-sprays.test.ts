@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import { gunSprays, sprayedSpan } from '#shared/utils/pot-sprays'
+import { gunSprays, latestShot, sprayedSpan } from '#shared/utils/pot-sprays'
 
 const shot = (kind: 'first-spray' | 'last-spray' | 'gun-flushed', gunId: string | null, at: number) => ({ kind, gunId, gunName: gunId, at })
 
@@ -31,5 +31,15 @@ describe('a pot of which little was noted', () => {
 
   it('was not sprayed by a gun that was only flushed', () => {
     expect(sprayedSpan(gunSprays([shot('gun-flushed', 'a', 30)]))).toEqual({ firstAt: null, lastAt: null, unended: [] })
+  })
+})
+
+describe('the latest shot from a pot whose guns were not ended', () => {
+  it('is when each of them was loaded from another pot, and the present while one may still spray', () => {
+    expect(latestShot([], 100)).toBe(100)
+    expect(latestShot([{ movedOnAt: null }], 100)).toBe(100)
+    expect(latestShot([{ movedOnAt: 40 }, { movedOnAt: 60 }], 100)).toBe(60)
+    expect(latestShot([{ movedOnAt: 40 }, { movedOnAt: null }], 100)).toBe(100)
+    expect(latestShot([{ movedOnAt: 140 }], 100)).toBe(100)
   })
 })
