@@ -14,6 +14,8 @@ const run = promisify(execFile)
 
 /** A schema beside the server's, so that nobody else fires timers in it or adds to its ledger. */
 export interface Schema {
+  /** Address for the application's user. */
+  url: string
   admin: Knex
   /** As the application's user. */
   db: Knex
@@ -46,7 +48,7 @@ export async function openSchema(name: string, { migrated = true, poolMax = 25 }
     await admin.raw('DROP DATABASE IF EXISTS ??', [schema])
     await close()
   }
-  return { admin, db, migrate, drop, close }
+  return { url: inSchema(appUrl, schema), admin, db, migrate, drop, close }
 }
 
 /** True when an earlier test file has brought the schema up to date. */
