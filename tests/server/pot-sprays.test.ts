@@ -145,6 +145,8 @@ describe('a last spray that nobody tapped', () => {
     await shot(id, 'first-spray')
     later(60)
     await closeBatch(work.as('sprayer'), id, { leftoverG: '0', at: null })
+    // Of two coats of one instant nobody could say which was written later.
+    later(61)
     const { applications } = await recordBatchEvent(work.as('sprayer'), id, { kind: 'last-spray', gunId: null, at: minutesIn(20) })
     const standing = (await windowsAt({ boothId: work.shop.boothId }, work.clock.now, work.db)).filter((window) => applications.some((one) => one.id === window.id))
     expect(standing).toMatchObject([{ assumed: false, opensAt: minutesIn(80) }])
@@ -187,35 +189,44 @@ describe('the first coat of a planned job', () => {
 })
 
 describe('a gun that is loaded from another pot', () => {
+  // New guns for each test: in the record of the others stands what other tests did with them in the same hour.
+  let gun: string
+  let another: string
+  beforeEach(async () => {
+    [gun, another] = [randomUUID(), randomUUID()]
+    const [known] = await work.admin('guns').where({ id: work.shop.gunId }).select<Record<string, unknown>[]>()
+    await work.admin('guns').insert([gun, another].map((id) => ({ ...known, id, name: `Gun ${id.slice(0, 8)}` })))
+  })
+
   it('has ended with the one before: its window stands still, and emptying assumes no later last spray', async () => {
     const before = await pot(await newPiece())
     later(5)
-    await shot(before, 'first-spray')
+    await shot(before, 'first-spray', gun)
     expect(await windowsOf(before)).toMatchObject([{ unended: { minMs: 3_600_000, maxMs: 14_400_000 } }])
     later(20)
     const after = await pot(await newPiece())
-    await shot(after, 'first-spray')
+    await shot(after, 'first-spray', gun)
     later(50)
     expect(await windowsOf(before)).toMatchObject([{ assumed: true, unended: null, lastAt: minutesIn(20), opensAt: minutesIn(80), closesAt: minutesIn(245) }])
     const told = await work.admin('events').where({ subject: `batch:${before}`, type: 'window' }).orderBy('seq', 'desc').first<{ payload: string }>('payload')
     expect(JSON.parse(told.payload)).toMatchObject({ unended: null, lastAt: minutesIn(20) })
     const { applications } = await closeBatch(work.as('sprayer'), before, { leftoverG: '0', at: null })
     expect(applications).toMatchObject([{ lastAt: minutesIn(20), lastAssumed: true, opensAt: minutesIn(80) }])
-    await shot(after, 'last-spray')
+    await shot(after, 'last-spray', gun)
   })
 
   it('says nothing about the pot\'s other guns, one of which may still spray', async () => {
     const id = await pot(await newPiece())
     later(5)
-    await shot(id, 'first-spray')
-    await shot(id, 'first-spray', secondGun)
+    await shot(id, 'first-spray', gun)
+    await shot(id, 'first-spray', another)
     later(20)
     const other = await pot(await newPiece())
-    await shot(other, 'first-spray')
+    await shot(other, 'first-spray', gun)
     later(50)
     expect(await windowsOf(id)).toMatchObject([{ unended: { minMs: 3_600_000 }, lastAt: minutesIn(50) }])
-    await shot(id, 'last-spray', secondGun)
+    await shot(id, 'last-spray', another)
     expect(await windowsOf(id)).toMatchObject([{ unended: null, lastAt: minutesIn(50) }])
-    await shot(other, 'last-spray')
+    await shot(other, 'last-spray', gun)
   })
 })
