@@ -113,7 +113,7 @@ describe('a pot whose life ends', () => {
     await sheet.getByRole('button', { name: 'Emptied, not weighed' }).click()
     for (const one of [...walls, elsewhere]) await one.getByText('No pots live').waitFor()
     expect(await axeFaults(wall)).toEqual([])
-  }, 120_000)
+  }, 180_000)
 })
 
 describe('three pots of one plan', () => {
@@ -192,5 +192,5 @@ describe('three pots of one plan', () => {
       await wall.locator(`[data-window="${windowId}"][data-state="${state}"]`).waitFor()
     }
     expect(await axeFaults(wall)).toEqual([])
-  }, 120_000)
+  }, 180_000)
 })
