@@ -7,7 +7,7 @@ import { Stop, main, say } from './lib/process.mjs'
 
 /**
  * Takes the README's pictures of a running demo shop: `node scripts/pictures.mjs http://127.0.0.1:3000`. It signs in
- * as the demo's people and mixes one pot that it stops again.
+ * as the demo's people and mixes one pot, as far as too much hardener.
  */
 const folder = join(root, 'docs', 'pictures')
 const screens = { bench: { width: 1280, height: 800 }, booth: { width: 1920, height: 1080 }, office: { width: 1440, height: 900 } }
@@ -27,7 +27,7 @@ const shoot = (page, name) => page.screenshot({ path: join(folder, `${name}.png`
 
 async function shootBench(browser, url) {
   const page = await open(browser, url, 'sprayer', 'bench')
-  await page.getByRole('region', { name: 'Today\'s list' }).getByRole('button', { name: /Ready/ }).first().click()
+  await page.getByRole('region', { name: 'Today\'s list' }).getByRole('button', { name: /sealer[\s\S]*Ready/i }).first().click()
   await page.waitForLoadState('networkidle')
   await shoot(page, 'bench-setup')
   await page.getByRole('button', { name: /^Start (this pot|pot 1)/ }).click()
@@ -38,7 +38,28 @@ async function shootBench(browser, url) {
   await reading.fill(String(Math.round(Number(whole) * 0.9)))
   await page.getByText('Keep pouring').first().waitFor()
   await shoot(page, 'bench-pour')
-  await page.getByRole('button', { name: 'Stop this mix' }).click()
+  await pourTooMuchHardener(page)
+  await shoot(page, 'bench-correction')
+}
+
+const figure = text => Number((/[\d\u2009]+(?:\.\d+)?/.exec(text)?.[0] ?? '0').replace(/[^\d.]/g, ''))
+const targetOn = async page => figure(await page.getByRole('region', { name: 'Pour', exact: true }).getByRole('button', { name: /show the sum: Target of/ }).innerText())
+
+async function weigh(page, grams) {
+  const reading = page.getByLabel(/^Grams of .* on the scale/)
+  await reading.fill(grams.toFixed(1))
+  await reading.press('Enter')
+}
+
+/** Base to its target, then a tenth too much of what follows: the correction sheet opens by itself. */
+async function pourTooMuchHardener(page) {
+  await weigh(page, await targetOn(page))
+  await page.getByRole('button', { name: /^Next component/ }).click()
+  const asked = page.getByRole('dialog').getByRole('button', { pressed: false })
+  await asked.first().waitFor()
+  while (await asked.count() > 0) await asked.first().click()
+  await weigh(page, await targetOn(page) * 1.1)
+  await page.getByRole('button', { name: /^Correct the others/ }).waitFor()
 }
 
 async function shootBooth(browser, url) {
@@ -60,6 +81,12 @@ async function shootOffice(browser, url) {
     await page.waitForLoadState('networkidle')
     await shoot(page, name)
   }
+  await page.goto(`${url}/batches`)
+  await page.waitForLoadState('networkidle')
+  await page.getByRole('link', { name: /^B-\d{4,}$/ }).nth(3).click()
+  await page.waitForURL(/\/batches\/[0-9a-f-]{36}/)
+  await page.waitForLoadState('networkidle')
+  await shoot(page, 'batch')
 }
 
 await main(async () => {
