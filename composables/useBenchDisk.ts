@@ -69,7 +69,11 @@ export function useBenchDisk() {
   return {
     readKept: async (): Promise<BenchKept | undefined> => (await database()).get('bench', 'kept'),
     writeKept: async (kept: BenchKept): Promise<void> => {
-      await (await database()).put('bench', plain(kept), 'kept')
+      const trx = (await database()).transaction('bench', 'readwrite')
+      void trx.store.put(plain(kept), 'kept')
+      // A page that goes would take an open transaction with it; a committed one is out of its hands.
+      trx.commit()
+      await trx.done
     },
     readSnapshot: async (): Promise<BenchSnapshotKept | undefined> => (await database()).get('snapshot', 'last'),
     writeSnapshot: async (kept: BenchSnapshotKept): Promise<void> => {

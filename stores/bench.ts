@@ -7,7 +7,7 @@ import { draftOf } from '#shared/utils/bench-draft'
 import { reckon, withFittingCup } from '#shared/utils/bench-reckon'
 import type { BenchRun } from '#shared/utils/bench-run'
 import { blankSetup, setupAfterPot, type BenchHome, type BenchSetup } from '#shared/utils/bench-setup'
-import { isTakenOver, runOfDraft, takenOverWords } from '#shared/utils/bench-takeover'
+import { isTakenOver, takenOverWords } from '#shared/utils/bench-takeover'
 import { benchTools } from '#shared/utils/bench-tools'
 import { toIso } from '#shared/utils/instant'
 import { shopDate } from '#shared/utils/zone'
@@ -16,6 +16,7 @@ import { useBenchNumbers } from '~/composables/useBenchNumbers'
 import { useOutboxStore } from '~/stores/outbox'
 import { useSessionStore } from '~/stores/session'
 import { useTimersStore } from '~/stores/timers'
+import { afterPaint } from '~/utils/after-paint'
 import { callApi, toFailure } from '~/utils/api'
 
 /** Drafts go out this long after the last change; at steps and at the start of a pot life at once. */
@@ -58,6 +59,8 @@ export const useBenchStore = defineStore('bench', () => {
   const refusal = ref<BenchRefusal | null>(null)
   /** The pot at hand as the log has it. */
   const logged = shallowRef<Batch | null>(null)
+  /** The form was changed and is not on the disk yet. */
+  let keepsSoon = false
   let saveTimer: ReturnType<typeof setTimeout> | undefined
 
   const zone = computed(() => session.shop?.zone ?? 'UTC')
@@ -133,13 +136,22 @@ export const useBenchStore = defineStore('bench', () => {
   }
 
   async function keep(): Promise<void> {
+    keepsSoon = false
     if (!setup.value || !session.user) return
     await disk.writeKept({ userId: session.user.id, setup: setup.value, plan: plan.value, run: run.value, turn: turn.value })
   }
 
-  async function changeSetup(next: BenchSetup): Promise<void> {
+  /** A key's new figures are on the screen before they go to the disk; keys that come close together are written once. */
+  function changeSetup(next: BenchSetup): void {
     setup.value = next
-    await keep()
+    if (keepsSoon) return
+    keepsSoon = true
+    afterPaint(() => void keepChanged())
+  }
+
+  /** Writes what a change of the form has not written yet: nothing waits when the page goes. */
+  async function keepChanged(): Promise<void> {
+    if (keepsSoon) await keep()
   }
 
   /** A change of the cup: on the tablet at once, to the server soon, or now where it may not wait. */
@@ -169,7 +181,8 @@ export const useBenchStore = defineStore('bench', () => {
 
   /** Goes on here with a batch that another tablet has begun; that one is refused from then on. */
   async function takeOver(id: string): Promise<void> {
-    const draft = await callApi<Draft>(`/api/batch-drafts/${id}`)
+    // It needs the network anyhow, and only then what reads another tablet's state.
+    const [draft, { runOfDraft }] = await Promise.all([callApi<Draft>(`/api/batch-drafts/${id}`), import('#shared/utils/bench-takeover-run')])
     const next = snapshot.value && session.user ? runOfDraft(draft, snapshot.value, session.user.id) : null
     if (draft.state !== 'open') throw new Error(`${draft.code} is in the log already.`)
     if (next === null) throw new Error('Its mix, cup or scale is not in this bench\'s list: go on with it where it was begun.')
@@ -216,7 +229,7 @@ export const useBenchStore = defineStore('bench', () => {
     logged.value = null
     await keep()
     await refresh()
-    if (setup.value && snapshot.value) await changeSetup(withFittingCup(setupAfterPot(setup.value, snapshot.value, home.value), snapshot.value))
+    if (setup.value && snapshot.value) changeSetup(withFittingCup(setupAfterPot(setup.value, snapshot.value, home.value), snapshot.value))
   }
 
   /** Leaves a batch that the server does not take from this tablet; what waits of it is not sent any more. */
@@ -242,6 +255,6 @@ export const useBenchStore = defineStore('bench', () => {
 
   return {
     status, failure, snapshot, snapshotAt, isOffline, offsetMs, startOffsetMs, isAway, numbers: numbers.held, setup, plan, run, refusal, logged, zone, home, reckoning, tools,
-    now, today, load, refresh, changeSetup, change, begin, takeOver, checkHeld, seal, discard, leave, giveUp,
+    now, today, load, refresh, changeSetup, keepChanged, change, begin, takeOver, checkHeld, seal, discard, leave, giveUp,
   }
 })

@@ -7,7 +7,7 @@ import type { DraftBody } from '#shared/schemas/drafts'
 import { gunSprays, sprayedSpan } from '#shared/utils/pot-sprays'
 import type { EffectiveCurrent } from '../repositories/batch-current'
 import type { BatchOnRecord, EffectiveFacts, RecordComponent, RecordPour } from '../repositories/batch-record'
-import { judgeBatch, mixInputOf, potTimesOf } from './batch-sums'
+import { judgeBatch, mixInputOf, potTimesOf, wasCorrected } from './batch-sums'
 import { deviationOf } from './seal-facts'
 
 /** A batch as it is now, by its record alone, with every value that can be amended by the name of its field. */
@@ -56,7 +56,7 @@ export function effectiveOf(record: BatchOnRecord, now: number): EffectiveBatch 
       reactiveAt: msOf(get('reactiveAt')), lateAt: life.lateAt, endsAt: life.endsAt, firstSprayAt: msOf(get('firstSprayAt')), lastSprayAt, closedAt,
       leftoverG, leftoverWeighed: emptied ? leftoverG !== null : null, disposal: emptied ? String(emptied.details.disposal) : null,
       used: usedOf(life, lastSprayAt), pouredTotalG: print(sum(cup.pours.map(({ grams }) => new D(grams)))), ...spreadOf(record, cup.components),
-      corrected: record.snapshot.corrections.some(({ accepted }) => accepted) || record.pours.some(({ round }) => round > 0),
+      corrected: wasCorrected(record.snapshot.corrections, cup.pours, cup.components),
       reviewOpen: openReview.length > 0, amended, effective: amended ? facts : null,
     },
   }

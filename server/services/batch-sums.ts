@@ -5,6 +5,7 @@ import { hasPotLife, readMix, type MixInput } from '#shared/engine/mix'
 import { calculatePotLife, potLifeStart, warmerC } from '#shared/engine/pot-life'
 import { calculatePour, type PourAnswer } from '#shared/engine/pour'
 import { canWeigh, readScale, type ScaleInput } from '#shared/engine/scale'
+import type { Verdict } from '#shared/engine/verdict'
 import type { WorkingLine } from '#shared/engine/working'
 import type { DraftBody, DraftPlan, PotLife } from '#shared/schemas/drafts'
 import type { ScaleRecord } from '../repositories/draft-references'
@@ -120,6 +121,20 @@ export function judgeBatch(revision: MixRevision, body: Pick<DraftBody, 'plan' |
     outOfTolerance: followers.some(({ verdict }) => verdict === 'short' || verdict === 'too-much'),
     working: [...plan.working, ...pourWorking(mix, poured, pour, baseIndex)],
   }
+}
+
+/** Of a component, as far as it tells whether more of it was a correction. */
+type PouredComponent = { index: number; role: string | null; verdict: Verdict | null }
+
+/**
+ * Whether a pot was corrected: somebody took a correction, or poured again of something. Thinner added within its range,
+ * for the viscosity, corrects nothing.
+ */
+export function wasCorrected(
+  corrections: readonly { accepted: boolean }[], pours: readonly { index: number; round: number }[], components: readonly PouredComponent[],
+): boolean {
+  const thinned = new Set(components.filter(({ role, verdict }) => role === 'thinner' && verdict !== 'too-much').map(({ index }) => index))
+  return corrections.some(({ accepted }) => accepted) || pours.some(({ index, round }) => round > 0 && !thinned.has(index))
 }
 
 /** The plan's total, or that of the last correction that was taken, grams. */

@@ -14,7 +14,7 @@ import { toInstant } from '../utils/rows'
 import { mutateUnlessDone } from '../utils/settled'
 import type { Mutation } from '../utils/transactions'
 import { clashAt } from './booth-guard'
-import { judgeBatch, potLives, potTimesOf, reactiveByPours } from './batch-sums'
+import { judgeBatch, potLives, potTimesOf, reactiveByPours, wasCorrected } from './batch-sums'
 import { notAfter } from './device-clock'
 import { mayHold, takenOver } from './draft-holder'
 import { lotIdsOf, readReferences } from './draft-references'
@@ -96,7 +96,7 @@ async function writeBatch(m: Mutation, sealing: Sealing, pours: readonly PourRec
     worstDeviationPct: deviationOf(sums.worstDeviationPct),
     worstRole: sums.worstRole,
     outOfTolerance: !body.stopped && sums.outOfTolerance,
-    corrected: body.corrections.some(({ accepted }) => accepted) || pours.some(({ round }) => round > 0),
+    corrected: wasCorrected(body.corrections, pours, componentsOf(sealing)),
     reviewOpen: review.length > 0,
   }, m.now, m.trx)
   await insertUses({

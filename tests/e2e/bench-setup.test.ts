@@ -2,7 +2,7 @@ import { randomUUID } from 'node:crypto'
 import { afterAll, describe, expect, it } from 'vitest'
 import { demoPassword } from '#shared/utils/demo'
 import { createKnex } from '../../server/database/connection'
-import { codeOf, labelAndLog, next, pourToTargets, putOnWhatIsAsked, reactingMix, setUpLooseMix, targetOf, weigh } from './support/bench'
+import { codeOf, labelAndLog, next, pourToTargets, putOnWhatIsAsked, reactingMix, setUpLooseMix, targetOf, untilReadyForOffline, weigh } from './support/bench'
 import { axeFaults, baseUrl, overflowsSideways } from './support/browser'
 import { signedIn } from '../server/support/http'
 import { useVisitors } from './support/visitors'
@@ -116,7 +116,7 @@ describe('a booth that was last used for something that clashes', () => {
     await page.getByRole('heading', { name: 'Stir the base to the bottom' }).waitFor()
     await page.getByRole('button', { name: 'Stop this mix' }).click()
     await page.getByRole('button', { name: 'Spilled' }).click()
-    await page.getByRole('button', { name: 'Stop and log it' }).click()
+    await page.getByRole('button', { name: 'Stop and void the number' }).click()
     await admin('booths').where({ id: boothId }).update({ active: false })
   })
 })
@@ -155,9 +155,8 @@ describe('a bench without network', () => {
       headers: { 'Origin': baseUrl, 'Idempotency-Key': randomUUID() }, data: { kind: 'bench', name: `Bench ${randomUUID().slice(0, 6)}`, boothId, scaleId: null },
     })
     expect(enrolled.status()).toBe(201)
-    await page.reload()
-    await page.getByRole('button', { name: 'Loose mix, no job' }).waitFor()
-    await page.waitForResponse((answer) => answer.url().endsWith('/api/number-blocks') && answer.ok()).catch(() => null)
+    await Promise.all([page.waitForResponse((answer) => answer.url().endsWith('/api/number-blocks') && answer.ok()), page.reload()])
+    await untilReadyForOffline(page)
     await context.setOffline(true)
     await page.getByText(/No connection since/).waitFor()
     const range = /B-\d{4,} to B-\d{4,}/.exec(await page.getByRole('region', { name: 'Today\'s list' }).innerText())?.[0] ?? ''
@@ -189,7 +188,8 @@ describe('set-up', () => {
     await page.getByRole('heading', { name: 'Stir the base to the bottom' }).waitFor()
     await page.getByRole('button', { name: 'Stop this mix' }).click()
     await page.getByRole('button', { name: 'Not needed any more' }).click()
-    await page.getByRole('button', { name: 'Stop and log it' }).click()
+    await page.getByRole('button', { name: 'Stop and void the number' }).click()
+    await page.getByRole('button', { name: 'Loose mix, no job' }).waitFor()
   })
 
   it('shows faults beside their fields, the area of what is left in the tin, and loses nothing', async () => {

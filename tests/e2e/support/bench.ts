@@ -31,6 +31,14 @@ export async function setUpLooseMix(page: Page, mixName: string, areaM2: string,
   await page.getByRole('region', { name: 'Pour' }).waitFor()
 }
 
+/** Waits until the bench says that it can mix without a network. */
+export async function untilReadyForOffline(page: Page): Promise<void> {
+  await page.getByRole('banner').locator('button[aria-haspopup=dialog]').last().click()
+  await page.getByRole('dialog').getByText('This tablet can mix without the network.').waitFor()
+  await page.getByRole('dialog').getByRole('button', { name: 'Go on' }).click()
+  await page.getByRole('dialog').waitFor({ state: 'hidden' })
+}
+
 /** The code that the server gave to the pot at hand, once it has come. */
 export async function codeOf(page: Page): Promise<string> {
   const code = /B-\d{4,}/
@@ -83,4 +91,47 @@ export async function labelAndLog(page: Page, hand: Hand = pointer): Promise<str
   const logged = page.getByRole('heading', { name: /^B-\d{4,} is in the log$/ })
   await logged.waitFor()
   return (await logged.innerText()).split(' ')[0] ?? ''
+}
+
+/** First and last piece of a pot, as the set-up lists them. */
+export interface PieceSpan { from: number; to: number }
+
+/** Coats of one pass that the form takes. */
+const MOST_COATS = 6
+
+/**
+ * Picks a planned coat, and a cup and coats with which it goes into so many pots. The set-up then stands ready to start.
+ *
+ * @param mixNames mixes that the test can make
+ * @returns the pieces of each pot, in order
+ */
+export async function planInPots(page: Page, count: number, mixNames: readonly string[]): Promise<PieceSpan[]> {
+  const list = page.getByRole('region', { name: 'Today\'s list' })
+  const rows = list.getByRole('button', { name: /Ready/ })
+  await rows.first().waitFor()
+  const cups = page.getByLabel('Cup', { exact: true })
+  const start = page.getByRole('button', { name: new RegExp(`^Start pot 1 of ${count}:`), disabled: false })
+  for (const row of await rows.all()) {
+    await row.click()
+    const material = await page.getByLabel('Material', { exact: true }).evaluate((select) => (select as HTMLSelectElement).selectedOptions[0]?.label.trim() ?? '')
+    if (!mixNames.includes(material)) continue
+    for (let coats = 1; coats <= MOST_COATS; coats++) {
+      for (const cup of await cups.locator('option').evaluateAll((options) => options.map((option) => (option as HTMLOptionElement).value))) {
+        await cups.selectOption(cup)
+        if (await start.count() > 0) return spansOf(page)
+      }
+      const more = page.getByRole('button', { name: 'Coats: one more' })
+      if (await more.isDisabled()) break
+      await more.click()
+    }
+  }
+  throw new Error(`no planned coat of the demo shop goes into ${count} pots`)
+}
+
+async function spansOf(page: Page): Promise<PieceSpan[]> {
+  const lines = await page.getByRole('region', { name: 'This pot' }).getByRole('listitem').filter({ hasText: /^pot \d+: pieces/ }).allInnerTexts()
+  return lines.map((line) => {
+    const [, from, to] = /pieces (\d+) to (\d+)/.exec(line) ?? []
+    return { from: Number(from), to: Number(to) }
+  })
 }

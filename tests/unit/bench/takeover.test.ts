@@ -4,7 +4,8 @@ import { draftOf } from '#shared/utils/bench-draft'
 import { judgeRun } from '#shared/utils/bench-judge'
 import { reckon } from '#shared/utils/bench-reckon'
 import { baseStirred, inCupG, nextStep, startRun, takeReading, type BenchRun } from '#shared/utils/bench-run'
-import { isTakenOver, mayGoOn, runOfDraft } from '#shared/utils/bench-takeover'
+import { isTakenOver, mayGoOn } from '#shared/utils/bench-takeover'
+import { runOfDraft } from '#shared/utils/bench-takeover-run'
 import { id, setup, snapshot, tools } from './shop'
 
 const at = Date.parse('2026-11-17T08:00:00.000Z')

@@ -5,7 +5,7 @@ import type { DraftBody, DraftPlan } from '#shared/schemas/drafts'
 import type { ScaleRecord } from '../../../server/repositories/draft-references'
 import type { MixRevision, RevisionComponent } from '../../../server/repositories/mix-revisions'
 import {
-  canHold, judgeBatch, minutesMs, planOf, plansThisMix, potLives, potTimesOf, pouredOf, pouredTotalOf, reactiveByPours, scaleInputOf,
+  canHold, judgeBatch, minutesMs, planOf, plansThisMix, potLives, potTimesOf, pouredOf, pouredTotalOf, reactiveByPours, scaleInputOf, wasCorrected,
 } from '../../../server/services/batch-sums'
 
 const component = (index: number, role: RevisionComponent['role'], parts: string, more: Partial<RevisionComponent> = {}): RevisionComponent => ({
@@ -105,6 +105,25 @@ describe('what was poured', () => {
       expect(pouredTotalG).toBe(whole.toString())
       expect(pour.components.reduce((total, one) => total.plus(one.pouredG ?? 0), new D(0)).toString()).toBe(pouredTotalG)
     }))
+  })
+})
+
+describe('a correction', () => {
+  const parts = [{ index: 0, role: 'base', verdict: 'in-tolerance' as const }, { index: 1, role: 'hardener', verdict: 'in-tolerance' as const }, { index: 2, role: 'thinner', verdict: 'in-tolerance' as const }]
+  const once = [0, 1, 2].map((index) => ({ index, round: 0 }))
+
+  it('is one that somebody took, or more of something that was in already', () => {
+    expect(wasCorrected([], once, parts)).toBe(false)
+    expect(wasCorrected([{ accepted: false }], once, parts)).toBe(false)
+    expect(wasCorrected([{ accepted: true }], once, parts)).toBe(true)
+    expect(wasCorrected([], [...once, { index: 1, round: 1 }], parts)).toBe(true)
+  })
+
+  it('is not thinner added within its range, but thinner past it is', () => {
+    const thinned = [...once, { index: 2, round: 1 }]
+    expect(wasCorrected([], thinned, parts)).toBe(false)
+    expect(wasCorrected([], thinned, parts.map((one) => (one.role === 'thinner' ? { ...one, verdict: 'too-much' as const } : one)))).toBe(true)
+    expect(wasCorrected([{ accepted: true }], thinned, parts)).toBe(true)
   })
 })
 

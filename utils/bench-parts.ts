@@ -1,0 +1,21 @@
+/**
+ * Fetches what the bench shows after the set-up: the steps of a pot and the questions that may come up meanwhile. Once
+ * fetched they are there without a network too.
+ *
+ * @returns when all are there; rejects where one cannot be fetched, a next call tries again
+ */
+export const fetchBenchParts = (): Promise<unknown> => Promise.all([
+  import('~/components/bench/BenchStir.vue'),
+  import('~/components/bench/BenchPour.vue'),
+  import('~/components/bench/BenchStand.vue'),
+  import('~/components/bench/BenchLabel.vue'),
+  import('~/components/bench/BenchLogged.vue'),
+  import('~/components/bench/BenchHazards.vue'),
+  import('~/components/bench/BenchHazardSheet.vue'),
+  import('~/components/bench/BenchRefused.vue'),
+  import('~/components/bench/BenchBoothClean.vue'),
+  import('~/components/bench/BenchPickPieces.vue'),
+  import('~/components/bench/BenchStepDone.vue'),
+  import('~/components/base/BaseDialogSheet.vue'),
+  import('~/components/base/BaseWorkingSheet.vue'),
+])
