@@ -1,5 +1,5 @@
 /**
- * Fetches what the bench shows after the set-up: the steps of a pot and the questions that may come up meanwhile. Once
+ * Fetches what the bench does not show at first: a pot's figures, its steps and the questions that may come up meanwhile. Once
  * fetched they are there without a network too.
  *
  * @returns when all are there; rejects where one cannot be fetched, a next call tries again
@@ -14,6 +14,8 @@ export const fetchBenchParts = (): Promise<unknown> => Promise.all([
   import('~/components/bench/BenchHazardSheet.vue'),
   import('~/components/bench/BenchRefused.vue'),
   import('~/components/bench/BenchBoothClean.vue'),
+  import('~/components/bench/BenchSetupCup.vue'),
+  import('~/components/bench/BenchPots.vue'),
   import('~/components/bench/BenchPickPieces.vue'),
   import('~/components/bench/BenchStepDone.vue'),
   import('~/components/base/BaseDialogSheet.vue'),
