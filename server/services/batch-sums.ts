@@ -5,7 +5,6 @@ import { hasPotLife, readMix, type MixInput } from '#shared/engine/mix'
 import { calculatePotLife, potLifeStart, warmerC } from '#shared/engine/pot-life'
 import { calculatePour, type PourAnswer } from '#shared/engine/pour'
 import { canWeigh, readScale, type ScaleInput } from '#shared/engine/scale'
-import type { Verdict } from '#shared/engine/verdict'
 import type { WorkingLine } from '#shared/engine/working'
 import type { DraftBody, DraftPlan, PotLife } from '#shared/schemas/drafts'
 import type { ScaleRecord } from '../repositories/draft-references'
@@ -124,7 +123,7 @@ export function judgeBatch(revision: MixRevision, body: Pick<DraftBody, 'plan' |
 }
 
 /** Of a component, as far as it tells whether more of it was a correction. */
-type PouredComponent = { index: number; role: string | null; verdict: Verdict | null }
+type PouredComponent = { index: number; role: string | null; verdict: string | null }
 
 /**
  * Whether a pot was corrected: somebody took a correction, or poured again of something. Thinner added within its range,

@@ -94,7 +94,7 @@ export async function labelAndLog(page: Page, hand: Hand = pointer): Promise<str
 }
 
 /** First and last piece of a pot, as the set-up lists them. */
-export interface PieceSpan { from: number; to: number }
+interface PieceSpan { from: number; to: number }
 
 /** Coats of one pass that the form takes. */
 const MOST_COATS = 6
