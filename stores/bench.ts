@@ -1,3 +1,4 @@
+import { useOnline } from '@vueuse/core'
 import { defineStore } from 'pinia'
 import { computed, ref, shallowRef } from 'vue'
 import type { Batch } from '#shared/schemas/batches'
@@ -63,9 +64,10 @@ export const useBenchStore = defineStore('bench', () => {
   let keepsSoon = false
   let saveTimer: ReturnType<typeof setTimeout> | undefined
 
+  const isOnline = useOnline()
   const zone = computed(() => session.shop?.zone ?? 'UTC')
   /** Nothing reaches the server from here now. */
-  const isAway = computed(() => isOffline.value || outbox.unreachable || navigator.onLine === false)
+  const isAway = computed(() => isOffline.value || outbox.unreachable || !isOnline.value)
   const home = computed<BenchHome>(() => ({ boothId: session.device?.boothId ?? null, scaleId: session.device?.scaleId ?? null, userId: session.user?.id ?? null }))
   const reckoning = computed(() => (setup.value && snapshot.value ? reckon(setup.value, snapshot.value) : null))
   const tools = computed(() => (run.value && snapshot.value ? benchTools({ ...run.value.tools, revisionId: run.value.mixRevisionId }, snapshot.value) : null))

@@ -114,7 +114,7 @@ describe.each([
     await signInBy(foreman, desk.page, 'foreman', '/batches')
     await foreman.press(desk.page.getByRole('link', { name: code }))
     await desk.page.getByRole('heading', { name: new RegExp(code) }).waitFor()
-    await desk.page.getByText('Emptied', { exact: true }).first().waitFor()
+    await desk.page.getByText('Emptied', { exact: true }).locator('visible=true').first().waitFor()
     expect(await desk.page.getByText('35.0').count()).toBeGreaterThan(0)
     expect(await axeFaults(desk.page)).toEqual([])
   }, 180_000)
