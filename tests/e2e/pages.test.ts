@@ -107,7 +107,7 @@ describe('a list', () => {
     const { page } = await visitAs('foreman')
     await page.goto(`${baseUrl}/batches/${ids.get('batches')}`)
     await alive(page)
-    await page.getByRole('button', { name: /show the sum/ }).first().click()
+    await page.getByRole('button', { name: /show the sum: How the grams were reckoned/ }).click()
     await page.getByRole('dialog', { name: 'How the grams were reckoned' }).waitFor()
   })
 })
