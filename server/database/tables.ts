@@ -30,6 +30,7 @@ export const tables = {
     'waste_entries',
   ],
   mutable: [
+    'application_current',
     'approvals',
     'batch_current',
     'batch_drafts',

@@ -1,5 +1,6 @@
 import type { Knex } from 'knex'
 import { toInstant } from '../utils/rows'
+import { insertCurrentCoat } from './application-current'
 
 /** A coat on pieces, from batches. Instants are epoch milliseconds. */
 export interface NewApplication {
@@ -31,6 +32,7 @@ export async function insertCoat(application: NewApplication, now: number, trx: 
     gun_id: application.gunId, user_id: application.userId, opens_at: instantOrNull(window?.opensAt), closing_at: instantOrNull(window?.closingAt),
     closes_at: instantOrNull(window?.closesAt), details: JSON.stringify(application.details), created_at: toInstant(now),
   })
+  await insertCurrentCoat(id, application, now, trx)
   if (application.pieceIds.length > 0) {
     await trx('application_pieces').insert(application.pieceIds.map((pieceId) => ({ application_id: id, piece_id: pieceId })))
   }

@@ -253,8 +253,9 @@ interface ApplicationRow {
 }
 
 async function readApplications(id: string, db: Db): Promise<Batch['applications']> {
-  const rows = await db('application_batches as l').join('applications as a', 'a.id', 'l.application_id').where('l.batch_id', id).orderBy(['a.first_at', 'a.id'])
-    .select<ApplicationRow[]>('a.id', 'a.first_at', 'a.last_at', 'a.last_assumed', 'a.details', 'a.opens_at', 'a.closing_at', 'a.closes_at')
+  const rows = await db('application_batches as l').join('applications as a', 'a.id', 'l.application_id').join('application_current as n', 'n.application_id', 'a.id')
+    .where('l.batch_id', id).orderBy(['n.first_at', 'a.created_at', 'a.id'])
+    .select<ApplicationRow[]>('a.id', 'n.first_at', 'n.last_at', 'a.last_assumed', 'a.details', 'n.opens_at', 'n.closing_at', 'n.closes_at')
   return rows.map((row) => ({
     id: row.id,
     firstAt: isoOf(row.first_at),

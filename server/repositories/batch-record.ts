@@ -25,6 +25,8 @@ export type RecordComponent = Pick<BatchComponent, 'index' | 'role' | 'materialI
 interface RecordEvent {
   kind: Batch['events'][number]['kind']
   at: number
+  /** When it was written down, epoch milliseconds. */
+  notedAt: number
   gunId: string | null
   details: Record<string, unknown>
 }
@@ -199,8 +201,8 @@ async function readPours(id: string, db: Db): Promise<RecordPour[]> {
 
 async function readEvents(id: string, db: Db): Promise<RecordEvent[]> {
   const rows = await db('batch_events').where({ batch_id: id }).orderBy(['created_at', 'at', 'id'])
-    .select<{ kind: RecordEvent['kind']; at: Date; gun_id: string | null; details: string }[]>('kind', 'at', 'gun_id', 'details')
-  return rows.map(({ kind, at, gun_id: gunId, details }) => ({ kind, at: at.getTime(), gunId, details: JSON.parse(details) as Record<string, unknown> }))
+    .select<{ kind: RecordEvent['kind']; at: Date; created_at: Date; gun_id: string | null; details: string }[]>('kind', 'at', 'created_at', 'gun_id', 'details')
+  return rows.map(({ kind, at, created_at: notedAt, gun_id: gunId, details }) => ({ kind, at: at.getTime(), notedAt: notedAt.getTime(), gunId, details: JSON.parse(details) as Record<string, unknown> }))
 }
 
 async function readAmendments(id: string, db: Db): Promise<RecordAmendment[]> {

@@ -137,9 +137,10 @@ interface TreatmentRow {
 export async function listTreatments(jobIds: readonly string[], db: Db): Promise<Treatment[]> {
   if (jobIds.length === 0) return []
   const rows = await db('applications as a')
+    .join('application_current as n', 'n.application_id', 'a.id')
     .join('application_pieces as p', 'p.application_id', 'a.id')
     .whereIn('a.job_id', jobIds)
     .groupBy(['a.job_step_id', 'p.piece_id'])
-    .select<TreatmentRow[]>('a.job_step_id', 'p.piece_id', db.raw('COALESCE(MAX(a.coat_number), COUNT(*)) AS times'), db.raw('MAX(a.last_at) AS last_at'))
+    .select<TreatmentRow[]>('a.job_step_id', 'p.piece_id', db.raw('COALESCE(MAX(a.coat_number), COUNT(*)) AS times'), db.raw('MAX(n.last_at) AS last_at'))
   return rows.map((row) => ({ jobStepId: row.job_step_id, pieceId: row.piece_id, times: Number(row.times), lastAt: row.last_at.getTime() }))
 }

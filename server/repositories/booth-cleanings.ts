@@ -48,7 +48,7 @@ interface MixRow {
 }
 
 /** The longest that a pot mixed before a cleaning may stand and be sprayed after it. */
-const longestPotMs = 60 * 86_400_000
+export const longestPotMs = 60 * 86_400_000
 
 /**
  * Every mix that was made for a booth after `from` and before `to` (epoch milliseconds; null: from ever, until now),

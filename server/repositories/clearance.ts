@@ -67,7 +67,7 @@ async function sprayingSince(boothId: string | null, db: Db): Promise<Map<string
     .whereExists((reacts) => reacts.select(db.raw('1')).from('batch_components as x').join('materials as a', 'a.id', 'x.material_id')
       .whereRaw('x.batch_id = c.batch_id AND a.contains_isocyanates = 1'))
     .groupBy('c.booth_id')
-    .select<{ booth_id: string; since: Date }[]>('c.booth_id', db.raw('MIN(f.at) AS since'))
+    .select<{ booth_id: string; since: Date }[]>('c.booth_id', db.raw('MIN(IF(c.amended, COALESCE(c.first_spray_at, f.at), f.at)) AS since'))
   if (boothId !== null) void query.where('c.booth_id', boothId)
   return new Map((await query).map(({ booth_id: id, since }) => [id, since.getTime()]))
 }

@@ -177,10 +177,11 @@ interface ApplicationRow {
 
 /** All applications of a job in the order of time, with the pieces that each reached. */
 export async function listApplications(jobId: string, db: Db): Promise<JobApplication[]> {
-  const rows = await db('applications as a').leftJoin('users as u', 'u.id', 'a.user_id').leftJoin('booths as b', 'b.id', 'a.booth_id')
-    .where('a.job_id', jobId).orderBy(['a.first_at', 'a.id'])
-    .select<ApplicationRow[]>('a.id', 'a.job_step_id', 'a.kind', 'a.coat_number', 'a.face', 'a.first_at', 'a.last_at', 'a.opens_at', 'a.closing_at',
-      'a.closes_at', 'u.name as user_name', 'b.name as booth_name')
+  const rows = await db('applications as a').join('application_current as n', 'n.application_id', 'a.id')
+    .leftJoin('users as u', 'u.id', 'a.user_id').leftJoin('booths as b', 'b.id', 'n.booth_id')
+    .where('a.job_id', jobId).orderBy(['n.first_at', 'a.id'])
+    .select<ApplicationRow[]>('a.id', 'a.job_step_id', 'a.kind', 'a.coat_number', 'a.face', 'n.first_at', 'n.last_at', 'n.opens_at', 'n.closing_at',
+      'n.closes_at', 'u.name as user_name', 'b.name as booth_name')
   const links = await db('application_pieces as l').join('applications as a', 'a.id', 'l.application_id').where('a.job_id', jobId)
     .select<{ application_id: string, piece_id: string }[]>('l.application_id', 'l.piece_id')
   const pieces = new Map<string, string[]>()

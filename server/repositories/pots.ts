@@ -2,7 +2,7 @@ import type { Knex } from 'knex'
 import type { LivePot } from '#shared/schemas/live'
 import { D, sum } from '#shared/engine/decimal'
 import { minutesToMs, toIso } from '#shared/utils/instant'
-import { gunSprays, sprayedSpan } from '#shared/utils/pot-sprays'
+import { gunSprays } from '#shared/utils/pot-sprays'
 import { decimalOf, decimalOrNull, isoOf, isoOrNull, toInstant } from '../utils/rows'
 import { listSprays, type SprayEvent } from './sprays'
 
@@ -44,6 +44,8 @@ interface SealedRow extends CommonRow {
   induction_min: string
   poured_total_g: string
   leftover_g: string | null
+  first_spray_at: Date | null
+  last_spray_at: Date | null
 }
 
 interface DraftRow extends CommonRow {
@@ -66,13 +68,14 @@ export interface PotFilter {
 /** A pot without pot life, and a draft without hardener, leave the screens a day after they were begun. */
 const dayMs = 86_400_000
 
-function names(query: Knex.QueryBuilder, alias: 'b' | 'd', db: Db): Knex.QueryBuilder {
+/** @param mixer column of the one who mixed it */
+function names(query: Knex.QueryBuilder, alias: 'b' | 'd', mixer: string, db: Db): Knex.QueryBuilder {
   const ofRevision = (column: string, filter: string) =>
     `(SELECT ${column} FROM mix_components mc JOIN materials ma ON ma.id = mc.material_id WHERE mc.mix_revision_id = ${alias}.mix_revision_id ${filter})`
   return query
     .join('mix_revisions as r', 'r.id', `${alias}.mix_revision_id`)
     .join('mixes as m', 'm.id', 'r.mix_id')
-    .join('users as u', 'u.id', `${alias}.mixed_by_user_id`)
+    .join('users as u', 'u.id', mixer)
     .leftJoin('job_steps as js', 'js.id', `${alias}.job_step_id`)
     .leftJoin('schedule_steps as ss', 'ss.id', 'js.schedule_step_id')
     .leftJoin('jobs as j', 'j.id', 'js.job_id')
@@ -86,18 +89,17 @@ function names(query: Knex.QueryBuilder, alias: 'b' | 'd', db: Db): Knex.QueryBu
     )
 }
 
-/** The gun that was loaded last from this pot, else the one that was planned. */
+/** The gun that was loaded last from this pot, else the one that was planned; an amendment of the gun stands over both. */
 const gunOf = (alias: 'b' | 'd') =>
   `COALESCE((SELECT e.gun_id FROM batch_events e WHERE e.batch_id = ${alias}.id AND e.gun_id IS NOT NULL AND e.kind = 'first-spray' ORDER BY e.at DESC, e.created_at DESC, e.id DESC LIMIT 1), ${alias}.gun_id)`
 
 async function sealedPots(filter: PotFilter, db: Db): Promise<LivePot[]> {
-  const query = names(db('batches as b'), 'b', db)
-    .join('batch_current as c', 'c.batch_id', 'b.id')
+  const query = names(db('batches as b').join('batch_current as c', 'c.batch_id', 'b.id'), 'b', 'c.mixed_by_user_id', db)
     .leftJoin('booths as bo', 'bo.id', 'c.booth_id')
-    .leftJoin('guns as g', 'g.id', db.raw(gunOf('b')))
+    .leftJoin('guns as g', 'g.id', db.raw(`IF(c.gun_id <=> b.gun_id, ${gunOf('b')}, c.gun_id)`))
     .select(
       'c.purpose', 'c.booth_id', 'bo.name as booth_name', 'g.id as gun_id', 'g.name as gun_name', 'c.state', 'c.mixed_at',
-      'c.reactive_at', 'c.late_at', 'c.ends_at', 'r.induction_min', 'c.poured_total_g', 'c.leftover_g',
+      'c.reactive_at', 'c.late_at', 'c.ends_at', 'r.induction_min', 'c.poured_total_g', 'c.leftover_g', 'c.first_spray_at', 'c.last_spray_at',
     )
   const { batchId, boothId, liveAt } = filter
   if (batchId) void query.where('b.id', batchId)
@@ -115,7 +117,7 @@ async function sealedPots(filter: PotFilter, db: Db): Promise<LivePot[]> {
 }
 
 async function draftPots(filter: PotFilter, db: Db): Promise<LivePot[]> {
-  const query = names(db('batch_drafts as d'), 'd', db)
+  const query = names(db('batch_drafts as d'), 'd', 'd.mixed_by_user_id', db)
     .leftJoin('booths as bo', 'bo.id', 'd.booth_id')
     .leftJoin('guns as g', 'g.id', db.raw(gunOf('d')))
     .leftJoin('timers as l', (on) => void on.on('l.subject_id', 'd.id').andOnVal('l.subject_type', 'batch').andOnVal('l.kind', 'pot-late'))
@@ -166,17 +168,11 @@ function common(row: CommonRow, state: LivePot['state']) {
 
 const instantOrNull = (ms: number | null) => (ms === null ? null : toIso(ms))
 
-/** What the guns did with the pot, and its first and last shot of all. */
-function sprayFacts(shots: readonly SprayEvent[]): Pick<LivePot, 'guns' | 'firstSprayAt' | 'lastSprayAt'> {
-  const guns = gunSprays(shots)
-  const { firstAt, lastAt } = sprayedSpan(guns)
-  return {
-    firstSprayAt: instantOrNull(firstAt),
-    lastSprayAt: instantOrNull(lastAt),
-    guns: guns.map(({ gunId, gunName, ...gun }) => ({
-      gunId, gunName, firstSprayAt: instantOrNull(gun.firstAt), lastSprayAt: instantOrNull(gun.lastAt), flushedAt: instantOrNull(gun.flushedAt),
-    })),
-  }
+/** What each gun did with the pot, as it was tapped. */
+function gunsOf(shots: readonly SprayEvent[]): LivePot['guns'] {
+  return gunSprays(shots).map(({ gunId, gunName, ...gun }) => ({
+    gunId, gunName, firstSprayAt: instantOrNull(gun.firstAt), lastSprayAt: instantOrNull(gun.lastAt), flushedAt: instantOrNull(gun.flushedAt),
+  }))
 }
 
 /** When a pot has stood as long as its sheet asks; null where it asks for nothing. */
@@ -195,7 +191,9 @@ function toSealedPot(row: SealedRow, shots: readonly SprayEvent[]): LivePot {
     lateAt: isoOrNull(row.late_at),
     endsAt: isoOrNull(row.ends_at),
     standsUntil: instantOrNull(standsUntil(row.mixed_at.getTime(), row.induction_min)),
-    ...sprayFacts(shots),
+    firstSprayAt: isoOrNull(row.first_spray_at),
+    lastSprayAt: isoOrNull(row.last_spray_at),
+    guns: gunsOf(shots),
     leftoverG: decimalOrNull(row.leftover_g),
   }
 }
@@ -218,7 +216,9 @@ function toDraftPot(row: DraftRow): LivePot {
     lateAt: row.reactive_at ? isoOrNull(row.late_due_at) : null,
     endsAt: row.reactive_at ? isoOrNull(row.timer_due_at) : null,
     standsUntil: null,
-    ...sprayFacts([]),
+    firstSprayAt: null,
+    lastSprayAt: null,
+    guns: [],
     leftoverG: null,
   }
 }

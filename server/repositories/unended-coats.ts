@@ -58,7 +58,7 @@ export async function findUnendedCoats({ batchId, boothId, jobIds }: UnendedFilt
     .orderBy('b.id')
     .select<Row[]>(
       'b.id', 'b.plan_id', 'b.coats', 'b.job_step_id', 'js.job_id', 'j.code as job_code', 'j.title as job_title', 'ss.title as step_title',
-      'js.position as step_position', 'c.booth_id', 'o.name as booth_name', db.raw('MIN(f.at) AS first_at'),
+      'js.position as step_position', 'c.booth_id', 'o.name as booth_name', db.raw('COALESCE(MAX(c.first_spray_at), MIN(f.at)) AS first_at'),
     )
   if (batchId) void query.where('b.id', batchId)
   if (boothId) void query.where((part) => part.where('c.booth_id', boothId).orWhereNull('c.booth_id'))

@@ -43,20 +43,21 @@ export interface OpenWindow extends Omit<LiveWindow, 'state'> {
 export async function findWindows(filter: WindowFilter, db: Db): Promise<OpenWindow[]> {
   const { applicationId, boothId, jobIds } = filter
   const query = db('applications as a')
+    .join('application_current as n', 'n.application_id', 'a.id')
     .join('jobs as j', 'j.id', 'a.job_id')
     .join('job_steps as js', 'js.id', 'a.job_step_id')
     .join('schedule_steps as ss', 'ss.id', 'js.schedule_step_id')
-    .leftJoin('booths as b', 'b.id', 'a.booth_id')
-    .whereNotNull('a.opens_at')
+    .leftJoin('booths as b', 'b.id', 'n.booth_id')
+    .whereNotNull('n.opens_at')
     .whereIn('j.state', ['planned', 'running', 'held'])
-    .orderBy(['a.closes_at', 'a.opens_at', 'a.id'])
+    .orderBy(['n.closes_at', 'n.opens_at', 'a.id'])
     .select<WindowRow[]>(
       'a.id', 'a.job_id', 'j.code as job_code', 'j.title as job_title', 'a.job_step_id', 'ss.title as step_title', 'js.position as step_position',
-      'a.booth_id', 'b.name as booth_name', 'a.first_at', 'a.last_at', 'a.opens_at', 'a.closing_at', 'a.closes_at',
+      'n.booth_id', 'b.name as booth_name', 'n.first_at', 'n.last_at', 'n.opens_at', 'n.closing_at', 'n.closes_at',
       'a.last_assumed', 'a.details',
     )
   if (applicationId) void query.where('a.id', applicationId)
-  if (boothId) void query.where((part) => part.where('a.booth_id', boothId).orWhereNull('a.booth_id'))
+  if (boothId) void query.where((part) => part.where('n.booth_id', boothId).orWhereNull('n.booth_id'))
   if (jobIds) void query.whereIn('a.job_id', jobIds)
   const rows = await query
   const pieces = await untouchedPieces(rows.map(({ id }) => id), db)
@@ -78,6 +79,7 @@ async function untouchedPieces(applicationIds: readonly string[], db: Db): Promi
   if (applicationIds.length === 0) return found
   const rows = await db('application_pieces as ap')
     .join('applications as a', 'a.id', 'ap.application_id')
+    .join('application_current as n', 'n.application_id', 'a.id')
     .join('pieces as p', 'p.id', 'ap.piece_id')
     .whereIn('ap.application_id', applicationIds)
     .whereNotExists((later) =>
@@ -85,7 +87,8 @@ async function untouchedPieces(applicationIds: readonly string[], db: Db): Promi
         .select(db.raw('1'))
         .from('application_pieces as lp')
         .join('applications as l', 'l.id', 'lp.application_id')
-        .whereRaw('lp.piece_id = ap.piece_id AND l.kind IN (\'coat\', \'sand\') AND l.id <> a.id AND (l.first_at, l.created_at, l.id) > (a.first_at, a.created_at, a.id)'),
+        .join('application_current as ln', 'ln.application_id', 'l.id')
+        .whereRaw('lp.piece_id = ap.piece_id AND l.kind IN (\'coat\', \'sand\') AND l.id <> a.id AND (ln.first_at, l.created_at, l.id) > (n.first_at, a.created_at, a.id)'),
     )
     .orderBy(['p.position', 'p.id'])
     .select<PieceRow[]>('ap.application_id', 'ap.piece_id', 'p.label')

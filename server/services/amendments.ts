@@ -4,11 +4,13 @@ import type { Batch } from '#shared/schemas/batches'
 import { insertAmendment } from '../repositories/batch-amendments'
 import { lockCurrent, rewriteCurrent, type CurrentBatch } from '../repositories/batch-current'
 import { findBatch } from '../repositories/batch-page'
+import { lockBooths } from '../repositories/booth-locks'
 import { readRecord, type BatchOnRecord } from '../repositories/batch-record'
 import { rewriteUses } from '../repositories/batch-uses'
 import { insertWaste } from '../repositories/batches'
 import { compensateLots, type Compensation } from '../repositories/lot-compensation'
 import { lockLots } from '../repositories/lot-stock'
+import { findPotContent } from '../repositories/sprays'
 import { lockOpenApprovals, useApprovals } from '../repositories/used-approvals'
 import { userIdOf, type Context } from '../utils/context'
 import { forbidden, notFound, Refusal, ruleBroken } from '../utils/errors'
@@ -18,13 +20,19 @@ import { mutate, type Mutation } from '../utils/transactions'
 import { requireAmender, requireLot, requireTrue } from './amendment-rules'
 import { checkedValue, isFreeText, plainValue } from './amendment-values'
 import { effectiveOf, type EffectiveBatch } from './batch-effective'
+import { resettleShots } from './booth-air'
+import { moveWindows, rewriteCoats } from './coat-amendments'
+import { potAnswer } from './pot-lock'
 import { publishPot } from './pot-view'
 import { cancelTimers, setPotTimers } from './timers'
+import { publishUnended } from './windows'
 
 /** A batch before and after an amendment, with what the rules ask for. */
 interface Change {
   field: string
   record: BatchOnRecord
+  /** The record with the amendment in it. */
+  amended: BatchOnRecord
   before: EffectiveBatch
   after: EffectiveBatch
   pot: CurrentBatch
@@ -49,7 +57,7 @@ export function amendBatch(ctx: Context, id: string, body: AmendmentBody): Promi
     const to = await requireChange(m, body, before, id)
     const at = Math.max(m.now, (record.amendments.at(-1)?.at ?? 0) + 1)
     const amended = { ...record, amendments: [...record.amendments, { field: body.field, to, at }] }
-    const change: Change = { field: body.field, record, before, after: effectiveOf(amended, m.now), pot }
+    const change: Change = { field: body.field, record, amended, before, after: effectiveOf(amended, m.now), pot }
     await requireTrue(m, body.field, record, before, change.after)
     const approvalId = await requireApproval(m, change, body.approvals)
     const amendmentId = newId()
@@ -65,9 +73,7 @@ export function amendBatch(ctx: Context, id: string, body: AmendmentBody): Promi
       },
     })
     await publishPot(m, id)
-    const batch = await findBatch(id, m.trx)
-    if (!batch) throw new Error('a batch was lost in its own transaction')
-    return batch
+    return potAnswer(m, id)
   })
 }
 
@@ -112,17 +118,19 @@ async function requireApproval(m: Mutation, change: Change, offered: readonly st
 }
 
 /** Brings everything that follows in agreement with the amendment. @returns what was moved between lots */
-async function write(m: Mutation, { field, record, before, after, pot }: Change, userId: string): Promise<Compensation[]> {
-  await rewriteCurrent(after.current, m.now, m.trx)
+async function write(m: Mutation, { field, record, amended, before, after, pot }: Change, userId: string): Promise<Compensation[]> {
   const moves = pourFieldOf(field) ? movesOf(before, after) : []
+  await lockLots(moves.map(({ lotId }) => lotId), m.trx)
+  await lockBooths([before.current.boothId, after.current.boothId], m.trx)
+  await rewriteCurrent(after.current, m.now, m.trx)
   if (pourFieldOf(field)) {
-    await lockLots(moves.map(({ lotId }) => lotId), m.trx)
     await rewriteUses({ batchId: record.id, mixedAt: record.mixedAt, usedIds: usedIdsOf(record, after) }, m.trx)
     const stock = await compensateLots(moves, record.id, userId, toInstant(m.now), m.trx)
     m.publish({ type: 'stock', subject: `batch:${record.id}`, boothId: null, payload: { lots: stock } })
   }
   await compensateWaste(m, record, before, after, userId)
   await moveTimers(m, before, after, pot)
+  await moveSprays(m, amended, before, after)
   return moves
 }
 
@@ -157,4 +165,19 @@ async function moveTimers(m: Mutation, before: EffectiveBatch, after: EffectiveB
   if (before.current.lateAt === lateAt && before.current.endsAt === endsAt && before.current.boothId === boothId) return
   if (lateAt === null || endsAt === null) await cancelTimers(m, 'batch', batchId)
   else await setPotTimers(m, { batchId, boothId, label: `${pot.code} ${pot.mixName}`.slice(0, 160), lateAt, endsAt })
+}
+
+/** The coats that the pot laid, their windows and the air of its booth follow what is known of its sprays. */
+async function moveSprays(m: Mutation, amended: BatchOnRecord, before: EffectiveBatch, after: EffectiveBatch): Promise<void> {
+  const [was, is] = [before.current, after.current]
+  await moveWindows(m, await rewriteCoats(m, amended, after))
+  const changed = was.boothId !== is.boothId || was.firstSprayAt !== is.firstSprayAt || was.lastSprayAt !== is.lastSprayAt || was.closedAt !== is.closedAt
+  if (!changed) return
+  if (is.closedAt === null) {
+    if (was.boothId !== is.boothId) m.publish({ type: 'window', subject: `batch:${amended.id}`, boothId: was.boothId, payload: null })
+    await publishUnended(m, amended.id, is.boothId)
+  }
+  const { containsIsocyanates } = await findPotContent(amended.id, m.trx)
+  if (!containsIsocyanates) return
+  for (const boothId of new Set([was.boothId, is.boothId])) if (boothId !== null) await resettleShots(m, boothId)
 }

@@ -32,6 +32,7 @@ const msOf = (value: string | null | undefined) => (value ? Date.parse(value) : 
 export function effectiveOf(record: BatchOnRecord, now: number): EffectiveBatch {
   const values = recordedValues(record)
   for (const { field, to } of record.amendments) values.set(field, to)
+  spraySince(record, values)
   const get = (field: string) => values.get(field) ?? null
   const cup = cupOf(record, values)
   const life = lifeOf(record, get)
@@ -64,8 +65,7 @@ export function effectiveOf(record: BatchOnRecord, now: number): EffectiveBatch 
 
 /** Every field as the record and its events have it. */
 function recordedValues(record: BatchOnRecord): Map<string, string | null> {
-  const shots = record.events.flatMap(({ kind, at, gunId }) => (kind === 'first-spray' || kind === 'last-spray' ? [{ kind, at, gunId, gunName: null }] : []))
-  const { firstAt, lastAt } = sprayedSpan(gunSprays(shots))
+  const { firstAt, lastAt } = sprayedSpan(gunSprays(shotsOf(record.events)))
   const emptied = record.events.find(({ kind }) => kind === 'emptied')
   const stoppedAt = record.snapshot.stopped && Math.min(Date.parse(record.snapshot.stopped.at), record.sealedAt)
   const leftover = emptied?.details.leftoverG
@@ -84,6 +84,22 @@ function recordedValues(record: BatchOnRecord): Map<string, string | null> {
     values.set(`pours.${pour.index}.${pour.position}.lotId`, pour.lotId)
   }
   return values
+}
+
+const shotsOf = (events: BatchOnRecord['events']) =>
+  events.flatMap(({ kind, at, gunId }) => (kind === 'first-spray' || kind === 'last-spray' ? [{ kind, at, gunId, gunName: null }] : []))
+
+/** A spray that was put right covers what was noted until then; what a gun did after that lengthens it. */
+function spraySince(record: BatchOnRecord, values: Map<string, string | null>): void {
+  for (const field of ['firstSprayAt', 'lastSprayAt']) {
+    const amended = record.amendments.findLast((one) => one.field === field)
+    const amendedAt = msOf(amended?.to)
+    if (!amended || amendedAt === null) continue
+    const since = gunSprays(shotsOf(record.events.filter(({ notedAt }) => notedAt > amended.at)))
+    if (field === 'firstSprayAt') values.set(field, iso(Math.min(amendedAt, ...since.flatMap(({ firstAt }) => firstAt ?? []))))
+    else if (sprayedSpan(since).unended.length > 0) values.set(field, null)
+    else values.set(field, iso(Math.max(amendedAt, ...since.flatMap(({ lastAt }) => lastAt ?? []))))
+  }
 }
 
 type Cup = Pick<EffectiveFacts, 'pours' | 'components' | 'working'>

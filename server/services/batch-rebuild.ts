@@ -5,6 +5,7 @@ import type { Context } from '../utils/context'
 import { mutate } from '../utils/transactions'
 import { usedIdsOf } from './amendments'
 import { effectiveOf } from './batch-effective'
+import { rewriteCoats } from './coat-amendments'
 
 const page = 200
 
@@ -37,10 +38,10 @@ function rebuildPage(ctx: Context, ids: readonly string[]): Promise<string[]> {
       const record = (await lockCurrent(id, m.trx)) && (await readRecord(id, m.trx))
       if (!record) continue
       const effective = effectiveOf(record, m.now)
-      if (!(await isCurrent(effective.current, m.trx))) {
-        changed.push(id)
-        await rewriteCurrent(effective.current, m.now, m.trx)
-      }
+      const isRight = await isCurrent(effective.current, m.trx)
+      if (!isRight) await rewriteCurrent(effective.current, m.now, m.trx)
+      const coats = await rewriteCoats(m, record, effective)
+      if (!isRight || coats.length > 0) changed.push(id)
       await rewriteUses({ batchId: id, mixedAt: record.mixedAt, usedIds: usedIdsOf(record, effective) }, m.trx)
     }
     m.audit({ action: 'batches.rebuilt', subject: 'settings:shop', facts: { from: ids[0] ?? null, to: ids.at(-1) ?? null, changed } })

@@ -1,6 +1,8 @@
 import type { LiveBooth } from '#shared/schemas/live'
 import type { BoothExtractionBody } from '#shared/schemas/shop'
+import { lockBooths } from '../repositories/booth-locks'
 import { findClearanceFacts, insertExtractionChange, lockExtraction, noteIsocyanateShot } from '../repositories/clearance'
+import { findLastIsocyanateShot, putIsocyanateShot } from '../repositories/isocyanate-shots'
 import { setTimer } from '../repositories/timers'
 import { userIdOf, type Context } from '../utils/context'
 import { notFound, ruleBroken } from '../utils/errors'
@@ -12,9 +14,11 @@ import { cancelTimers } from './timers'
 
 /**
  * Brings the booth's clearance timer to what the shots and the extraction say, and tells the screens. Call it after
- * everything that changes one of them.
+ * everything that changes one of them. It holds the booth, so that two who settle it follow each other; who has written
+ * rows that refer to the booth by then has locked it before.
  */
 export async function settleClearance(m: Mutation, boothId: string): Promise<void> {
+  await lockBooths([boothId], m.trx)
   const [facts] = await findClearanceFacts(boothId, m.trx)
   if (!facts) return
   const clearance = judgeClearance(facts, m.now)
@@ -29,7 +33,15 @@ export async function settleClearance(m: Mutation, boothId: string): Promise<voi
 
 /** What a pot did to the air of its booth: a shot of isocyanates, or cleaning the gun after it, at `at`. */
 export async function noteShot(m: Mutation, boothId: string, at: number | null): Promise<void> {
+  await lockBooths([boothId], m.trx)
   if (at !== null) await noteIsocyanateShot(boothId, at, m.trx)
+  await settleClearance(m, boothId)
+}
+
+/** Reckons the last shot of isocyanates in a booth again, after what is known of one of its pots was put right. */
+export async function resettleShots(m: Mutation, boothId: string): Promise<void> {
+  await lockBooths([boothId], m.trx)
+  await putIsocyanateShot(boothId, await findLastIsocyanateShot(boothId, m.trx), m.trx)
   await settleClearance(m, boothId)
 }
 

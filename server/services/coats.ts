@@ -53,5 +53,6 @@ export async function writeCoat(ctx: Context, m: Mutation, pot: CurrentBatch, mo
 
 const instantsOf = ({ opensAt, closingAt, closesAt }: { opensAt: number; closingAt: number | null; closesAt: number | null }) => ({ opensAt, closingAt, closesAt })
 
-const windowLabel = ({ jobCode, title, coats }: JobStep, coatNumber: number): string =>
+/** What an alarm calls the window of a coat. */
+export const windowLabel = ({ jobCode, title, coats }: JobStep, coatNumber: number): string =>
   `${jobCode} ${title}${coats > 1 ? `, coat ${coatNumber}` : ''}`.slice(0, 160)

@@ -28,7 +28,7 @@ export function settleReview(ctx: Context, id: string, { codes, reason }: BatchR
     const at = toInstant(m.now)
     const details = { codes: settled, reason }
     await insertBatchEvent({ batchId: id, kind: 'review-settled', at, userId: userIdOf(ctx.principal), deviceId: ctx.principal.device?.id ?? null, gunId: null, boothId: pot.boothId, details, createdAt: at }, m.trx)
-    const after = effectiveOf({ ...record, events: [...record.events, { kind: 'review-settled', at: m.now, gunId: null, details }] }, m.now)
+    const after = effectiveOf({ ...record, events: [...record.events, { kind: 'review-settled', at: m.now, notedAt: m.now, gunId: null, details }] }, m.now)
     await rewriteCurrent(after.current, m.now, m.trx)
     m.audit({ action: 'batch.review-settled', subject: `batch:${id}`, facts: { codes: settled, left: after.openReview } })
     await publishPot(m, id)
