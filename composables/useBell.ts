@@ -46,7 +46,10 @@ export function useBell(soundingSince: MaybeRefOrGetter<number | null>, now: () 
 
   function chime(): void {
     sound(softLoudness, softHertz)
-    setTimeout(() => sound(softLoudness, softHertz), softGapMs)
+    setTimeout(() => {
+      // A bell that has begun to ring meanwhile says more.
+      if (toValue(soundingSince) === null) sound(softLoudness, softHertz)
+    }, softGapMs)
   }
 
   const tick = (): void => sound(softLoudness, ringingHertz)

@@ -1,6 +1,6 @@
 /** What a command line, npm and a certificate store need; everything else could change what a test sees. */
 const KEPT = new Set([
-  'PATH', 'HOME', 'USER', 'LOGNAME', 'SHELL', 'TERM', 'CI', 'LANG', 'LANGUAGE', 'TMPDIR', 'COLUMNS',
+  'PATH', 'HOME', 'USER', 'LOGNAME', 'SHELL', 'TERM', 'CI', 'LANG', 'LANGUAGE', 'TMPDIR', 'COLUMNS', 'E2E_PICTURES',
   'NO_COLOR', 'FORCE_COLOR', 'HTTP_PROXY', 'HTTPS_PROXY', 'NO_PROXY', 'SSL_CERT_FILE', 'SSL_CERT_DIR', 'NODE_EXTRA_CA_CERTS',
 ])
 

@@ -2,6 +2,7 @@ import { afterAll, describe, expect, it } from 'vitest'
 import { createKnex } from '../../server/database/connection'
 import { codeOf, labelAndLog, next, pourToTargets, putOnWhatIsAsked, reactingMix, setUpLooseMix, targetOf, weigh } from './support/bench'
 import { axeFaults, baseUrl, overflowsSideways } from './support/browser'
+import { lowTargets } from './support/touch'
 import { useVisitors } from './support/visitors'
 
 const admin = createKnex(process.env.DATABASE_ADMIN_URL ?? '', { poolMax: 2 })
@@ -78,5 +79,27 @@ describe('the bench', () => {
     await context.setOffline(false)
     await page.getByRole('heading', { name: `${code} is in the log` }).waitFor()
     expect(await recorded(code)).toBe(1)
+  })
+
+  it('has nothing lower than 64 px to touch, from the set-up to the log', async () => {
+    const { page } = await visitAs('sprayer', { screen: 'bench' })
+    await page.goto(`${baseUrl}/bench`)
+    await page.getByRole('region', { name: 'Today\'s list' }).getByRole('button', { name: /Ready/ }).first().click()
+    await page.getByRole('button', { name: /^Start (this pot|pot 1)/, disabled: false }).waitFor()
+    expect(await lowTargets(page)).toEqual([])
+    const mix = await reactingMix(admin)
+    await setUpLooseMix(page, mix.name, '2.4')
+    await weigh(page, await targetOf(page))
+    await page.getByText('In tolerance').first().waitFor()
+    expect(await lowTargets(page)).toEqual([])
+    await pourToTargets(page)
+    expect(await lowTargets(page)).toEqual([])
+    await page.getByRole('button', { name: 'It is stirred and scraped' }).click()
+    await page.getByRole('button', { name: /^Next: label/ }).click()
+    await page.getByRole('heading', { name: 'Put this on the cup' }).waitFor()
+    expect(await lowTargets(page)).toEqual([])
+    await page.getByRole('button', { name: /^Label is on the cup/ }).click()
+    await page.getByRole('heading', { name: /is in the log$/ }).waitFor()
+    expect(await lowTargets(page)).toEqual([])
   })
 })

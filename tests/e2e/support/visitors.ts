@@ -1,3 +1,4 @@
+import { join } from 'node:path'
 import type { Browser } from 'playwright-core'
 import { afterAll, afterEach, beforeAll, expect } from 'vitest'
 import { launch, signedInAs, visit, type SignedIn, type Visitor } from './browser'
@@ -11,7 +12,7 @@ interface Visitors {
 
 /**
  * Gives a test file its browser and browsers of people, and fails a test in which any of them saw a console error, a
- * hydration fault, a policy report or a thrown error.
+ * hydration fault, a policy report or a thrown error. With `E2E_PICTURES=FOLDER` a test that fails leaves a picture of each page there.
  */
 export function useVisitors(): Visitors {
   let browser: Browser
@@ -20,7 +21,11 @@ export function useVisitors(): Visitors {
   beforeAll(async () => {
     browser = await launch()
   })
-  afterEach(async () => {
+  afterEach(async ({ task }) => {
+    const pictures = process.env.E2E_PICTURES
+    if (pictures && task.result?.state === 'fail') {
+      for (const [place, { page }] of open.entries()) await page.screenshot({ path: join(pictures, `${task.name.slice(0, 60).replace(/\W+/g, '-')}-${place}.png`) })
+    }
     const faults = open.flatMap((visitor) => visitor.faults)
     for (const visitor of open.splice(0)) await visitor.close()
     expect(faults).toEqual([])
