@@ -1,4 +1,4 @@
-import { computed, type MaybeRefOrGetter } from 'vue'
+import { computed, toValue, type MaybeRefOrGetter } from 'vue'
 
 interface Failure {
   status: number
@@ -22,7 +22,9 @@ export function failureOf(error: { statusCode?: number, data?: unknown } | null 
  */
 export function useThing<T>(path: MaybeRefOrGetter<string>) {
   const event = useRequestEvent()
-  const reading = useFetch<T>(path)
+  // A key of the page's own: with a shared one the page that a form leads back to would show what the form began with.
+  const page = String(useRoute().name)
+  const reading = useFetch<T>(path, { key: () => `${page} ${toValue(path)}` })
   const failure = computed(() => failureOf(reading.error.value))
   if (event) {
     void reading.then(() => {

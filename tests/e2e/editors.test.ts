@@ -138,9 +138,8 @@ describe('the editors of a manager', () => {
     await dialog.getByRole('radio', { name: /As saved/ }).check()
     await dialog.getByRole('button', { name: 'Save what is chosen' }).click()
     await one.page.waitForURL((url) => url.pathname === path)
-    const said = await text(one.page)
-    expect(said).toContain('4.20')
-    expect(said).toContain('Trade counter')
+    await one.page.getByText('Trade counter').first().waitFor()
+    expect(await text(one.page)).toContain('4.20')
   })
 
   it('block a lot at once at the bench, count it, and fit a phone', async () => {
