@@ -1,6 +1,7 @@
 import { randomUUID } from 'node:crypto'
 import type { Page } from 'playwright-core'
 import { describe, expect, it } from 'vitest'
+import { next, targetOf, weigh } from './support/bench'
 import { alive, axeFaults, baseUrl, overflowsSideways } from './support/browser'
 import { useVisitors } from './support/visitors'
 
@@ -85,8 +86,15 @@ describe('the editors of a manager', () => {
     expect(await text(page)).toContain('100 : 50')
 
     await bench.page.getByLabel('Material', { exact: true }).selectOption({ label: `Mix ${mix}` })
-    await bench.page.getByText(`${mix}, rev 2`).waitFor()
+    await bench.page.getByText('100 : 25').first().waitFor()
+    await bench.page.getByLabel('What is it for').fill('A first pot')
+    await bench.page.getByLabel('Panel area', { exact: true }).last().fill('2.4')
+    await bench.page.getByLabel('Wet coat weight', { exact: true }).fill('120')
+    await press(bench.page, /^Start (this pot|pot 1)/)
+    await press(bench.page, /^It is stirred/)
     await bench.page.getByText(baseLot).first().waitFor()
+    await weigh(bench.page, await targetOf(bench.page))
+    await next(bench.page)
     await bench.page.getByText(hardenerLot).first().waitFor()
   }, 180_000)
 
