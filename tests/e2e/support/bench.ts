@@ -5,7 +5,10 @@ import { pointer, type Hand } from './hand'
 /** Grams as a screen prints them, as the keypad takes them: the first number, without thin spaces. */
 const gramsIn = (text: string): string => (/[\d\u2009\u202f ]+(?:\.\d+)?/.exec(text)?.[0] ?? '').replace(/[^\d.]/g, '')
 
-/** A polyurethane mix of the shop whose life is neither very short nor very long and that needs no standing time. */
+/**
+ * A polyurethane mix of the shop whose life is neither very short nor very long and that needs no standing time: one that
+ * came with the shop, whatever other tests have made.
+ */
 export async function reactingMix(admin: Knex): Promise<{ name: string; potLifeMin: number }> {
   const row = await admin('mixes as m')
     .join('mix_revisions as r', 'r.id', 'm.current_revision_id')
@@ -13,7 +16,7 @@ export async function reactingMix(admin: Knex): Promise<{ name: string; potLifeM
     .join('materials as t', 't.id', 'c.material_id')
     .where({ 't.chemistry': 'polyurethane', 'c.role': 'base', 'r.induction_min': 0 })
     .whereBetween('r.pot_life_min', [90, 480])
-    .orderBy('m.code')
+    .orderBy([{ column: 'm.created_at' }, { column: 'm.code' }])
     .first<{ name: string; pot_life_min: string } | undefined>('m.name', 'r.pot_life_min')
   if (!row) throw new Error('the demo shop has no polyurethane mix for this test')
   return { name: row.name, potLifeMin: Number(row.pot_life_min) }
