@@ -1,5 +1,6 @@
 import type { Knex } from 'knex'
 import type { ChemistryRule } from '#shared/engine/chemistry'
+import type { DraftBody } from '#shared/schemas/drafts'
 import { toInstant } from '../utils/rows'
 
 type Db = Knex | Knex.Transaction
@@ -71,6 +72,24 @@ async function leftStanding(boothId: string, from: number, db: Db): Promise<MixR
     .where('c.mixed_at', '>', toInstant(from - longestPotMs)).where('c.mixed_at', '<=', toInstant(from))
     .where(part => part.whereNull('c.closed_at').orWhere('c.closed_at', '>', toInstant(from)).orWhere('c.last_spray_at', '>', toInstant(from)))
     .select<MixRow[]>('b.mix_revision_id', 'c.mixed_at as last_at')
+}
+
+interface DraftRow {
+  mix_revision_id: string
+  body: string
+  updated_at: Date
+}
+
+/** A pot that is being mixed leaves the screens a day after it was last touched, unless something is in its cup. */
+const dayMs = 86_400_000
+
+/** What is being mixed for a booth now (epoch milliseconds) in other cups than `draftId`. */
+export async function mixesBegunFor(boothId: string, draftId: string, now: number, db: Db): Promise<BoothMix[]> {
+  const rows = await db('batch_drafts').where({ booth_id: boothId, state: 'open' }).whereNot('id', draftId)
+    .select<DraftRow[]>('mix_revision_id', 'body', 'updated_at')
+  const isPoured = ({ body }: DraftRow) => (JSON.parse(body) as Pick<DraftBody, 'components'>).components.some(({ pours }) => pours.length > 0)
+  return rows.filter(row => row.updated_at.getTime() > now - dayMs || isPoured(row))
+    .map(row => ({ mixRevisionId: row.mix_revision_id, at: row.updated_at.getTime() }))
 }
 
 /** A revision's name and the chemistries of all its components. */

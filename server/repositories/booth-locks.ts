@@ -8,3 +8,8 @@ export async function lockBooths(ids: readonly (string | null)[], trx: Knex.Tran
   const named = [...new Set(ids)].filter((id) => id !== null)
   if (named.length > 0) await trx('booths').whereIn('id', named).orderBy('id').forUpdate().select('id')
 }
+
+/** Keeps others from locking a booth until the transaction ends; any number may do so at once. */
+export async function shareBooth(id: string, trx: Knex.Transaction): Promise<void> {
+  await trx('booths').where({ id }).forShare().select('id')
+}

@@ -4,6 +4,7 @@ import { disposalFor } from '#shared/utils/disposal'
 import { gunSprays, latestShot, sprayedSpan, type GunSpray } from '#shared/utils/pot-sprays'
 import { updateCurrent, type CurrentBatch, type CurrentChange } from '../repositories/batch-current'
 import { insertBatchEvent, insertWaste } from '../repositories/batches'
+import { lockBooths } from '../repositories/booth-locks'
 import { findOpenGuns } from '../repositories/open-guns'
 import { findPotContent, listSprays, type PotContent } from '../repositories/sprays'
 import { userIdOf, type Context } from '../utils/context'
@@ -36,6 +37,7 @@ export function closeBatch(ctx: Context, id: string, body: BatchCloseBody): Prom
     const content = await findPotContent(id, m.trx)
     const disposal = body.disposal ?? disposalFor(content.chemistry, pot.reactiveAt !== null).key
     const weighed = body.leftoverG !== null
+    if (content.containsIsocyanates) await lockBooths([pot.boothId], m.trx)
     const ending = endingOf(pot, body, guns, { at, told, latestAt: latestShot(await findOpenGuns([id], m.trx), at) })
     const details = { leftoverG: body.leftoverG, weighed, disposal, ...(ending?.assumed ? { lastSprayAssumed: true } : {}) }
     await updateCurrent(id, {

@@ -4,8 +4,9 @@ import type { CurrentBatch, CurrentChange } from '../repositories/batch-current'
 import { updateCurrent } from '../repositories/batch-current'
 import { readRecord } from '../repositories/batch-record'
 import { insertBatchEvent } from '../repositories/batches'
+import { lockBooths } from '../repositories/booth-locks'
 import { isThere } from '../repositories/draft-references'
-import { findPotsInGun } from '../repositories/open-guns'
+import { findPotsInGun, type PotInGun } from '../repositories/open-guns'
 import { standsUntil } from '../repositories/pots'
 import { findPotContent, listSprays, type PotContent, type SprayEvent } from '../repositories/sprays'
 import type { Context } from '../utils/context'
@@ -37,11 +38,13 @@ export function recordBatchEvent(ctx: Context, id: string, body: BatchEventBody)
     const content = await findPotContent(id, m.trx)
     const before = await listSprays([id], m.trx)
     await refuseShot(m, pot, { kind: body.kind, gunId, at }, gunSprays(before))
+    const leftIn = body.kind === 'first-spray' && gunId !== null ? await findPotsInGun(gunId, { at, except: id }, m.trx) : []
+    await lockBooths([content.containsIsocyanates ? pot.boothId : null, ...leftIn.map(({ boothId }) => boothId)], m.trx)
     const early = body.kind === 'first-spray' ? earlyOf(pot, content, at) : {}
     await insertBatchEvent({ ...actorOf(ctx), batchId: id, kind: body.kind, at: toInstant(at), gunId, boothId: pot.boothId, details: early, createdAt: toInstant(m.now) }, m.trx)
     const settled = await settleSprays(ctx, m, pot, [...before, { batchId: id, kind: body.kind, gunId, gunName: null, at }], body.kind)
     if (pot.boothId !== null && content.containsIsocyanates) await noteShot(m, pot.boothId, body.kind === 'first-spray' ? null : at)
-    if (body.kind === 'first-spray' && gunId !== null) await endInOtherPots(m, gunId, { at, except: id })
+    await endInOtherPots(m, leftIn, at)
     m.audit({ action: `batch.${body.kind}`, subject: `batch:${id}`, facts: { at, gunId, ...settled, ...early } })
     await publishPot(m, id)
     return potAnswer(m, id)
@@ -69,7 +72,7 @@ async function settleSprays(
 
 async function effectiveNow(m: Mutation, id: string): Promise<EffectiveBatch['current']> {
   const record = await readRecord(id, m.trx)
-  if (!record) throw new Error('a batch was lost in its own transaction')
+  if (!record) throw new Error('the record of a batch was lost')
   return effectiveOf(record, m.now).current
 }
 
@@ -79,11 +82,11 @@ function lastGunOf(guns: readonly GunSpray[]): string | null {
 }
 
 /** One gun holds one pot: what it was loaded from before, it has sprayed by `at` at the latest, noted or not. */
-async function endInOtherPots(m: Mutation, gunId: string, moment: { at: number; except: string }): Promise<void> {
-  for (const { batchId, boothId } of await findPotsInGun(gunId, moment, m.trx)) {
+async function endInOtherPots(m: Mutation, pots: readonly PotInGun[], at: number): Promise<void> {
+  for (const { batchId, boothId } of pots) {
     await publishUnended(m, batchId, boothId)
     const { containsIsocyanates } = await findPotContent(batchId, m.trx)
-    if (boothId !== null && containsIsocyanates) await noteShot(m, boothId, moment.at)
+    if (boothId !== null && containsIsocyanates) await noteShot(m, boothId, at)
   }
 }
 

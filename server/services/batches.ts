@@ -21,6 +21,7 @@ import { lotIdsOf, readReferences } from './draft-references'
 import { refuseImpossible } from './draft-rules'
 import { potLabel, readDraft } from './drafts'
 import { requireMixer } from './mixers'
+import { potAnswer } from './pot-lock'
 import { publishPot } from './pot-view'
 import { componentsOf, deviationOf, drawnOf, mixedAtOf, poursOf, recordOf, reviewOf, sealedState, type Sealing } from './seal-facts'
 import { cancelTimers, setPotTimers } from './timers'
@@ -45,9 +46,7 @@ export function sealBatch(ctx: Context, { draftId, holder = null }: BatchCreateI
     if (pours.length === 0 && !draft.body.stopped) throw ruleBroken('nothing-poured', 'Nothing was poured into this cup yet.')
     await writeBatch(m, sealing, pours)
     await publishPot(m, draftId)
-    const batch = await findBatch(draftId, m.trx)
-    if (!batch) throw new Error('a batch was lost in its own transaction')
-    return batch
+    return potAnswer(m, draftId)
   })
 }
 
@@ -65,7 +64,7 @@ async function readSealing(m: Mutation, draft: StoredDraft): Promise<Sealing> {
     sums: judgeBatch(revision, draft.body, scale),
     times: potTimesOf(revision, draft.body, reactiveAt),
     reactiveAt,
-    clash: draft.body.stopped ? null : await clashAt(draft.body.boothId, revision, mixedAt, m.trx),
+    clash: draft.body.stopped ? null : await clashAt(m, draft.body.boothId, revision, mixedAt),
     now: m.now,
     zone,
   }

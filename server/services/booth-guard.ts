@@ -1,9 +1,11 @@
 import type { Knex } from 'knex'
+import type { ChemistryRule } from '#shared/engine/chemistry'
 import type { BoothChemistry, BoothCleanBody, BoothPast } from '#shared/schemas/booth-cleanings'
-import { boothClash, clashWords, type BoothClash } from '#shared/utils/bench-booth'
+import { begunWords, boothClash, clashWords, type BoothClash } from '#shared/utils/bench-booth'
 import {
-  chemistriesOf, findBoothName, insertCleaning, lastCleaning, listBoothRules, mixesInBooth, nextCleaningAt, type BoothMix,
+  chemistriesOf, findBoothName, insertCleaning, lastCleaning, listBoothRules, mixesBegunFor, mixesInBooth, nextCleaningAt, type BoothMix,
 } from '../repositories/booth-cleanings'
+import { lockBooths, shareBooth } from '../repositories/booth-locks'
 import type { MixRevision } from '../repositories/mix-revisions'
 import { lockApproval, useApprovals } from '../repositories/used-approvals'
 import type { Context } from '../utils/context'
@@ -47,27 +49,46 @@ async function pastOf(mixes: readonly BoothMix[], db: Db): Promise<BoothPast[]> 
 const chemistriesOfMix = ({ components }: Pick<MixRevision, 'components'>): string[] => components.map(({ chemistry }) => chemistry)
 
 /**
- * Refuses to begin a mix for a booth that holds what it must not meet. Nobody approves that: the booth is cleaned and
- * recorded clean, or another booth is taken.
+ * Holds a booth against what the mix must not meet there: of two mixes that a rule keeps apart, the one that stands first
+ * in it has the booth for itself, and all others share it. So clashing pots follow each other and the rest do not wait.
+ */
+async function holdBooth(boothId: string, revision: MixRevision, rules: readonly ChemistryRule[], { trx }: Mutation): Promise<void> {
+  const own = chemistriesOfMix(revision)
+  const isFirst = rules.some(({ first, verdict }) => verdict === 'blocked' && own.includes(first))
+  await (isFirst ? lockBooths([boothId], trx) : shareBooth(boothId, trx))
+}
+
+/**
+ * Refuses to begin a mix for a booth that holds what it must not meet, or for which such a pot is being mixed. Nobody
+ * approves that: the booth is cleaned and recorded clean, or another booth is taken.
  *
  * @throws Refusal 422 `booth-clash`
  */
-export async function refuseClash(boothId: string | null, revision: MixRevision, now: number, db: Db): Promise<void> {
+export async function refuseClash(m: Mutation, draftId: string, boothId: string | null, revision: MixRevision): Promise<void> {
   if (boothId === null) return
-  const { boothName, past } = await readChemistry(boothId, now, db)
-  const clash = boothClash(chemistriesOfMix(revision), past, await listBoothRules(db))
-  if (clash?.verdict !== 'blocked') return
-  const message = clashWords(clash, boothName)
-  throw ruleBroken('booth-clash', message, [{ path: 'boothId', message }])
+  const rules = await listBoothRules(m.trx)
+  await holdBooth(boothId, revision, rules, m)
+  const { boothName, past } = await readChemistry(boothId, m.now, m.trx)
+  const clash = boothClash(chemistriesOfMix(revision), past, rules)
+  if (clash?.verdict === 'blocked') throw clashing(clashWords(clash, boothName))
+  const begun = boothClash(chemistriesOfMix(revision), await pastOf(await mixesBegunFor(boothId, draftId, m.now, m.trx), m.trx), rules)
+  if (begun?.verdict === 'blocked') throw clashing(begunWords(begun, boothName))
+}
+
+function clashing(message: string) {
+  return ruleBroken('booth-clash', message, [{ path: 'boothId', message }])
 }
 
 /** The blocked clash of a batch that is in the cup already, with what was made for its booth between the same two cleanings. */
-export async function clashAt(boothId: string | null, revision: MixRevision, mixedAt: number, db: Db): Promise<BoothClash | null> {
+export async function clashAt(m: Mutation, boothId: string | null, revision: MixRevision, mixedAt: number): Promise<BoothClash | null> {
   if (boothId === null) return null
+  const { trx: db } = m
+  const rules = await listBoothRules(db)
+  await holdBooth(boothId, revision, rules, m)
   const cleaning = await lastCleaning(boothId, mixedAt, db)
   const until = await nextCleaningAt(boothId, mixedAt, db)
   const past = await pastOf(await mixesInBooth(boothId, cleaning?.at ?? null, until, db), db)
-  const clash = boothClash(chemistriesOfMix(revision), past, await listBoothRules(db))
+  const clash = boothClash(chemistriesOfMix(revision), past, rules)
   return clash?.verdict === 'blocked' ? clash : null
 }
 
@@ -79,8 +100,9 @@ export async function clashAt(boothId: string | null, revision: MixRevision, mix
  */
 export function cleanBooth(ctx: Context, id: string, { approvalId }: BoothCleanBody): Promise<BoothChemistry> {
   return mutate(ctx, async (m) => {
-    const before = await readChemistry(id, m.now, m.trx)
     const userId = await cleanedBy(ctx, m, id, approvalId)
+    await lockBooths([id], m.trx)
+    const before = await readChemistry(id, m.now, m.trx)
     const cleaningId = newId()
     await insertCleaning({ id: cleaningId, boothId: id, userId, at: m.now }, m.trx)
     m.audit({

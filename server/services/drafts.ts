@@ -97,7 +97,7 @@ function saveOnce(ctx: Context, id: string, body: DraftBody): Promise<Draft> {
     planOf(references.revision, body.plan, references.scale)
     // Reckoned even before anything reacts, so that a temperature that cannot be is said at once.
     potTimesOf(references.revision, body, m.now)
-    if (isChoiceOfBooth(body, stored)) await refuseClash(body.boothId, references.revision, m.now, m.trx)
+    if (isChoiceOfBooth(body, stored)) await refuseClash(m, id, body.boothId, references.revision)
     const moment = momentOf(body, references.revision, stored, m.now)
     const approved = await checkApprovals(m, id, body, stored, references)
     const extras: DraftExtras = { notes: notesOf(body, stored, moment.note), approved }

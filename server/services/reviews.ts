@@ -8,6 +8,7 @@ import { notFound, Refusal } from '../utils/errors'
 import { toInstant } from '../utils/rows'
 import { mutate } from '../utils/transactions'
 import { effectiveOf } from './batch-effective'
+import { potAnswer } from './pot-lock'
 import { publishPot } from './pot-view'
 
 /**
@@ -32,8 +33,6 @@ export function settleReview(ctx: Context, id: string, { codes, reason }: BatchR
     await rewriteCurrent(after.current, m.now, m.trx)
     m.audit({ action: 'batch.review-settled', subject: `batch:${id}`, facts: { codes: settled, left: after.openReview } })
     await publishPot(m, id)
-    const batch = await findBatch(id, m.trx)
-    if (!batch) throw new Error('a batch was lost in its own transaction')
-    return batch
+    return potAnswer(m, id)
   })
 }

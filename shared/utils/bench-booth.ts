@@ -27,6 +27,11 @@ export function boothClash(chemistries: readonly string[], past: readonly BoothP
 /** A chemistry as it is said: `acid-curing` stands as it is, `uv` in capitals. */
 export const chemistryWords = (chemistry: string): string => (chemistry === 'uv' ? 'UV' : chemistry)
 
+/** Why a mix is not started for a booth for which another one is being mixed, in plain words. */
+export function begunWords({ chemistry, past, advice }: BoothClash, boothName: string): string {
+  return `${past.mixName} (${chemistryWords(past.chemistry)}) is being mixed for ${boothName}; this mix is ${chemistryWords(chemistry)}. ${advice}`
+}
+
 /** Why a mix is not started for a booth, in plain words. */
 export function clashWords({ chemistry, past, advice }: BoothClash, boothName: string): string {
   return `${boothName} was last used for ${chemistryWords(past.chemistry)} (${past.mixName}); this mix is ${chemistryWords(chemistry)}. ${advice}`

@@ -94,6 +94,46 @@ describe('the booth guard', () => {
     await expect(cleanBooth(sprayer(), shop.boothId, { ...ticked, approvalId })).rejects.toMatchObject({ code: 'approval-invalid' })
   })
 
+  it('counts what is being mixed for the booth, and lets a cup change its own mix', async () => {
+    const id = randomUUID()
+    await saveDraft(sprayer(), id, draftBody(shop, { components: [] }))
+    await expect(saveDraft(sprayer(), randomUUID(), nitroBody())).rejects.toMatchObject({
+      status: 422, code: 'booth-clash', fields: [{ path: 'boothId', message: expect.stringContaining(`Sealer ${shop.mark} (polyurethane) is being mixed for Booth ${shop.mark}`) }],
+    })
+    expect((await saveDraft(sprayer(), id, nitroBody({ seq: 9 }))).mixRevisionId).toBe(nitro.mixRevisionId)
+  })
+
+  it('forgets an empty cup that nobody touched for a day, but none with something in it', async () => {
+    const poured = randomUUID()
+    await saveDraft(sprayer(), randomUUID(), draftBody(shop, { components: [] }))
+    work.clock.now = morning + 25 * 3_600_000
+    expect((await saveDraft(sprayer(), randomUUID(), nitroBody())).state).toBe('open')
+    await saveDraft(sprayer(), poured, nitroBody({ boothId: shop.otherBoothId, components: nitroIn(0) }))
+    work.clock.now += 25 * 3_600_000
+    await expect(saveDraft(sprayer(), randomUUID(), draftBody(shop, { boothId: shop.otherBoothId, components: [] }))).rejects.toMatchObject({ code: 'booth-clash' })
+  })
+
+  it('lets one of two clashing mixes begin when both do so at once', async () => {
+    for (let round = 0; round < 5; round++) {
+      Object.assign(shop, await makeShop(work.admin))
+      Object.assign(work.shop, shop)
+      const both = await Promise.allSettled([saveDraft(sprayer(), randomUUID(), draftBody(shop, { components: [] })), saveDraft(sprayer(), randomUUID(), nitroBody())])
+      expect(both.map(({ status }) => status).sort()).toEqual(['fulfilled', 'rejected'])
+    }
+  })
+
+  it('marks one of two clashing pots that are sealed at once', async () => {
+    for (let round = 0; round < 5; round++) {
+      Object.assign(shop, await makeShop(work.admin))
+      Object.assign(work.shop, shop)
+      const [first, second] = [randomUUID(), randomUUID()]
+      await saveDraft(sprayer(), first, draftBody(shop, { components: poured(shop, ['1450', '725', '290']) }))
+      await saveDraft(sprayer(), second, nitroBody({ components: nitroIn(-5) }))
+      const both = await Promise.all([first, second].map((draftId) => sealBatch(sprayer(), { draftId })))
+      expect(both.filter(({ review }) => review.includes('booth-clash'))).toHaveLength(1)
+    }
+  })
+
   it('keeps what was poured all the same and marks it for a foreman', async () => {
     await sprayPolyurethane()
     const id = randomUUID()
