@@ -17,9 +17,20 @@ interface UserRow {
 
 /** What is needed to check a password. Inactive people are not found. */
 export async function findSignInUser(email: string, db: Db): Promise<UserRow | undefined> {
-  return db('users')
-    .where({ email, active: true })
-    .first<UserRow | undefined>('id', 'email', 'name', 'initials', 'role', 'password_hash', 'must_change_password')
+  return signInUsers(db).where({ email }).first()
+}
+
+const signInUsers = (db: Db): Knex.QueryBuilder<UserRow, UserRow[]> =>
+  db('users').where({ active: true }).select('id', 'email', 'name', 'initials', 'role', 'password_hash', 'must_change_password')
+
+/**
+ * The person whose password was checked, held until the transaction ends; undefined where the password, its account or
+ * the address was changed since.
+ *
+ * @param checked as it was read when the password was checked
+ */
+export async function holdSignInUser(checked: Pick<UserRow, 'email' | 'password_hash'>, trx: Knex.Transaction): Promise<UserRow | undefined> {
+  return signInUsers(trx).where({ email: checked.email, password_hash: checked.password_hash }).forUpdate().first()
 }
 
 interface NewSession {

@@ -1,9 +1,10 @@
 import type { OwnPasswordBody } from '#shared/schemas/people'
 import type { Approval, ApprovalBody, Session, SignInBody } from '#shared/schemas/session'
+import type { Role } from '#shared/types/roles'
 import { may } from '#shared/utils/permissions'
 import { insertApproval } from '../repositories/approvals'
 import { endSessionsOf, updatePassword } from '../repositories/people'
-import { endSession, findSignInUser, insertSession, sessionHours } from '../repositories/sessions'
+import { endSession, findSignInUser, holdSignInUser, insertSession, sessionHours } from '../repositories/sessions'
 import { readShop } from '../repositories/settings'
 import type { Context, UserPrincipal } from '../utils/context'
 import { forbidden, Refusal, ruleBroken } from '../utils/errors'
@@ -40,6 +41,7 @@ export async function signIn(ctx: Context, body: SignInBody, token: string): Pro
   const asUser: Context = { ...ctx, principal: { kind: 'user', user: principal, device: ctx.principal.device } }
   const replaced = ctx.principal.user
   await mutate(asUser, async ({ trx, now, audit, publish }) => {
+    if (!(await holdSignInUser(user, trx))) throw wrong()
     const expiresAt = now + sessionHours * hourMs
     await insertSession({ id: sessionId, userId: user.id, deviceId, now, expiresAt }, trx)
     if (replaced) {
@@ -86,11 +88,11 @@ export async function describeSession(ctx: Pick<Context, 'db' | 'principal'>): P
  * @throws Refusal 401 for wrong words, 403 when the person may not approve
  */
 export async function approve(ctx: Context, body: ApprovalBody): Promise<Approval> {
-  const user = await checkPassword(ctx, body)
-  if (!may(user.role, 'approvals:give')) throw forbidden('A foreman or manager has to approve this.')
-  // A first password is known to whoever typed it: that is nobody's word yet.
-  if (user.must_change_password === 1) throw forbidden('Sign in once and choose a password of your own first.')
+  const checked = await checkPassword(ctx, body)
   return mutate(ctx, async ({ trx, now, audit }) => {
+    const user = await holdSignInUser(checked, trx)
+    if (!user) throw wrong()
+    requireApprover(user)
     const id = newId()
     const expiresAt = now + approvalMs
     const { action, subject, reason } = body
@@ -98,6 +100,13 @@ export async function approve(ctx: Context, body: ApprovalBody): Promise<Approva
     audit({ action: 'approval.given', subject: `approval:${id}`, facts: { action, about: subject, approvedByUserId: user.id } })
     return { id, action, subject, approvedByUserId: user.id, expiresAt: isoOf(toInstant(expiresAt)) }
   })
+}
+
+/** @throws Refusal 403 when the person may not approve */
+function requireApprover({ role, must_change_password: mustChange }: { role: Role; must_change_password: number }): void {
+  if (!may(role, 'approvals:give')) throw forbidden('A foreman or manager has to approve this.')
+  // A first password is known to whoever typed it: that is nobody's word yet.
+  if (mustChange === 1) throw forbidden('Sign in once and choose a password of your own first.')
 }
 
 /**
@@ -109,12 +118,13 @@ export async function approve(ctx: Context, body: ApprovalBody): Promise<Approva
 export async function changeOwnPassword(ctx: Context, body: OwnPasswordBody, token: string): Promise<Session> {
   const user = ctx.principal.user
   if (!user) throw forbidden()
-  await checkPassword(ctx, { email: user.email, password: body.currentPassword }, () =>
-    ruleBroken('wrong-password', 'The present password is another one.', [{ path: 'currentPassword', message: 'The present password is another one.' }]))
+  const other = () => ruleBroken('wrong-password', 'The present password is another one.', [{ path: 'currentPassword', message: 'The present password is another one.' }])
+  const checked = await checkPassword(ctx, { email: user.email, password: body.currentPassword }, other)
   const passwordHash = await hashSecret(body.newPassword)
   const sessionId = sha256(token)
   const asUser: Context = { ...ctx, principal: { ...ctx.principal, kind: 'user', user: { ...user, sessionId, mustChangePassword: false } } }
   await mutate(asUser, async ({ trx, now, audit, publish }) => {
+    if (!(await holdSignInUser(checked, trx))) throw other()
     await updatePassword(user.id, passwordHash, false, now, trx)
     const ended = await endSessionsOf(user.id, 'password-changed', now, trx)
     await insertSession({ id: sessionId, userId: user.id, deviceId: ctx.principal.device?.id ?? null, now, expiresAt: now + sessionHours * hourMs }, trx)
