@@ -105,6 +105,12 @@ export async function findMaterials(ids: readonly string[], db: Db): Promise<Sto
   return (await db('materials').whereIn('id', [...ids]).select<Row[]>('*')).map(toMaterial)
 }
 
+/** The same, kept from being changed until the transaction ends; in the order of their ids, so that nobody waits in a ring. */
+export async function shareMaterials(ids: readonly string[], trx: Knex.Transaction): Promise<StoredMaterial[]> {
+  if (ids.length === 0) return []
+  return (await trx('materials').whereIn('id', [...ids]).orderBy('id').forShare().select<Row[]>('*')).map(toMaterial)
+}
+
 interface StockRow {
   material_id: string
   usable_g: string

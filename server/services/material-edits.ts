@@ -4,12 +4,15 @@ import {
   deleteMaterial, hazardTexts, insertMaterial, isReferenced, lockMaterial, updateMaterial, usesOf, volumeMixesOf, type StoredMaterial,
 } from '../repositories/materials'
 import { changesOf } from '../utils/changes'
-import { duplicate, inUse, versionConflict } from '../utils/conflict'
+import { inUse, versionConflict, uniquely } from '../utils/conflict'
 import type { Context } from '../utils/context'
 import { invalid, notFound, ruleBroken } from '../utils/errors'
 import { newId } from '../utils/ids'
-import { isDuplicate, mutate, type Mutation } from '../utils/transactions'
+import { mutate, type Mutation } from '../utils/transactions'
 import { materialById } from './materials'
+
+/** What is told where it is there already. */
+const taken = ['code', 'Another material has this code.'] as const
 
 /** Words and codes stay out of the audit: they may name people or firms. */
 const wordFields = ['code', 'name', 'supplier', 'makerCode', 'protectionMixing', 'protectionSpraying'] as const
@@ -25,7 +28,7 @@ export function createMaterial(ctx: Context, body: MaterialCreateBody): Promise<
   return mutate(ctx, async (m) => {
     const id = newId()
     await refuseUnknownStatements(body.hazardCodes, m)
-    await uniquely(() => insertMaterial(id, body, m.now, m.trx))
+    await uniquely(...taken, () => insertMaterial(id, body, m.now, m.trx))
     m.audit({ action: 'material.created', subject: `material:${id}`, facts: changesOf({}, body, wordFields) })
     tell(m, id)
     return await materialById(inside(ctx, m), id)
@@ -35,7 +38,7 @@ export function createMaterial(ctx: Context, body: MaterialCreateBody): Promise<
 /**
  * Changes a material, or puts it aside and back.
  * @throws Refusal 404, 409 `version-conflict` with what stands now, 409 `duplicate`, 409 `in-use` when a mix still takes it,
- * 422 `density-needed` when a mix by volume does, 400 for what its figures say against each other
+ * 422 `density-needed` when a mix by volume does, 422 `role-in-use` for another role while a mix takes it, 400 for what its figures say against each other
  */
 export function changeMaterial(ctx: Context, id: string, { version, archived, ...fields }: MaterialPatchBody): Promise<Material> {
   return mutate(ctx, async (m) => {
@@ -43,8 +46,9 @@ export function changeMaterial(ctx: Context, id: string, { version, archived, ..
     if (!stored) throw notFound('The material')
     if (stored.version !== version) throw await versionConflict(await materialById(inside(ctx, m), id), `material:${id}`, m.trx)
     await refuseBroken(stored, fields, m)
+    if (fields.role !== undefined && fields.role !== stored.role) await refuseOtherRole(id, m)
     if (archived && !stored.archived) await refuseArchiving(id, m)
-    await uniquely(() => updateMaterial(id, fields, archived, m.now, m.trx))
+    await uniquely(...taken, () => updateMaterial(id, fields, archived, m.now, m.trx))
     m.audit({ action: 'material.changed', subject: `material:${id}`, facts: { ...changesOf(stored, fields, wordFields), ...(archived === undefined ? {} : { archived }) } })
     tell(m, id)
     return await materialById(inside(ctx, m), id)
@@ -77,10 +81,20 @@ async function refuseBroken(stored: StoredMaterial, fields: Partial<MaterialFiel
   throw ruleBroken('density-needed', message, [{ path: 'densityGPerMl', message }])
 }
 
+/** The pouring order of a mix in force hangs on the roles of its materials. */
+async function refuseOtherRole(id: string, m: Mutation): Promise<void> {
+  const codes = await mixesWith(id, m)
+  if (codes.length === 0) return
+  const message = `Taken by ${codes.join(', ')} in this role. Make a new revision without it or archive the mix first.`
+  throw ruleBroken('role-in-use', message, [{ path: 'role', message }])
+}
+
+/** Codes of the mixes in force that take a material, each once. */
+const mixesWith = async (id: string, m: Mutation): Promise<string[]> => [...new Set((await usesOf(id, m.trx)).map(({ mixCode }) => mixCode))]
+
 async function refuseArchiving(id: string, m: Mutation): Promise<void> {
-  const uses = await usesOf(id, m.trx)
-  if (uses.length === 0) return
-  const codes = [...new Set(uses.map(({ mixCode }) => mixCode))]
+  const codes = await mixesWith(id, m)
+  if (codes.length === 0) return
   throw inUse(`Still taken by ${codes.join(', ')}. Make a new revision without it or archive the mix first.`)
 }
 
@@ -88,14 +102,4 @@ async function refuseUnknownStatements(codes: readonly string[], m: Mutation): P
   const known = new Set((await hazardTexts(codes, m.trx)).map(({ code }) => code))
   const unknown = codes.filter(code => !known.has(code))
   if (unknown.length > 0) throw invalid([{ path: 'hazardCodes', message: 'One of these statements is not in the list.' }])
-}
-
-async function uniquely(write: () => Promise<void>): Promise<void> {
-  try {
-    await write()
-  }
-  catch (error) {
-    if (isDuplicate(error)) throw duplicate('code', 'Another material has this code.')
-    throw error
-  }
 }

@@ -1,15 +1,18 @@
 import type { Mix, MixCreateBody, MixPatchBody, MixRevisionBody, MixRevisionFields } from '#shared/schemas/mixes'
-import { mixFaults } from '#shared/utils/mix-rules'
-import { findMaterials } from '../repositories/materials'
+import { componentFaults, mixFaults } from '#shared/utils/mix-rules'
+import { shareMaterials } from '../repositories/materials'
 import { insertMix, insertRevision, lockMix, nextRevisionNumber, updateMix } from '../repositories/mix-edits'
 import { componentsOf, findMix, schedulesOf, type StoredMix } from '../repositories/mixes'
 import { changesOf } from '../utils/changes'
-import { duplicate, inUse, versionConflict } from '../utils/conflict'
+import { inUse, versionConflict, uniquely } from '../utils/conflict'
 import { userIdOf, type Context } from '../utils/context'
 import { invalid, notFound } from '../utils/errors'
 import { newId } from '../utils/ids'
-import { isDuplicate, mutate, type Mutation } from '../utils/transactions'
+import { mutate, type Mutation } from '../utils/transactions'
 import { mixById } from './mixes'
+
+/** What is told where it is there already. */
+const taken = ['code', 'Another mix has this code.'] as const
 
 const wordFields = ['code', 'name'] as const
 
@@ -24,7 +27,7 @@ export function createMix(ctx: Context, { code, name, ...fields }: MixCreateBody
   return mutate(ctx, async (m) => {
     await refuseBroken(fields, m)
     const id = newId()
-    await uniquely(() => insertMix(id, { code, name }, m.now, m.trx))
+    await uniquely(...taken, () => insertMix(id, { code, name }, m.now, m.trx))
     const revisionId = await insertRevision(id, 1, fields, userIdOf(ctx.principal), m.now, m.trx)
     m.audit({ action: 'mix.created', subject: `mix:${id}`, facts: { revisionId, number: 1, ...factsOf(fields) } })
     tell(m, id)
@@ -50,15 +53,15 @@ export function reviseMix(ctx: Context, id: string, { version, ...fields }: MixR
 
 /**
  * Renames a mix, or puts it aside and back.
- * @throws Refusal 404, 409 `version-conflict` with what stands now, `duplicate`, or `in-use` while a schedule sprays it or
- * a material of it is archived
+ * @throws Refusal 404, 409 `version-conflict` with what stands now, `duplicate`, or `in-use` while a schedule sprays it, or
+ * a material of it is archived or of another role
  */
 export function changeMix(ctx: Context, id: string, { version, archived, ...names }: MixPatchBody): Promise<Mix> {
   return mutate(ctx, async (m) => {
     const stored = await lockedMix(ctx, m, id, version)
     if (archived === true && !stored.archived) await refuseArchiving(id, m)
     if (archived === false && stored.archived) await refuseReturn(stored, m)
-    await uniquely(() => updateMix(id, { ...names, archived }, m.now, m.trx))
+    await uniquely(...taken, () => updateMix(id, { ...names, archived }, m.now, m.trx))
     m.audit({ action: 'mix.changed', subject: `mix:${id}`, facts: { ...changesOf(stored, names, wordFields), ...(archived === undefined ? {} : { archived }) } })
     tell(m, id)
     return await answer(ctx, m, id)
@@ -73,7 +76,7 @@ async function lockedMix(ctx: Context, m: Mutation, id: string, version: number)
 }
 
 async function refuseBroken(fields: MixRevisionFields, m: Mutation): Promise<void> {
-  const materials = await findMaterials(fields.components.map(({ materialId }) => materialId), m.trx)
+  const materials = await shareMaterials(fields.components.map(({ materialId }) => materialId), m.trx)
   const faults = mixFaults(fields, new Map(materials.map(material => [material.id, material])))
   if (faults.length > 0) throw invalid(faults)
 }
@@ -91,16 +94,10 @@ async function refuseArchiving(id: string, m: Mutation): Promise<void> {
 async function refuseReturn({ currentRevisionId }: StoredMix, m: Mutation): Promise<void> {
   if (currentRevisionId === null) return
   const components = (await componentsOf([currentRevisionId], m.trx)).get(currentRevisionId) ?? []
-  const archived = (await findMaterials(components.map(({ materialId }) => materialId), m.trx)).filter(material => material.archived)
+  const materials = await shareMaterials(components.map(({ materialId }) => materialId), m.trx)
+  const archived = materials.filter(material => material.archived)
   if (archived.length > 0) throw inUse(`${archived.map(({ code }) => code).join(', ')} is archived. Bring it back first.`)
-}
-
-async function uniquely(write: () => Promise<void>): Promise<void> {
-  try {
-    await write()
-  }
-  catch (error) {
-    if (isDuplicate(error)) throw duplicate('code', 'Another mix has this code.')
-    throw error
-  }
+  // While the mix was put aside, the role of one of them may have been put right.
+  const [fault] = componentFaults(components, new Map(materials.map(material => [material.id, material])))
+  if (fault) throw inUse(fault.message)
 }

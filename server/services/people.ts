@@ -4,14 +4,17 @@ import {
   endSessionsOf, findPerson, holdManagers, insertPerson, updatePassword, updatePerson, type Person, type PersonFacts,
 } from '../repositories/people'
 import { holdThing } from '../repositories/shop-write'
-import { duplicate, versionConflict } from '../utils/conflict'
+import { versionConflict, uniquely } from '../utils/conflict'
 import type { Context } from '../utils/context'
 import { notFound, ruleBroken } from '../utils/errors'
 import { newId } from '../utils/ids'
 import { hashSecret } from '../utils/password'
-import { isDuplicate, mutate, type Mutation } from '../utils/transactions'
+import { mutate, type Mutation } from '../utils/transactions'
 import { sessionEnded } from './sessions'
 import { shopDay, withTraining } from './shop'
+
+/** What is told where it is there already. */
+const taken = ['email', 'Somebody has this address already, perhaps one who was taken out of use.'] as const
 
 /**
  * Enters a person with a first password, which has to be changed at the first sign-in.
@@ -22,7 +25,7 @@ export async function createPerson(ctx: Context, { password, ...facts }: PersonC
   const [passwordHash, { today }] = await Promise.all([hashSecret(password), shopDay(ctx)])
   return mutate(ctx, async (m) => {
     const id = newId()
-    await addressed(() => insertPerson(id, facts, passwordHash, m.now, m.trx))
+    await uniquely(...taken, () => insertPerson(id, facts, passwordHash, m.now, m.trx))
     m.audit({ action: 'user.created', subject: `user:${id}`, facts: { role: facts.role, isocyanateTrainingUntil: facts.isocyanateTrainingUntil } })
     m.publish(told(id))
     return withTraining(await present(id, m), today)
@@ -45,7 +48,7 @@ export async function changePerson(ctx: Context, id: string, { version, active, 
     const after: PersonFacts = { ...factsOf(before), ...given(fields) }
     const stays = active ?? before.active
     if (managers.length === 1 && managers[0] === id) requireManager(after.role, stays)
-    await addressed(() => updatePerson(id, after, stays, m.now, m.trx))
+    await uniquely(...taken, () => updatePerson(id, after, stays, m.now, m.trx))
     const reason = before.active && !stays ? 'disabled' : before.role === after.role ? null : 'role-changed'
     const ended = reason === null ? [] : await endAll(m, id, reason)
     m.audit({ action: 'user.changed', subject: `user:${id}`, facts: { ...changesOf(before, after, stays), endedSessions: ended } })
@@ -95,15 +98,6 @@ async function endAll(m: Mutation, userId: string, reason: string): Promise<numb
   const ended = await endSessionsOf(userId, reason, m.now, m.trx)
   for (const id of ended) m.publish(sessionEnded(id))
   return ended.length
-}
-
-async function addressed(write: () => Promise<void>): Promise<void> {
-  try {
-    await write()
-  } catch (error) {
-    if (isDuplicate(error)) throw duplicate('email', 'Somebody has this address already, perhaps one who was taken out of use.')
-    throw error
-  }
 }
 
 /** Role and training as they were and are; of names and addresses only that they changed. */

@@ -5,14 +5,17 @@ import { BoothBody, GunBody, MixingCupBody, ScaleBody } from '#shared/schemas/sh
 import type { Booth, Gun, MixingCup, Scale } from '#shared/schemas/shop'
 import { isActive } from '../repositories/devices'
 import { deleteThing, hasLivePots, holdThing, insertThing, updateThing, type ShopTable } from '../repositories/shop-write'
-import { duplicate, inUse, versionConflict } from '../utils/conflict'
+import { inUse, versionConflict, uniquely } from '../utils/conflict'
 import type { Canonical } from '../utils/canonical'
 import type { Context } from '../utils/context'
 import { invalid, type FieldFault } from '../utils/errors'
 import { newId } from '../utils/ids'
-import { isDuplicate, mutate, type Mutation } from '../utils/transactions'
+import { mutate, type Mutation } from '../utils/transactions'
 import { settleClearance } from './booth-air'
 import { readBooth, readGun, readMixingCup, readScale } from './shop'
+
+/** What is told where it is there already. */
+const taken = ['name', 'This name is taken, perhaps by one that was taken out of use.'] as const
 
 interface Thing {
   id: string
@@ -101,7 +104,7 @@ export function createThing<Body extends { name: string }, T extends Thing>(ctx:
     const faults = await kind.faults?.(body, null, m.trx) ?? []
     if (faults.length > 0) throw invalid(faults)
     const id = newId()
-    await named(() => insertThing(kind.table, id, kind.toRow(body), m.now, m.trx))
+    await uniquely(...taken, () => insertThing(kind.table, id, kind.toRow(body), m.now, m.trx))
     m.audit({ action: `${kind.word}.created`, subject: `${kind.word}:${id}`, facts: factsOf(body) })
     m.publish(told(kind.word, id))
     return kind.read(ctx, id, m.trx)
@@ -124,7 +127,7 @@ export function changeThing<Body extends { name: string }, T extends Thing>(
     const stays = active ?? before.active
     const reason = before.active && !stays ? await kind.keptFor?.(before, m.trx) ?? null : null
     if (reason !== null) throw inUse(reason)
-    await named(() => updateThing(kind.table, id, { ...kind.toRow(body), active: stays }, m.now, m.trx))
+    await uniquely(...taken, () => updateThing(kind.table, id, { ...kind.toRow(body), active: stays }, m.now, m.trx))
     const [from, to] = differences({ ...kind.toBody(before), active: before.active }, { ...body, active: stays })
     await kind.after?.(m, id)
     m.audit({ action: `${kind.word}.changed`, subject: `${kind.word}:${id}`, facts: { from, to } })
@@ -156,15 +159,6 @@ async function merged<Body extends { name: string }, T extends Thing>(kind: Kind
   const faults = await kind.faults?.(parsed.data, before, m.trx) ?? []
   if (faults.length > 0) throw invalid(faults)
   return parsed.data
-}
-
-async function named(write: () => Promise<void>): Promise<void> {
-  try {
-    await write()
-  } catch (error) {
-    if (isDuplicate(error)) throw duplicate('name', 'This name is taken, perhaps by one that was taken out of use.')
-    throw error
-  }
 }
 
 /** What is audited of a thing: no names. */

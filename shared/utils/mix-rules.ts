@@ -62,7 +62,7 @@ export function mixInputOf({ basis, components }: Pick<RuledRevision, 'basis' | 
  * be mixed.
  */
 export function mixFaults(revision: RuledRevision, materials: Materials): Fault[] {
-  const faults = [...materialFaults(revision.components, materials), ...viscosityFaults(revision.viscosity)]
+  const faults = [...componentFaults(revision.components, materials), ...viscosityFaults(revision.viscosity)]
   if (faults.length > 0) return faults
   try {
     const mix = readMix(mixInputOf(revision, materials))
@@ -85,7 +85,8 @@ export function beside({ code, field, message }: EngineError): Fault {
 
 const roleOf = (material: RuledMaterial): Role => (material.role === 'ready-to-use' ? 'base' : material.role)
 
-function materialFaults(components: readonly RuledComponent[], materials: Materials): Fault[] {
+/** What is wrong with the materials of a mix. */
+export function componentFaults(components: readonly RuledComponent[], materials: Materials): Fault[] {
   return components.flatMap(({ materialId, role }, place) => {
     const material = materials.get(materialId)
     if (!material) return [{ path: `components.${place}.materialId`, message: 'There is no such material.' }]
