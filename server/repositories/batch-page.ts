@@ -122,7 +122,7 @@ type Conditions = Pick<EffectiveFacts, 'airC' | 'rhPct' | 'surfaceC' | 'material
 function conditionsOf({ airC, rhPct, surfaceC, materialC, viscosityCup: cup, viscositySeconds: seconds }: Conditions): Pick<Batch, 'climate' | 'viscosity'> {
   return {
     climate: airC === null && rhPct === null && surfaceC === null ? null : { airC, rhPct, surfaceC },
-    viscosity: cup === null || seconds === null ? null : { cup, seconds, materialC },
+    viscosity: cup === null && seconds === null && materialC === null ? null : { cup, seconds, materialC },
   }
 }
 

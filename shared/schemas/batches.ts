@@ -198,7 +198,7 @@ export const Batch = z.strictObject({
     airC: z.nullable(DecimalText), rhPct: z.nullable(DecimalText), surfaceC: z.nullable(DecimalText),
   })),
   viscosity: z.nullable(z.strictObject({
-    cup: z.string(), seconds: DecimalText, materialC: z.nullable(DecimalText),
+    cup: z.nullable(z.string()), seconds: z.nullable(DecimalText), materialC: z.nullable(DecimalText),
   })),
   plan: DraftPlan,
   corrections: z.array(DraftCorrection),
