@@ -22,13 +22,19 @@ export async function rewriteUses(uses: BatchUses, trx: Knex.Transaction): Promi
 }
 
 /** How many lots a typed beginning may mean at once. */
-const mostLots = 50
+export const mostLots = 50
 
-/** Lots by the maker's number: those that bear it exactly, else those whose number begins so. */
-export async function findLotsByNumber(lotNumber: string, db: Knex): Promise<string[]> {
-  const exact = await db('lots').where('lot_number', lotNumber).orderBy('id').limit(mostLots).select<{ id: string }[]>('id')
-  if (exact.length > 0) return exact.map(({ id }) => id)
+/**
+ * Lots by the maker's number: those that bear it exactly, else those whose number begins so.
+ *
+ * @returns null where more begin so than can be looked up at once
+ */
+export async function findLotsByNumber(lotNumber: string, db: Knex): Promise<string[] | null> {
+  const exact = await db('lots').where('lot_number', lotNumber).orderBy('id').limit(mostLots + 1).select<{ id: string }[]>('id')
+  if (exact.length > 0) return allOf(exact)
   const begins = `${lotNumber.replace(/[\\%_]/g, '\\$&')}%`
-  const found = await db('lots').where('lot_number', 'like', begins).orderBy('lot_number').limit(mostLots).select<{ id: string }[]>('id')
-  return found.map(({ id }) => id)
+  const found = await db('lots').where('lot_number', 'like', begins).orderBy('lot_number').limit(mostLots + 1).select<{ id: string }[]>('id')
+  return allOf(found)
 }
+
+const allOf = (found: readonly { id: string }[]): string[] | null => (found.length > mostLots ? null : found.map(({ id }) => id))

@@ -3,9 +3,10 @@ import { addDays, startOfShopDay } from '#shared/utils/zone'
 import { audienceOf } from '../live/audience'
 import { countOpenReviews, readFacets } from '../repositories/batch-facets'
 import { listBatchRows, type BatchFilter } from '../repositories/batch-list'
-import { findLotsByNumber } from '../repositories/batch-uses'
+import { findLotsByNumber, mostLots } from '../repositories/batch-uses'
 import { readShop } from '../repositories/settings'
 import type { Context } from '../utils/context'
+import { invalid } from '../utils/errors'
 import { decodeCursor, encodeCursor } from '../utils/keyset'
 
 type Reader = Pick<Context, 'db' | 'principal'>
@@ -13,7 +14,7 @@ type Reader = Pick<Context, 'db' | 'principal'>
 /**
  * The log, the youngest first. Days are the shop's. A booth's screen sees its own booth.
  *
- * @throws Refusal 400 for a cursor of another list, 403 when a screen asks for another booth
+ * @throws Refusal 400 for a cursor of another list or a beginning of a lot's number that too many share, 403 when a screen asks for another booth
  */
 export async function listBatches(ctx: Reader, { cursor, limit, ...query }: BatchListQuery): Promise<BatchList> {
   const filter = { ...(await filterOf(ctx, query)), after: cursor === undefined ? undefined : readCursor(cursor), limit: limit + 1 }
@@ -38,10 +39,11 @@ export async function filterOf(ctx: Reader, { from, to, lot, lotId, ...filters }
   }
 }
 
-/** Lots by the maker's number, by id, or by both where both are asked for. */
+/** Lots by the maker's number, by id, or by both where both are asked for. @throws Refusal 400 for a beginning that too many lots share */
 async function lotsOf(ctx: Reader, lot: string | undefined, lotId: string | undefined): Promise<string[] | undefined> {
   if (lot === undefined) return lotId === undefined ? undefined : [lotId]
   const found = await findLotsByNumber(lot, ctx.db)
+  if (found === null) throw invalid([{ path: 'lot', message: `More than ${mostLots} lots begin so. Type more of the number.` }])
   return lotId === undefined ? found : found.filter((id) => id === lotId)
 }
 

@@ -44,6 +44,19 @@ beforeAll(async () => {
 }, 180_000)
 afterAll(() => work.close())
 
+describe('the beginning of a lot\'s number', () => {
+  it('is refused beside its field where more lots begin so than are looked up', async () => {
+    const begins = `Z${work.shop.mark}`
+    const lots = async (count: number) => {
+      for (let one = 0; one < count; one++) await makeLot(work.admin, work.shop.materials.base, '1', { lot_number: `${begins}-${randomUUID().slice(0, 8)}` })
+    }
+    await lots(50)
+    expect(await ask({ lot: begins })).toEqual([])
+    await lots(1)
+    await expect(ask({ lot: begins })).rejects.toMatchObject({ status: 400, fields: [{ path: 'lot', message: 'More than 50 lots begin so. Type more of the number.' }] })
+  })
+})
+
 /** Purposes of the lines, in order. Every question is held to this shop by a component that all its batches share. */
 async function ask(query: Record<string, string>): Promise<string[]> {
   const parsed = z.parse(BatchListQuery, { materialId: work.shop.materials.base, ...query })
