@@ -1,6 +1,7 @@
 import type { ClimateReading } from '../schemas/climate'
 import type { LiveBooth, LiveEvent, LivePot, LiveSnapshot, LiveWindow } from '../schemas/live'
 import type { Timer } from '../schemas/timers'
+import { compareUrgency } from './live-order'
 
 /** What a screen knows of the running shop: a snapshot and every event since. */
 export interface LiveState {
@@ -20,7 +21,7 @@ export const emptyLiveState: LiveState = { lastSeq: 0, boothId: null, pots: [], 
 /** The state that a snapshot describes. */
 export function fromSnapshot(snapshot: LiveSnapshot): LiveState {
   const { lastSeq, boothId, pots, windows, alarms, booths } = snapshot
-  return { lastSeq, boothId, pots: [...pots].sort(byUrgency), windows: [...windows].sort(byClose), alarms, booths }
+  return { lastSeq, boothId, pots: [...pots].sort(compareUrgency), windows: [...windows].sort(byClose), alarms, booths }
 }
 
 /**
@@ -53,7 +54,7 @@ function placePot(state: LiveState, id: string, pot: LivePot | null): LivePot[] 
   if (pot === null || pot.state === 'emptied' || pot.state === 'stopped') return others
   // A pot whose life is up hangs on every wall of the shop.
   if (pot.state !== 'life-up' && !isHere(state, pot.boothId)) return others
-  return [...others, pot].sort(byUrgency)
+  return [...others, pot].sort(compareUrgency)
 }
 
 function placeWindow(state: LiveState, id: string, window: LiveWindow | null): LiveWindow[] {
@@ -114,13 +115,6 @@ export function soundingSince(pots: readonly Pick<LivePot, 'state' | 'alarm' | '
   const since = pots.filter((pot) => pot.state === 'life-up' && alarmAt(pot, now) === 'sounding')
     .flatMap(({ endsAt, silencedUntil }) => silencedUntil ?? endsAt ?? []).map((at) => Date.parse(at))
   return since.length > 0 ? Math.max(...since) : null
-}
-
-const urgency: Record<LivePot['state'], number> = { 'life-up': 0, closing: 1, fresh: 2, 'no-pot-life': 3, emptied: 4, stopped: 5 }
-
-/** Pot life up, closing, then the soonest to end; within that by code, so that the order never changes by itself. */
-export function byUrgency(a: LivePot, b: LivePot): number {
-  return urgency[a.state] - urgency[b.state] || compare(a.endsAt ?? '9', b.endsAt ?? '9') || compare(a.code, b.code)
 }
 
 function byClose(a: LiveWindow, b: LiveWindow): number {

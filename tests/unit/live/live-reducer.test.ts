@@ -1,7 +1,8 @@
 import { describe, expect, it } from 'vitest'
 import type { LiveBooth, LiveEvent, LivePot, LiveSnapshot, LiveWindow } from '#shared/schemas/live'
 import type { Timer } from '#shared/schemas/timers'
-import { alarmAt, applyEvent, byUrgency, catchUp, fromSnapshot, isAlarm, potAt, soundingSince, type LiveState } from '#shared/utils/live-reducer'
+import { compareUrgency } from '#shared/utils/live-order'
+import { alarmAt, applyEvent, catchUp, fromSnapshot, isAlarm, potAt, soundingSince, type LiveState } from '#shared/utils/live-reducer'
 
 const at = '2026-11-17T07:00:00.000Z'
 
@@ -117,7 +118,7 @@ it('orders pots by life up, closing, soonest end, and those without a life last'
     pot('n', { state: 'no-pot-life', endsAt: null }), pot('f2', { endsAt: '2026-11-17T10:00:00.000Z' }), pot('f1'),
     pot('c', { state: 'closing', endsAt: '2026-11-17T11:00:00.000Z' }), pot('u', { state: 'life-up' }),
   ]
-  expect(ids(pots.sort(byUrgency))).toEqual(['u', 'c', 'f1', 'f2', 'n'])
+  expect(ids(pots.sort(compareUrgency))).toEqual(['u', 'c', 'f1', 'f2', 'n'])
 })
 
 describe('a booth', () => {
