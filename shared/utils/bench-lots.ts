@@ -65,10 +65,14 @@ export const LOT_REFUSALS: Record<LotRefusal, string> = {
   'unknown': 'No lot of this number is booked in. Read the number on the tin again, or take one of these.',
 }
 
-/** A lot by the number on the tin, in whatever case it was typed. */
-export function lotByNumber(snapshot: BenchSnapshot, text: string): BenchLot | undefined {
+/**
+ * A lot by the number on the tin, in whatever case it was typed. Two makers may number alike: of those the one of the
+ * material that is asked for, else any, which is then told to be another material.
+ */
+export function lotByNumber(snapshot: BenchSnapshot, text: string, materialId?: string): BenchLot | undefined {
   const wanted = text.trim().toLowerCase()
-  return snapshot.lots.find(({ lotNumber }) => lotNumber.toLowerCase() === wanted)
+  const found = snapshot.lots.filter(({ lotNumber }) => lotNumber.toLowerCase() === wanted)
+  return found.find(lot => lot.materialId === materialId) ?? found[0]
 }
 
 /** The first lot offered of each component, in the mix's order; null where there is none. */

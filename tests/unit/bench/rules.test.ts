@@ -27,6 +27,14 @@ describe('lots', () => {
     expect(lotRefusal(lotByNumber(snapshot(), 'nothing'), id(11), today)).toBe('unknown')
   })
 
+  it('takes of two lots with one number the one of its material', () => {
+    const { lots, ...rest } = snapshot()
+    const alike = { ...rest, lots: lots.map(lot => ({ ...lot, lotNumber: 'L-1' })) }
+    expect(lotByNumber(alike, 'l-1', id(12))?.materialId).toBe(id(12))
+    expect(lotByNumber(alike, 'l-1', id(11))?.materialId).toBe(id(11))
+    expect(lotRefusal(lotByNumber(alike, 'l-1', id(77)), id(77), today)).toBe('wrong-material')
+  })
+
   it.each([['2026-12-01', true], ['2026-12-02', false], [null, false]])('runs out soon on %s: %s', (expiresOn, soon) => {
     const lot = snapshot().lots[0]
     expect(lot && runsOutSoon({ ...lot, expiresOn }, today)).toBe(soon)
