@@ -62,21 +62,26 @@ export async function drawFromLots(
   })))
   for (const { lotId, at } of drawn) await openLot(lotId, at, now, trx)
   const stock = await stockOf(drawn.map(({ lotId }) => lotId), trx)
-  const short = stock.filter(({ stockG }) => stockG.startsWith('-')).map(({ id }) => id)
-  if (short.length > 0) {
-    await trx('lots').whereIn('id', short).where({ count_needed: false })
-      .update({ count_needed: true, updated_at: now, version: trx.raw('version + 1') })
-  }
+  await markShort(stock, now, trx)
   return stock
 }
 
-async function openLot(id: string, at: Date, now: Date, trx: Knex.Transaction): Promise<void> {
+/** Marks lots from which more was taken than was booked in for counting. */
+export async function markShort(stock: readonly { id: string; stockG: string }[], now: Date, trx: Knex.Transaction): Promise<void> {
+  const short = stock.filter(({ stockG }) => stockG.startsWith('-')).map(({ id }) => id)
+  if (short.length === 0) return
+  await trx('lots').whereIn('id', short).where({ count_needed: false })
+    .update({ count_needed: true, updated_at: now, version: trx.raw('version + 1') })
+}
+
+/** A tin that was sealed is in use from its first pour on. */
+export async function openLot(id: string, at: Date, now: Date, trx: Knex.Transaction): Promise<void> {
   await trx('lots').where({ id, state: 'sealed' })
     .update({ state: 'in-use', opened_at: trx.raw('COALESCE(opened_at, ?)', [at]), updated_at: now, version: trx.raw('version + 1') })
 }
 
 /** Present stock by the movements, in grams; a lot without any is left out; below nothing when more was poured than was booked in. */
-async function stockOf(lotIds: readonly string[], db: Db): Promise<{ id: string; stockG: string }[]> {
+export async function stockOf(lotIds: readonly string[], db: Db): Promise<{ id: string; stockG: string }[]> {
   const rows = await db('lot_movements').whereIn('lot_id', [...lotIds]).groupBy('lot_id').orderBy('lot_id')
     .select<{ lot_id: string; stock: string }[]>('lot_id', db.raw('SUM(grams) AS stock'))
   return rows.map(({ lot_id: id, stock }) => ({ id, stockG: decimalOf(stock) }))

@@ -81,7 +81,27 @@ function requireAmounts(record: BatchOnRecord, before: EffectiveBatch, after: Ef
   if (leftoverG !== null && total.lt(leftoverG)) throw broken('leftover-over-poured', field === 'leftoverG' ? 'More cannot be left than was mixed.' : 'More was left than that.')
 }
 
-/** The lot that a weighing is said to come from, with what forbids it on the day of the pour. */
+/** What a foreman has to sign, and what is said to whom it needs. */
+export interface Signing {
+  action: string
+  subject: string
+  message: string
+}
+
+/**
+ * What went into the cup is a fact: a lot that nobody may allow before the pour, a peroxide past its date, is signed for
+ * too once it was poured.
+ */
+export function signingOf(fault: LotFault, { lotNumber, materialRole }: StockLot): Pick<Signing, 'action' | 'message'> {
+  if (fault === 'blocked-lot') return { action: 'use-blocked-lot', message: `Lot ${lotNumber} is blocked. A foreman has to sign that it was poured.` }
+  const past = `Lot ${lotNumber} was past its use-by date on the day of the pour.`
+  const message = materialRole === 'peroxide'
+    ? `${past} Nobody may allow an old peroxide; a foreman has to sign that it was poured all the same.`
+    : `${past} A foreman has to sign that it was poured.`
+  return { action: 'use-expired-lot', message }
+}
+
+/** The lot that a weighing is said to come from, with what forbids it: that it is blocked now, or was past its date on the day of the pour. */
 export async function requireLot(m: Mutation, field: string, record: BatchOnRecord, lotId: string): Promise<{ lot: StockLot; faults: LotFault[] }> {
   const place = pourFieldOf(field)
   const lot = (await findStockLots([lotId], m.trx)).get(lotId)

@@ -1,6 +1,7 @@
 import { D, print, sum } from '#shared/engine/decimal'
 import { pourFieldOf, type AmendmentBody } from '#shared/schemas/amendments'
 import type { Batch } from '#shared/schemas/batches'
+import { disposalFor } from '#shared/utils/disposal'
 import { insertAmendment } from '../repositories/batch-amendments'
 import { lockCurrent, rewriteCurrent, type CurrentBatch } from '../repositories/batch-current'
 import { findBatch } from '../repositories/batch-page'
@@ -17,9 +18,10 @@ import { forbidden, notFound, Refusal, ruleBroken } from '../utils/errors'
 import { newId } from '../utils/ids'
 import { toInstant } from '../utils/rows'
 import { mutate, type Mutation } from '../utils/transactions'
-import { requireAmender, requireLot, requireTrue } from './amendment-rules'
+import { requireAmender, requireLot, requireTrue, signingOf, type Signing } from './amendment-rules'
 import { checkedValue, isFreeText, plainValue } from './amendment-values'
 import { effectiveOf, type EffectiveBatch } from './batch-effective'
+import { baseChemistryOf } from './batch-sums'
 import { resettleShots } from './booth-air'
 import { moveWindows, rewriteCoats } from './coat-amendments'
 import { potAnswer } from './pot-lock'
@@ -89,15 +91,15 @@ async function requireChange(m: Mutation, { field, from, to: wanted }: Amendment
 }
 
 /** What a foreman has to sign: a pot that lives longer, a lot that must not be used. */
-async function neededApprovals(m: Mutation, { field, record, before, after }: Change): Promise<{ action: string; subject: string }[]> {
+async function neededApprovals(m: Mutation, { field, record, before, after }: Change): Promise<Signing[]> {
   const lotId = pourFieldOf(field)?.what === 'lotId' ? after.values.get(field) : null
   if (lotId) {
-    const { faults } = await requireLot(m, field, record, lotId)
-    return faults.map((fault) => ({ action: fault === 'blocked-lot' ? 'use-blocked-lot' : 'use-expired-lot', subject: `lot:${lotId}` }))
+    const { faults, lot } = await requireLot(m, field, record, lotId)
+    return faults.map((fault) => ({ ...signingOf(fault, lot), subject: `lot:${lotId}` }))
   }
   const later = (now: number | null, then: number | null) => then !== null && (now === null || now > then)
   const longer = later(after.current.endsAt, before.current.endsAt) || later(after.current.reactiveAt, before.current.reactiveAt)
-  return longer ? [{ action: 'late-reactive-at', subject: `batch:${record.id}` }] : []
+  return longer ? [{ action: 'late-reactive-at', subject: `batch:${record.id}`, message: 'That would lengthen the pot\'s life. A foreman has to approve it.' }] : []
 }
 
 /** @returns the approval that was used, or null where none was needed. @throws Refusal 422 `approval-needed` */
@@ -105,12 +107,9 @@ async function requireApproval(m: Mutation, change: Change, offered: readonly st
   const needed = await neededApprovals(m, change)
   if (needed.length === 0) return null
   const open = await lockOpenApprovals(offered, m.now, m.trx)
-  const used = needed.map(({ action, subject }) => {
+  const used = needed.map(({ action, subject, message }) => {
     const approval = open.find((one) => one.action === action && one.subject === subject)
     if (approval) return approval.id
-    const message = action === 'late-reactive-at'
-      ? 'That would lengthen the pot\'s life. A foreman has to approve it.'
-      : 'This lot was blocked or past its date on that day. A foreman has to approve it.'
     throw new Refusal(422, 'approval-needed', message, [{ path: 'to', message }], { approval: { action, subject } })
   })
   await useApprovals(used, m.now, m.trx)
@@ -125,7 +124,7 @@ async function write(m: Mutation, { field, record, amended, before, after, pot }
   await rewriteCurrent(after.current, m.now, m.trx)
   if (pourFieldOf(field)) {
     await rewriteUses({ batchId: record.id, mixedAt: record.mixedAt, usedIds: usedIdsOf(record, after) }, m.trx)
-    const stock = await compensateLots(moves, record.id, userId, toInstant(m.now), m.trx)
+    const stock = await compensateLots(moves, record.id, userId, toInstant(m.now), (lotId) => toInstant(firstPourOf(after, lotId)), m.trx)
     m.publish({ type: 'stock', subject: `batch:${record.id}`, boothId: null, payload: { lots: stock } })
   }
   await compensateWaste(m, record, before, after, userId)
@@ -133,6 +132,10 @@ async function write(m: Mutation, { field, record, amended, before, after, pot }
   await moveSprays(m, amended, before, after)
   return moves
 }
+
+/** When a batch first took from a lot, epoch milliseconds. */
+const firstPourOf = ({ facts, current }: EffectiveBatch, lotId: string): number =>
+  Math.min(...facts.pours.filter((pour) => pour.lotId === lotId).map(({ at }) => at), current.mixedAt)
 
 /** What lies in the index of the log for a batch. */
 export const usedIdsOf = (record: BatchOnRecord, { facts }: EffectiveBatch): string[] =>
@@ -151,10 +154,11 @@ async function compensateWaste(m: Mutation, record: BatchOnRecord, before: Effec
   const wasted = ({ current }: EffectiveBatch) => new D((stopped ? current.pouredTotalG : current.leftoverG) ?? '0')
   const grams = wasted(after).minus(wasted(before))
   if (grams.eq(0)) return
-  const { components } = record.snapshot.mix
+  const chemistry = baseChemistryOf(record.snapshot.mix.components)
+  const named = stopped ? record.snapshot.stopped?.disposal : after.current.disposal
   await insertWaste({
-    batchId: record.id, kind: stopped ? 'stopped-mix' : 'leftover', chemistry: (components.find(({ role }) => role === 'base') ?? components[0])?.chemistry ?? null,
-    grams: print(grams), disposal: (stopped ? record.snapshot.stopped?.disposal : after.current.disposal) ?? 'reactive waste', reason: null, userId, at: toInstant(m.now),
+    batchId: record.id, kind: stopped ? 'stopped-mix' : 'leftover', chemistry,
+    grams: print(grams), disposal: named ?? disposalFor(chemistry ?? 'unknown', after.current.reactiveAt !== null).key, reason: null, userId, at: toInstant(m.now),
   }, m.trx)
 }
 

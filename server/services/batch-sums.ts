@@ -217,3 +217,7 @@ function sheetTemperatureC({ potLifeReferenceC, potLifeTable }: MixRevision): st
 
 /** Whole milliseconds of decimal minutes, rounded down: a pot never lives longer for the rounding. */
 export const minutesMs = (minutes: string): number => new D(minutes).times(minuteMs).floor().toNumber()
+
+/** Chemistry of the base of a mix, or of its first component where none is called base; null of no mix. */
+export const baseChemistryOf = (components: readonly { role: string; chemistry: string }[]): string | null =>
+  (components.find(({ role }) => role === 'base') ?? components[0])?.chemistry ?? null

@@ -1,4 +1,5 @@
 import type { Batch, BatchCreateInput } from '#shared/schemas/batches'
+import { disposalFor } from '#shared/utils/disposal'
 import { audienceOf } from '../live/audience'
 import { insertCurrent } from '../repositories/batch-current'
 import { findBatch } from '../repositories/batch-page'
@@ -7,6 +8,7 @@ import { insertBatch, insertWaste, type PourRecord } from '../repositories/batch
 import { startJobStep } from '../repositories/draft-references'
 import { endDraft, lockDraft, type StoredDraft } from '../repositories/drafts'
 import { drawFromLots, lockLots } from '../repositories/lot-stock'
+import type { MixRevision } from '../repositories/mix-revisions'
 import { readShop } from '../repositories/settings'
 import type { Context } from '../utils/context'
 import { notFound, Refusal, ruleBroken } from '../utils/errors'
@@ -14,7 +16,7 @@ import { toInstant } from '../utils/rows'
 import { mutateUnlessDone } from '../utils/settled'
 import type { Mutation } from '../utils/transactions'
 import { clashAt } from './booth-guard'
-import { judgeBatch, potLives, potTimesOf, reactiveByPours, wasCorrected } from './batch-sums'
+import { baseChemistryOf, judgeBatch, potLives, potTimesOf, reactiveByPours, wasCorrected } from './batch-sums'
 import { notAfter } from './device-clock'
 import { mayHold, takenOver } from './draft-holder'
 import { lotIdsOf, readReferences } from './draft-references'
@@ -59,7 +61,7 @@ async function readSealing(m: Mutation, draft: StoredDraft): Promise<Sealing> {
   const reactiveAt = draft.reactiveAt ?? (potLives(revision) ? reactiveByPours(revision, draft.body, m.now) : null)
   const { zone } = await readShop(m.trx)
   return {
-    draft,
+    draft: { ...draft, body: { ...draft.body, stopped: disposedOf(draft, revision, reactiveAt) } },
     references,
     sums: judgeBatch(revision, draft.body, scale),
     times: potTimesOf(revision, draft.body, reactiveAt),
@@ -68,6 +70,11 @@ async function readSealing(m: Mutation, draft: StoredDraft): Promise<Sealing> {
     now: m.now,
     zone,
   }
+}
+
+/** How a stopped mix was stopped, with its way out of the shop: the one that was named, else the one of its chemistry. */
+function disposedOf({ body }: StoredDraft, { components }: MixRevision, reactiveAt: number | null): StoredDraft['body']['stopped'] {
+  return body.stopped && { ...body.stopped, disposal: body.stopped.disposal || disposalFor(baseChemistryOf(components) ?? 'unknown', reactiveAt !== null).key }
 }
 
 async function writeBatch(m: Mutation, sealing: Sealing, pours: readonly PourRecord[]): Promise<void> {
@@ -134,7 +141,7 @@ async function endStopped(m: Mutation, { draft, references, sums }: Sealing): Pr
   await insertWaste({
     batchId: draft.id,
     kind: 'stopped-mix',
-    chemistry: (components.find(({ role }) => role === 'base') ?? components[0])?.chemistry ?? null,
+    chemistry: baseChemistryOf(components),
     grams: sums.pouredTotalG,
     disposal: stopped.disposal,
     reason: stopped.reason,

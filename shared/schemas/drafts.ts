@@ -128,7 +128,8 @@ export const DraftBody = z.strictObject({
   stopped: z._default(z.nullable(z.strictObject({
     at: InstantText,
     reason: words(400),
-    disposal: z._default(z.string().check(z.trim(), z.minLength(1), z.maxLength(60)), 'reactive waste'),
+    /** Where it is not named, the chemistry of what is in the cup decides when it is sealed. */
+    disposal: z._default(z.string().check(z.trim(), z.minLength(1), z.maxLength(60)), ''),
   })), null),
 }).check(
   z.refine(({ potNumber, potCount }) => potNumber <= potCount, { path: ['potNumber'], error: 'There are not so many pots.' }),

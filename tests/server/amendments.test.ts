@@ -220,6 +220,42 @@ describe('what happened to a pot', () => {
   })
 })
 
+describe('a reading of the cup', () => {
+  it('is shown as far as it is known', async () => {
+    const id = await pot()
+    expect((await amend(id, { field: 'materialC', from: null, to: '23.5' })).viscosity).toEqual({ cup: null, seconds: null, materialC: '23.5' })
+    expect((await amend(id, { field: 'viscosityCup', from: null, to: 'din-4' })).viscosity).toEqual({ cup: 'din-4', seconds: null, materialC: '23.5' })
+  })
+})
+
+describe('a lot that was poured after all', () => {
+  const field = 'pours.1.0.lotId'
+  const lot = async (id: string) => await work.admin('lots').where({ id }).first<{ state: string; opened_at: Date | null; count_needed: number }>('state', 'opened_at', 'count_needed')
+
+  it('is opened as by its pour, and counted where more was taken than it had', async () => {
+    const [full, short] = [await makeLot(work.admin, work.shop.materials.hardener, '2000'), await makeLot(work.admin, work.shop.materials.hardener, '700')]
+    const id = await pot()
+    const { components } = await amend(id, { field, from: work.shop.lots.hardener, to: full })
+    expect(await lot(full)).toEqual({ state: 'in-use', opened_at: new Date(components[1]?.pours[0]?.at ?? ''), count_needed: 0 })
+    await amend(id, { field, from: full, to: short })
+    expect(await lot(short)).toMatchObject({ state: 'in-use', count_needed: 1 })
+  })
+
+  it('is signed for with the words of what is wrong with it', async () => {
+    const id = await pot()
+    const blocked = await makeLot(work.admin, work.shop.materials.hardener, '2000', { state: 'blocked', lot_number: `K-${work.shop.mark}` })
+    const old = await makeLot(work.admin, work.shop.materials.hardener, '2000', { expires_on: '2026-11-10', lot_number: `O-${work.shop.mark}` })
+    await expect(amend(id, { field, from: work.shop.lots.hardener, to: blocked })).rejects.toMatchObject({ message: `Lot K-${work.shop.mark} is blocked. A foreman has to sign that it was poured.` })
+    await expect(amend(id, { field, from: work.shop.lots.hardener, to: old })).rejects.toMatchObject({
+      message: `Lot O-${work.shop.mark} was past its use-by date on the day of the pour. A foreman has to sign that it was poured.`,
+    })
+    await work.admin('materials').where({ id: work.shop.materials.hardener }).update({ role: 'peroxide' })
+    const asked = amend(id, { field, from: work.shop.lots.hardener, to: old })
+    await expect(asked).rejects.toMatchObject({ code: 'approval-needed', message: expect.stringContaining('Nobody may allow an old peroxide; a foreman has to sign') })
+    await work.admin('materials').where({ id: work.shop.materials.hardener }).update({ role: 'hardener' })
+  })
+})
+
 describe('who may amend', () => {
   const body = { field: 'purpose', from: 'sample boards', to: 'doors' }
 

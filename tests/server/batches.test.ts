@@ -244,12 +244,20 @@ describe('a batch that cannot be', () => {
 describe('a mix that was stopped', () => {
   const stopped = { at: minutesIn(-2), reason: 'Wrong hardener on the scale' }
 
+  it('leaves the shop by the chemistry of what is in the cup where nobody says how', async () => {
+    const batch = await sealed({ components: poured(work.shop, ['1450', null, null]), stopped })
+    expect(batch.stopped).toMatchObject({ disposal: 'solvent-waste' })
+    expect(await rows('waste_entries', { batch_id: batch.id })).toMatchObject([{ disposal: 'solvent-waste' }])
+    const named = await sealed({ components: poured(work.shop, ['1450', '100', null]), stopped: { ...stopped, disposal: 'Taken back by the maker' } })
+    expect(await rows('waste_entries', { batch_id: named.id })).toMatchObject([{ disposal: 'Taken back by the maker' }])
+  })
+
   it('is recorded as stopped, with what was in the cup as waste', async () => {
     const shop = await makeShop(work.admin)
     const id = await draft({ components: poured(shop, ['1450', '100', null]), stopped }, shop)
     const batch = await sealBatch(work.asSystem(), { draftId: id })
     expect(batch).toMatchObject({ outcome: 'stopped', state: 'stopped', review: [], closedAt: minutesIn(-2), outOfTolerance: false, stopped })
-    expect(await rows('waste_entries', { batch_id: id })).toMatchObject([{ kind: 'stopped-mix', grams: '1550.0000', weighed: 1, reason: stopped.reason, chemistry: 'polyurethane' }])
+    expect(await rows('waste_entries', { batch_id: id })).toMatchObject([{ kind: 'stopped-mix', grams: '1550.0000', weighed: 1, reason: stopped.reason, chemistry: 'polyurethane', disposal: 'open-metal-can' }])
     expect(await stock(shop.lots.base, work.admin)).toBe('3550.0000')
     expect(await rows('batch_drafts', { id })).toMatchObject([{ state: 'stopped' }])
     expect(await rows('job_steps', { id: shop.jobStepId })).toMatchObject([{ state: 'to-come' }])
