@@ -2,7 +2,7 @@ import type { Batch, BatchEventBody } from '#shared/schemas/batches'
 import { gunSprays, type GunSpray } from '#shared/utils/pot-sprays'
 import type { CurrentBatch, CurrentChange } from '../repositories/batch-current'
 import { updateCurrent } from '../repositories/batch-current'
-import { readRecord } from '../repositories/batch-record'
+import { readRecord, type BatchOnRecord } from '../repositories/batch-record'
 import { insertBatchEvent } from '../repositories/batches'
 import { lockBooths } from '../repositories/booth-locks'
 import { isThere } from '../repositories/draft-references'
@@ -15,7 +15,8 @@ import { toInstant } from '../utils/rows'
 import { mutate, type Mutation } from '../utils/transactions'
 import { effectiveOf, type EffectiveBatch } from './batch-effective'
 import { noteShot } from './booth-air'
-import { earliestShot, writeCoat } from './coats'
+import { moveWindows, rewriteCoats } from './coat-amendments'
+import { earliestShot, writeCoat, type CoatMoments } from './coats'
 import { notAfter } from './device-clock'
 import { actorOf, broken, lockPot, potAnswer, taken } from './pot-lock'
 import { publishPot } from './pot-view'
@@ -55,25 +56,29 @@ export function recordBatchEvent(ctx: Context, id: string, body: BatchEventBody)
 async function settleSprays(
   ctx: Context, m: Mutation, pot: CurrentBatch, events: readonly SprayEvent[], kind: BatchEventBody['kind'],
 ): Promise<{ applicationId: string | null; used: CurrentChange['used'] }> {
-  const guns = gunSprays(events)
-  // What was put right by an amendment stands over what was tapped.
-  const { firstSprayAt: firstAt, lastSprayAt: lastAt, used } = await effectiveNow(m, pot.id)
-  await updateCurrent(pot.id, { ...(firstAt === null ? {} : { firstSprayAt: firstAt }), lastSprayAt: lastAt, used }, m.now, m.trx)
-  if (kind === 'gun-flushed') return { applicationId: null, used }
-  if (kind === 'first-spray' || lastAt === null) {
-    await publishUnended(m, pot.id, pot.boothId)
-    return { applicationId: null, used }
-  }
-  const gunId = lastGunOf(guns)
-  // The careful side where nobody noted the first spray: the window closes by it.
-  const moments = { gunId, firstAt: firstAt ?? Math.min(earliestShot(pot), lastAt), lastAt, firstAssumed: firstAt === null, lastAssumed: false }
-  return { applicationId: await writeCoat(ctx, m, pot, moments), used }
+  // What was put right by an amendment stands over what was tapped before it.
+  const { record, effective } = await effectiveNow(m, pot.id)
+  const { firstSprayAt, lastSprayAt, used } = effective.current
+  await updateCurrent(pot.id, { ...(firstSprayAt === null ? {} : { firstSprayAt }), lastSprayAt, used }, m.now, m.trx)
+  const isCoat = kind === 'last-spray' && lastSprayAt !== null
+  const applicationId = isCoat ? await writeCoat(ctx, m, pot, momentsOf(pot, gunSprays(events), { firstSprayAt, lastAt: lastSprayAt })) : null
+  if (kind !== 'gun-flushed' && !isCoat) await publishUnended(m, pot.id, pot.boothId)
+  // Coats that were put right are known anew where another gun goes on with the pot.
+  if (record.amendments.length > 0) await moveWindows(m, await rewriteCoats(m, record, effective))
+  return { applicationId, used }
 }
 
-async function effectiveNow(m: Mutation, id: string): Promise<EffectiveBatch['current']> {
+/** The careful side where nobody noted the first spray: the window closes by it. */
+function momentsOf(pot: CurrentBatch, guns: readonly GunSpray[], { firstSprayAt, lastAt }: { firstSprayAt: number | null; lastAt: number }): CoatMoments {
+  return {
+    gunId: lastGunOf(guns), firstAt: firstSprayAt ?? Math.min(earliestShot(pot), lastAt), lastAt, firstAssumed: firstSprayAt === null, lastAssumed: false,
+  }
+}
+
+async function effectiveNow(m: Mutation, id: string): Promise<{ record: BatchOnRecord; effective: EffectiveBatch }> {
   const record = await readRecord(id, m.trx)
   if (!record) throw new Error('the record of a batch was lost')
-  return effectiveOf(record, m.now).current
+  return { record, effective: effectiveOf(record, m.now) }
 }
 
 /** The gun that sprayed last. */

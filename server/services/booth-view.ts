@@ -1,6 +1,6 @@
 import type { Knex } from 'knex'
 import type { LiveBooth } from '#shared/schemas/live'
-import { listBooths, listGuns } from '../repositories/shop'
+import { findBooth, listBooths, listGuns } from '../repositories/shop'
 import type { Mutation } from '../utils/transactions'
 import { clearances } from './clearance'
 import { latestClimate } from './climate'
@@ -11,12 +11,12 @@ const all = { inactive: false, after: null, limit: most }
 
 /** Booths in use as the walls show them at `now` (epoch milliseconds): one of them, or all. */
 export async function liveBooths(boothId: string | null, now: number, db: Knex | Knex.Transaction): Promise<LiveBooth[]> {
-  const booths = await listBooths(all, db)
+  const booths = boothId === null ? await listBooths(all, db) : [await findBooth(boothId, db)].filter((booth) => booth?.active === true)
   const climate = await latestClimate(db)
   const clearance = await clearances(boothId, now, db)
   const guns = await listGuns(all, db)
   return booths
-    .filter(({ id }) => boothId === null || id === boothId)
+    .filter((booth) => booth !== null)
     .map(({ id, name, clearanceMin, extraction }) => ({
       id, name, clearanceMin, extraction,
       climate: climate.get(id) ?? null,

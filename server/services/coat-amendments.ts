@@ -76,13 +76,25 @@ const isSame = (a: EffectiveCoat, b: EffectiveCoat): boolean =>
   a.firstAt === b.firstAt && a.lastAt === b.lastAt && a.boothId === b.boothId && a.window?.opensAt === b.window?.opensAt
   && a.window?.closingAt === b.window?.closingAt && a.window?.closesAt === b.window?.closesAt
 
+/** An instant that had passed before and still has is over: it does not ring again, unless its booth never heard it. */
+function instantsToSet(before: EffectiveCoat, after: EffectiveCoat, window: NonNullable<EffectiveCoat['window']>, now: number) {
+  const toSet = (then: number | null | undefined, at: number | null): number | null => {
+    const isOver = at !== null && at <= now && then !== null && then !== undefined && then <= now
+    return isOver && before.boothId === after.boothId ? null : at
+  }
+  return {
+    opensAt: toSet(before.window?.opensAt, window.opensAt), closingAt: toSet(before.window?.closingAt, window.closingAt),
+    closesAt: toSet(before.window?.closesAt, window.closesAt),
+  }
+}
+
 /** Moves the timers of windows that still count, and tells the screens of both booths. */
 export async function moveWindows(m: Mutation, moved: readonly MovedCoat[]): Promise<void> {
   for (const { id, label, before, after } of moved) {
     // The booth that it was thought to be of shows it no more; its own shows it after that.
     if (before.boothId !== after.boothId) m.publish({ type: 'window', subject: `application:${id}`, boothId: before.boothId, payload: null })
     const [counts] = after.window === null ? [] : await findWindows({ applicationId: id }, m.trx)
-    if (after.window !== null && counts) await setWindowTimers(m, { applicationId: id, boothId: after.boothId, label, ...after.window })
+    if (after.window !== null && counts) await setWindowTimers(m, { applicationId: id, boothId: after.boothId, label, ...instantsToSet(before, after, after.window, m.now) })
     else await cancelTimers(m, 'application', id)
   }
 }

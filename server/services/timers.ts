@@ -43,12 +43,12 @@ export async function setPotTimers(m: Mutation, pot: PotTimers): Promise<void> {
   await setTimer({ ...subject, kind: 'pot-up', dueAt: pot.endsAt }, m.now, m.trx)
 }
 
-/** Instants of the window that an application started, epoch milliseconds. Null where there is none. */
+/** Instants of the window that an application started, epoch milliseconds. Null where there is none, or nothing to set. */
 export interface WindowTimers {
   applicationId: string
   boothId: string | null
   label: string
-  opensAt: number
+  opensAt: number | null
   closingAt: number | null
   closesAt: number | null
 }
@@ -56,7 +56,7 @@ export interface WindowTimers {
 /** Sets or moves the timers of a window and tells the screens. The application's row must be there already. */
 export async function setWindowTimers(m: Mutation, window: WindowTimers): Promise<void> {
   const subject = { subjectType: 'application', subjectId: window.applicationId, boothId: window.boothId, label: window.label } as const
-  await setTimer({ ...subject, kind: 'window-opens', dueAt: window.opensAt }, m.now, m.trx)
+  if (window.opensAt !== null) await setTimer({ ...subject, kind: 'window-opens', dueAt: window.opensAt }, m.now, m.trx)
   if (window.closingAt !== null) await setTimer({ ...subject, kind: 'window-closing', dueAt: window.closingAt }, m.now, m.trx)
   if (window.closesAt !== null) await setTimer({ ...subject, kind: 'window-closes', dueAt: window.closesAt }, m.now, m.trx)
   await publishWindow(m, window.applicationId, window.boothId)

@@ -112,6 +112,16 @@ describe('the window of a coat', () => {
     expect(await clearance()).toMatchObject({ lastShotAt: minutesIn(40), clearAt: minutesIn(70) })
   })
 
+  it('that was missed long ago does not ring again', async () => {
+    const id = await sprayed(5, 20)
+    const { applications: [coat] } = await getBatch(work.as('sprayer'), id)
+    await work.admin('timers').where({ subject_id: coat?.id }).update({ state: 'done' })
+    later(2 * 24 * 60)
+    await amend(id, 'firstSprayAt', minutesIn(5), minutesIn(0))
+    expect((await timersOf(coat?.id ?? '')).map(({ state }) => state)).toEqual(['done', 'done', 'done'])
+    expect((await getBatch(work.as('sprayer'), id)).applications).toMatchObject([{ closesAt: minutesIn(240) }])
+  })
+
   it('of a coat that is still being sprayed follows the first spray', async () => {
     const id = await pot()
     later(10)
@@ -134,6 +144,7 @@ describe('the window of a coat', () => {
     const { applications, lastSprayAt } = await recordBatchEvent(work.as('sprayer'), id, { kind: 'last-spray', gunId, at: minutesIn(40) })
     expect(lastSprayAt).toBe(minutesIn(40))
     expect(applications.at(-1)).toMatchObject({ lastAt: minutesIn(40), opensAt: minutesIn(100) })
+    expect((await rebuildBatches(work.asSystem())).changed).toEqual([])
   })
 })
 
