@@ -46,6 +46,14 @@ export function grams(value: string, decimals?: number): string {
   return `${sign}${groups.join(THIN)}${fraction && `.${fraction}`}`
 }
 
+/**
+ * A sum for the eye: of numbers that do not end the first four digits that count stand, and three points say that more
+ * follow: `496.551724137931 g` becomes `496.5517… g`. The reckoning itself keeps them all.
+ */
+export function sumText(text: string): string {
+  return text.replace(/\b(0\.0*[1-9]\d{3}|[1-9]\d*\.\d{4})\d+/g, '$1\u2026')
+}
+
 /** Decimals of a scale's division: '0.1' → 1, '5' → 0. */
 export function decimalsOf(division: string): number {
   return decimalsNeeded(unitsOf(division))

@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import { area, calendarDay, clock, clockNear, clockSeconds, day, dayClock, decimalsOf, duration, grams, money, numberParts, over, percent, ratio, weekday } from '~/utils/format'
+import { area, calendarDay, clock, clockNear, clockSeconds, day, dayClock, decimalsOf, duration, grams, money, numberParts, over, percent, ratio, weekday, sumText } from '~/utils/format'
 
 const SECOND = 1000
 const MIN = 60 * SECOND
@@ -150,5 +150,18 @@ describe('clock time near now', () => {
     ['the same weekday of another week', Date.UTC(2026, 10, 24, 6, 54), 'Tue 07:54'],
   ])('%s', (_, at, words) => {
     expect(clockNear(at, 'Europe/Copenhagen', now)).toBe(words)
+  })
+})
+
+describe('a sum for the eye', () => {
+  it.each([
+    ['496.551724137931 g × (1 + 0 %) + 24 g', '496.5517… g × (1 + 0 %) + 24 g'],
+    ['125 ÷ (100 ÷ 1.25 + 25 ÷ 1.1)', '125 ÷ (100 ÷ 1.25 + 25 ÷ 1.1)'],
+    ['0.000123456789', '0.0001234…'],
+    ['0.4965', '0.4965'],
+    ['1.216814159292', '1.2168…'],
+    ['100.0000', '100.0000'],
+  ])('shows %s as %s', (text, shown) => {
+    expect(sumText(text)).toBe(shown)
   })
 })
