@@ -4,6 +4,7 @@ import type { OutboxEntry } from '#shared/utils/bench-outbox'
 import { newUuid } from '#shared/utils/uuid'
 import type { BenchNumbers } from '#shared/utils/bench-numbers'
 import type { BenchPot } from '#shared/utils/bench-reckon'
+import type { BenchAside } from '#shared/utils/bench-refusal'
 import type { BenchRun } from '#shared/utils/bench-run'
 import type { BenchSetup } from '#shared/utils/bench-setup'
 
@@ -39,19 +40,27 @@ interface BenchDb extends DBSchema {
   /** What belongs to the tablet, whoever works at it. */
   tablet: { key: 'id', value: string }
   numbers: { key: 'block', value: BenchNumbers }
+  aside: { key: string, value: BenchAside }
 }
 
 let opened: Promise<IDBPDatabase<BenchDb>> | null = null
 
 function database(): Promise<IDBPDatabase<BenchDb>> {
-  opened ??= openDB<BenchDb>('potbell-bench', 2, {
+  opened ??= openDB<BenchDb>('potbell-bench', 3, {
     upgrade(db, from) {
+      db.createObjectStore('aside', { keyPath: 'id' })
+      if (from >= 2) return
       db.createObjectStore('tablet')
       db.createObjectStore('numbers')
       if (from >= 1) return
       db.createObjectStore('bench')
       db.createObjectStore('snapshot')
       db.createObjectStore('outbox', { keyPath: 'id' }).createIndex('createdAt', 'createdAt')
+    },
+    // A newer page in another tab waits for this one to let go; the next call here opens it anew.
+    blocking(_mine, _theirs, event) {
+      opened = null
+      ;(event.target as IDBDatabase).close()
     },
   }).catch((error: unknown) => {
     // A disk that could not be opened once is tried again at the next call.
@@ -91,6 +100,13 @@ export function useBenchDisk() {
     readNumbers: async (): Promise<BenchNumbers | undefined> => (await database()).get('numbers', 'block'),
     writeNumbers: async (numbers: BenchNumbers): Promise<void> => {
       await (await database()).put('numbers', plain(numbers), 'block')
+    },
+    readAside: async (): Promise<BenchAside[]> => (await database()).getAll('aside'),
+    writeAside: async (aside: BenchAside): Promise<void> => {
+      await (await database()).put('aside', plain(aside))
+    },
+    dropAside: async (id: string): Promise<void> => {
+      await (await database()).delete('aside', id)
     },
     readOutbox: async (): Promise<OutboxEntry[]> => (await database()).getAllFromIndex('outbox', 'createdAt'),
     /** Puts what changed and removes what went, in one transaction. */

@@ -6,12 +6,15 @@ import type { BenchSnapshot } from '#shared/schemas/bench'
 import type { Draft, DraftHolder, DraftList } from '#shared/schemas/drafts'
 import { draftOf } from '#shared/utils/bench-draft'
 import { reckon, withFittingCup } from '#shared/utils/bench-reckon'
+import { isNews, refusalOf, staysHere, withoutNumber, type BenchAside, type BenchRefusal } from '#shared/utils/bench-refusal'
 import type { BenchRun } from '#shared/utils/bench-run'
 import { blankSetup, setupAfterPot, type BenchHome, type BenchSetup } from '#shared/utils/bench-setup'
+import { toldOfLot, withWord, type TinWord } from '#shared/utils/bench-tin'
 import { isTakenOver, takenOverWords } from '#shared/utils/bench-takeover'
 import { benchTools } from '#shared/utils/bench-tools'
 import { toIso } from '#shared/utils/instant'
 import { shopDate } from '#shared/utils/zone'
+import { useBenchAside } from '~/composables/useBenchAside'
 import { useBenchDisk, type BenchPlanKept } from '~/composables/useBenchDisk'
 import { useBenchNumbers } from '~/composables/useBenchNumbers'
 import { useOutboxStore } from '~/stores/outbox'
@@ -23,13 +26,6 @@ import { callApi, toFailure } from '~/utils/api'
 /** Drafts go out this long after the last change; at steps and at the start of a pot life at once. */
 const SAVE_AFTER_MS = 1_500
 
-/** What the server says when this tablet cannot go on with a batch by itself. */
-export interface BenchRefusal {
-  code: string
-  message: string
-}
-const LEAVING: ReadonlySet<string> = new Set(['taken-over', 'booth-clash', 'forbidden', 'code-not-yours'])
-
 /** The mix being made at this bench. It holds what is, and writes it down; what follows from it is reckoned elsewhere. */
 export const useBenchStore = defineStore('bench', () => {
   const session = useSessionStore()
@@ -37,6 +33,7 @@ export const useBenchStore = defineStore('bench', () => {
   const timers = useTimersStore()
   const disk = useBenchDisk()
   const numbers = useBenchNumbers(disk)
+  const aside = useBenchAside(disk)
 
   const status = ref<'loading' | 'ready' | 'error'>('loading')
   const failure = ref<string | null>(null)
@@ -84,6 +81,7 @@ export const useBenchStore = defineStore('bench', () => {
     if (userId === undefined) return
     tabletId.value ??= await disk.readTabletId()
     await numbers.load()
+    await aside.load()
     await outbox.load()
     if (run.value === null) await restore(userId)
     await refresh()
@@ -207,7 +205,7 @@ export const useBenchStore = defineStore('bench', () => {
       return null
     })
     const listed = drafts?.items.find(({ id }) => id === run.value?.id)
-    if (listed !== undefined && isTakenOver(listed, holder.value)) refusal.value = { code: 'taken-over', message: takenOverWords(listed) }
+    if (listed !== undefined && isTakenOver(listed, holder.value)) refusal.value = { code: 'taken-over', message: takenOverWords(listed), lotId: null }
   }
 
   /** Into the record: the last draft first, then the seal, in this order also without a network. */
@@ -234,17 +232,55 @@ export const useBenchStore = defineStore('bench', () => {
     if (setup.value && snapshot.value) changeSetup(withFittingCup(setupAfterPot(setup.value, snapshot.value, home.value), snapshot.value))
   }
 
-  /** Leaves a batch that the server does not take from this tablet; what waits of it is not sent any more. */
+  /** What stood in the way is done: the batch at hand is sent again. */
+  async function sendAgain(): Promise<void> {
+    refusal.value = null
+    if (run.value !== null) await outbox.retry(run.value.id)
+  }
+
+  /** The number that this bench had chosen is somebody else's: the server gives another. */
+  async function renumber(): Promise<void> {
+    refusal.value = null
+    if (run.value !== null) await change(withoutNumber(run.value), 'now')
+  }
+
+  /** Somebody read that a lot in the cup may no longer be poured, and goes on, with a foreman's word or without. */
+  async function goOnWithLot(lotId: string, word: TinWord = { approvals: [], faults: [] }): Promise<void> {
+    refusal.value = null
+    if (run.value !== null) await change(toldOfLot(withWord(run.value, lotId, word), lotId), 'now')
+  }
+
+  /** Leaves a batch that the server does not take from this tablet. It is not sent any more; grams of it stay here. */
   async function giveUp(): Promise<void> {
-    if (run.value !== null) await outbox.drop(run.value.id)
+    const { value } = run
+    if (value !== null && staysHere(value, refusal.value, outbox.entries.some(({ subject }) => subject === value.id))) {
+      const { code, message } = refusal.value ?? { code: 'left', message: '' }
+      await aside.put({ id: value.id, run: value, turn: turn.value, at: now(), refusal: { code, message } })
+    }
+    if (value !== null) await outbox.drop(value.id)
     run.value = null
     refusal.value = null
     await keep()
     await refresh()
   }
 
-  outbox.listenToRefusals((entry, { code, message }) => {
-    if (run.value?.id === entry.subject && LEAVING.has(code)) refusal.value = { code, message }
+  /** Takes a batch up again that was laid aside here: it is sent once more. */
+  async function takeUp(kept: BenchAside): Promise<void> {
+    plan.value = null
+    turn.value = kept.turn
+    logged.value = null
+    refusal.value = null
+    if (kept.run.stage === 'logged') await seal(kept.run)
+    else await change(kept.run, 'now')
+    await aside.drop(kept.id)
+  }
+
+  outbox.listenToRefusals((entry, said) => {
+    const found = refusalOf(entry, said)
+    if (run.value?.id !== entry.subject || found === null || !isNews(run.value, found)) return
+    refusal.value = found
+    // What is wrong with a tin stands in the list.
+    if (found.lotId !== null) void refresh()
   })
   outbox.listen((entry, answer) => {
     if (run.value?.id !== entry.subject) return
@@ -257,6 +293,7 @@ export const useBenchStore = defineStore('bench', () => {
 
   return {
     status, failure, snapshot, snapshotAt, isOffline, offsetMs, startOffsetMs, isAway, numbers: numbers.held, setup, plan, run, refusal, logged, zone, home, reckoning, tools,
-    now, today, load, refresh, changeSetup, keepChanged, change, begin, takeOver, checkHeld, seal, discard, leave, giveUp,
+    aside: aside.kept, dropAside: aside.drop, now, today, load, refresh, changeSetup, keepChanged, change, begin, takeOver, checkHeld, seal, discard, leave, giveUp,
+    sendAgain, renumber, goOnWithLot, takeUp,
   }
 })

@@ -1,6 +1,7 @@
 import { defineStore } from 'pinia'
 import { computed, ref } from 'vue'
-import { nextDueAt, nextEntry, passes, refused, waited, withEntry, type OutboxEntry } from '#shared/utils/bench-outbox'
+import { dueAgain, heldBack, nextDueAt, nextEntry, passes, refused, waited, withEntry, type OutboxEntry } from '#shared/utils/bench-outbox'
+import { LOT_REFUSAL_CODES } from '#shared/utils/bench-refusal'
 import { newUuid } from '#shared/utils/uuid'
 import { useBenchDisk } from '~/composables/useBenchDisk'
 import { callApi, toFailure } from '~/utils/api'
@@ -74,17 +75,18 @@ export const useOutboxStore = defineStore('outbox', () => {
   }
 
   async function setAside(entry: OutboxEntry, error: unknown): Promise<void> {
-    const { status, code, message } = toFailure(error)
+    const { status, code, message, fields } = toFailure(error)
     unreachable.value = status === 0
-    const kept = passes(status) ? waited(entry, Date.now(), Math.random()) : refused(entry, { status, code, message })
+    const refusal = passes(status) ? null : { status, code, message, path: fields[0]?.path }
+    const kept = refusal === null ? waited(entry, Date.now(), Math.random()) : LOT_REFUSAL_CODES.has(code) ? heldBack(entry, Date.now()) : refused(entry, refusal)
     entries.value = entries.value.map(other => (other.id === entry.id ? kept : other))
     await disk.writeOutbox([kept], [])
-    if (kept.refusal !== null) for (const listener of refusalListeners) listener(kept, kept.refusal)
+    if (refusal !== null) for (const listener of refusalListeners) listener(kept, refusal)
   }
 
-  /** Everything at once, without waiting for its turn: the network is back, or somebody asked. */
-  async function retry(): Promise<void> {
-    entries.value = entries.value.map(entry => ({ ...entry, nextAt: 0, refusal: null }))
+  /** Everything, or what is about one subject, without waiting for its turn: the network is back, or somebody asked. */
+  async function retry(subject?: string): Promise<void> {
+    entries.value = dueAgain(entries.value, subject)
     await disk.writeOutbox(entries.value, [])
     await flush()
   }
@@ -102,7 +104,7 @@ export const useOutboxStore = defineStore('outbox', () => {
     return () => listeners.delete(listener)
   }
 
-  /** Calls back with each entry that the server refuses for good. Answers the function that stops it. */
+  /** Calls back with each entry that the server refuses. Answers the function that stops it. */
   function listenToRefusals(listener: RefusalListener): () => void {
     refusalListeners.add(listener)
     return () => refusalListeners.delete(listener)

@@ -7,6 +7,7 @@
 export const fetchBenchParts = (): Promise<unknown> => Promise.all([
   import('~/components/bench/BenchStir.vue'),
   import('~/components/bench/BenchPour.vue'),
+  import('~/components/bench/BenchPourHalt.vue'),
   import('~/components/bench/BenchStand.vue'),
   import('~/components/bench/BenchLabel.vue'),
   import('~/components/bench/BenchLogged.vue'),
@@ -18,6 +19,7 @@ export const fetchBenchParts = (): Promise<unknown> => Promise.all([
   import('~/components/bench/BenchPots.vue'),
   import('~/components/bench/BenchPickPieces.vue'),
   import('~/components/bench/BenchStepDone.vue'),
+  import('~/components/bench/BenchTodayAside.vue'),
   import('~/components/base/BaseDialogSheet.vue'),
   import('~/components/base/BaseWorkingSheet.vue'),
 ])

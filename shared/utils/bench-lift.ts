@@ -56,11 +56,11 @@ function whileLifted(run: BenchRun, reading: ScaleReading, source: ScaleSourceKi
 /** Why a cup can come back with other grams than it left with. */
 export const LIFT_REASONS = ['Some was poured out', 'Some was poured in meanwhile', 'Something else stands on the scale now'] as const
 
-/** The cup is back with other grams and somebody said why: the scale's word counts from here, the reason is kept. */
-export function explainLift(run: BenchRun, reason: string, source: ScaleSourceKind, moment: BenchMoment, tools: BenchTools): BenchRun {
+/** The cup is back with other grams and somebody said why: the word of the scale that saw it counts from here, the reason is kept. */
+export function explainLift(run: BenchRun, reason: string, moment: BenchMoment, tools: BenchTools): BenchRun {
   const { lift } = run
   if (lift === null || lift.backG === null) return run
-  const back = takeReading({ ...run, lift: null }, { grams: lift.backG, steady: true, at: moment.deviceAt }, source, moment, tools)
+  const back = takeReading({ ...run, lift: null }, { grams: lift.backG, steady: true, at: moment.deviceAt }, run.reading.source, moment, tools)
   return {
     ...back,
     corrections: [...run.corrections, {

@@ -6,7 +6,7 @@ type LotRefusal = 'wrong-material' | 'blocked' | 'out-of-date' | 'peroxide-out-o
 
 /** What a foreman can allow, and the word for it. */
 export const LOT_APPROVALS = { 'blocked': 'use-blocked-lot', 'out-of-date': 'use-expired-lot' } as const
-type Approvable = keyof typeof LOT_APPROVALS
+export type Approvable = keyof typeof LOT_APPROVALS
 
 /** Lots of a material that may be poured, the one that expires first in front; those without a date last. */
 export function offeredLots(snapshot: BenchSnapshot, materialId: string, today: string): BenchLot[] {
@@ -56,7 +56,7 @@ export function runsOutSoon(lot: BenchLot, today: string): boolean {
 }
 
 /** What a refused lot is told, and what to do about it. */
-export const LOT_REFUSALS: Record<LotRefusal, string> = {
+const LOT_REFUSALS: Record<LotRefusal, string> = {
   'wrong-material': 'That tin is another material. Take one of these, or stop this mix.',
   'blocked': 'That lot is blocked. Take another; using it needs a foreman.',
   'out-of-date': 'That lot is out of date. Take a fresh one; using it needs a foreman.',
@@ -73,6 +73,13 @@ export function lotByNumber(snapshot: BenchSnapshot, text: string, materialId?: 
   const wanted = text.trim().toLowerCase()
   const found = snapshot.lots.filter(({ lotNumber }) => lotNumber.toLowerCase() === wanted)
   return found.find(lot => lot.materialId === materialId) ?? found[0]
+}
+
+/** Why a tin is not taken; one of another material is told what it is. */
+export function lotRefusalWords(refusal: LotRefusal, lot: BenchLot | undefined, materials: BenchSnapshot['materials']): string {
+  const material = materials.find(({ id }) => id === lot?.materialId)
+  if (refusal !== 'wrong-material' || lot === undefined || material === undefined) return LOT_REFUSALS[refusal]
+  return `Lot ${lot.lotNumber} is ${material.code} ${material.name}. ${LOT_REFUSALS[refusal]}`
 }
 
 /** The first lot offered of each component, in the mix's order; null where there is none. */

@@ -16,7 +16,7 @@ export interface OutboxEntry {
   /** Not before; epoch milliseconds. */
   nextAt: number
   /** Refused by the server: it does not go by itself any more. */
-  refusal: { status: number, code: string, message: string } | null
+  refusal: { status: number, code: string, message: string, /** The field that is to blame. */ path?: string } | null
 }
 
 /** A newer draft takes the place of one that was not sent yet: only the latest is worth sending. */
@@ -43,9 +43,10 @@ export function nextEntry(entries: readonly OutboxEntry[], now: number): OutboxE
   return null
 }
 
-/** The next instant at which something falls due, or null while nothing waits. */
+/** The next instant at which something falls due, or null while nothing waits. What stands behind another waits with it. */
 export function nextDueAt(entries: readonly OutboxEntry[]): number | null {
-  const due = entries.filter(({ refusal }) => refusal === null).map(({ nextAt }) => nextAt)
+  const first = entries.filter(({ subject }, place) => entries.findIndex(other => other.subject === subject) === place)
+  const due = first.filter(({ refusal }) => refusal === null).map(({ nextAt }) => nextAt)
   return due.length === 0 ? null : Math.min(...due)
 }
 
@@ -60,6 +61,17 @@ export function waited(entry: OutboxEntry, now: number, random: number): OutboxE
 
 export function refused(entry: OutboxEntry, refusal: NonNullable<OutboxEntry['refusal']>): OutboxEntry {
   return { ...entry, tries: entry.tries + 1, refusal }
+}
+
+/** A weighing older than two minutes has happened: the server then stores it, also of a tin that it would refuse. With room for the way there. */
+const FACT_AFTER_MS = 2 * 60_000 + 5_000
+
+/** Grams of a tin that may not be poured are in the cup. They are sent again once they count as a fact. */
+export const heldBack = (entry: OutboxEntry, now: number): OutboxEntry => ({ ...entry, tries: entry.tries + 1, nextAt: now + FACT_AFTER_MS })
+
+/** Everything, or what is about one subject, is due at once, also what was refused. */
+export function dueAgain(entries: readonly OutboxEntry[], subject?: string): OutboxEntry[] {
+  return entries.map(entry => (subject === undefined || entry.subject === subject ? { ...entry, nextAt: 0, refusal: null } : entry))
 }
 
 /** Nobody is signed in any more: it waits for the next sign-in, it is not lost. */

@@ -85,6 +85,10 @@ export interface BenchRun {
   accepted: number[]
   corrections: z.infer<typeof DraftCorrection>[]
   approvals: string[]
+  /** Tins that a foreman has allowed for this batch, each with what was wrong with it. */
+  allowed?: { lotId: string, fault: 'blocked' | 'out-of-date' }[]
+  /** Lots in the cup of which somebody was told that they may no longer be poured. */
+  told?: string[]
   reactiveAt: string | null
   /** The tablet's own reading of that moment. */
   deviceReactiveAt: string | null
@@ -237,27 +241,6 @@ export function takeReading(run: BenchRun, reading: ScaleReading, source: ScaleS
   if (next.reactiveAt !== null || !reading.steady || tools.mix.potLifeMin === null && tools.mix.potLifeTable === null) return next
   const starts = potLifeStart(readMix(tools.input), poursOf(next).map(({ index, grams, at }) => ({ index, grams, at: Date.parse(at) })))
   return starts === null ? next : { ...next, reactiveAt: toIso(moment.at), deviceReactiveAt: toIso(moment.deviceAt) }
-}
-
-export function chooseLot(run: BenchRun, index: number, lotId: string): BenchRun {
-  return { ...run, lots: run.lots.map((lot, place) => (place === index ? lotId : lot)) }
-}
-
-/** The tin is empty at the grams that stand: its lot is closed, the same weighing goes on from the next tin. */
-export function canEmpty(run: BenchRun, nextLotId: string | null): BenchRun {
-  const index = componentAtHand(run)
-  if (index === null) return run
-  const open = openPour(run)
-  const closed = open === null ? run : { ...run, pours: [...run.pours, open] }
-  return { ...closed, lots: run.lots.map((lot, place) => (place === index ? nextLotId : lot)) }
-}
-
-/** No more of the base is to be had: the mix becomes what the base in the cup allows, and the others follow it. */
-export function takeWhatIsIn(run: BenchRun, index: number, totalG: string): BenchRun {
-  const { areaM2: _area, totalG: _total, available: _available, ...rest } = run.plan
-  const grams = pouredG(run, index)
-  if (grams === null) return run
-  return { ...run, plan: { ...rest, available: { index, grams } }, targetTotalG: totalG }
 }
 
 /** The weighing at hand is done: on to the next, or to stirring and standing after the last. */

@@ -50,15 +50,21 @@ describe('a cup that is lifted', () => {
     const asking = read(read(pouring(), '-900', 2000), '391.4', 5000)
     expect(liftDifferenceG(asking)).toBe('-5')
     expect(judgeRun(asking, kit).mayGoOn).toBe(false)
-    const told = explainLift(asking, 'Some was poured out', 'simulated', moment(9000), kit)
+    const told = explainLift(asking, 'Some was poured out', moment(9000), kit)
     expect(told).toMatchObject({ lift: null, reading: { grams: '391.4', steady: true } })
     expect(told.corrections.at(-1)).toMatchObject({ cause: 'cup-lifted', accepted: false, reason: 'Cup lifted at 396.4 g, back at 391.4 g: Some was poured out' })
     expect(DraftBody.parse(draftOf({ ...told, seq: 1 }, new Date(atMs).toISOString(), 0)).corrections).toHaveLength(1)
   })
 
+  it('keeps which scale saw the cup come back', () => {
+    const cable = (run: BenchRun, grams: string, ms: number): BenchRun => takeCupReading(run, { grams, steady: true, at: atMs + ms }, 'scale', moment(ms), kit)
+    const asking = cable(cable(cable(begin(), '396.4', 0), '-900', 2000), '391.4', 5000)
+    expect(explainLift(asking, 'Some was poured out', moment(9000), kit).reading).toMatchObject({ grams: '391.4', source: 'scale' })
+  })
+
   it('takes no word while it is off the scale', () => {
     const off = read(pouring(), '-900', 2000)
-    expect(explainLift(off, 'Some was poured out', 'simulated', moment(9000), kit)).toBe(off)
+    expect(explainLift(off, 'Some was poured out', moment(9000), kit)).toBe(off)
   })
 
   it('starts no pot life', () => {

@@ -1,9 +1,9 @@
 import { describe, expect, it } from 'vitest'
 import { hazardOf, hazardsOf } from '#shared/utils/bench-hazards'
 import { potTimes, standing } from '#shared/utils/bench-life'
-import { firstLots, lotByNumber, lotRefusal, offeredLots, runsOutSoon } from '#shared/utils/bench-lots'
-import { MeasureForm } from '#shared/utils/bench-measure'
-import { nextDueAt, nextEntry, passes, refused, waited, withEntry, type OutboxEntry } from '#shared/utils/bench-outbox'
+import { firstLots, lotByNumber, lotRefusal, lotRefusalWords, offeredLots, runsOutSoon } from '#shared/utils/bench-lots'
+import { measuredBefore, MeasureForm, noteMeasured } from '#shared/utils/bench-measure'
+import { dueAgain, heldBack, nextDueAt, nextEntry, passes, refused, waited, withEntry, type OutboxEntry } from '#shared/utils/bench-outbox'
 import type { BenchRun } from '#shared/utils/bench-run'
 import { keypadSource, type ScaleReading } from '#shared/utils/bench-scale'
 import { newUuid } from '#shared/utils/uuid'
@@ -33,6 +33,12 @@ describe('lots', () => {
     expect(lotByNumber(alike, 'l-1', id(12))?.materialId).toBe(id(12))
     expect(lotByNumber(alike, 'l-1', id(11))?.materialId).toBe(id(11))
     expect(lotRefusal(lotByNumber(alike, 'l-1', id(77)), id(77), today)).toBe('wrong-material')
+  })
+
+  it('tells of a tin of another material what it is', () => {
+    const shop = snapshot()
+    const other = lotByNumber(shop, 'l-24', id(11))
+    expect(other && lotRefusalWords('wrong-material', other, shop.materials)).toMatch(/^Lot L-24 is PH-40 PH-40\. That tin is another material\./)
   })
 
   it.each([['2026-12-01', true], ['2026-12-02', false], [null, false]])('runs out soon on %s: %s', (expiresOn, soon) => {
@@ -125,6 +131,25 @@ describe('outbox', () => {
     expect(nextDueAt(entries)).toBe(0)
   })
 
+  it('does not wake for what stands behind another', () => {
+    expect(nextDueAt([{ ...entry(1, 'draft'), nextAt: 900 }, entry(2, 'seal')])).toBe(900)
+    expect(nextDueAt([refused(entry(1, 'draft'), { status: 422, code: 'rule', message: 'no' }), entry(2, 'seal')])).toBeNull()
+  })
+
+  it('sends a refused draft again once what stood in its way is done, and no other batch\'s', () => {
+    const no = { status: 422, code: 'booth-clash', message: 'no' }
+    const again = dueAgain([refused(entry(1, 'draft'), no), refused(entry(2, 'draft', 'b'), no)], 'a')
+    expect(nextEntry(again, 1)?.id).toBe('1')
+    expect(again.map(({ refusal }) => refusal)).toEqual([null, no])
+    expect(dueAgain(again).every(({ refusal }) => refusal === null)).toBe(true)
+  })
+
+  it('sends grams of a refused tin again by itself once the server takes them as a fact, and the seal after them', () => {
+    const waiting = [heldBack(entry(1, 'draft'), 1_000), entry(2, 'seal')]
+    expect(nextEntry(waiting, 120_000)).toBeNull()
+    expect(nextEntry(waiting, 126_000)?.id).toBe('1')
+  })
+
   it.each([[0, true], [401, true], [429, true], [503, true], [400, false], [409, false], [422, false]])('tries %s again: %s', (status, again) => {
     expect(passes(status)).toBe(again)
   })
@@ -137,6 +162,25 @@ describe('measurements', () => {
   ])('%o lacks %o', (change, faults) => {
     const parsed = MeasureForm.safeParse({ ...form, ...change })
     expect(parsed.success ? [] : parsed.error.issues.map(({ path }) => path[0])).toEqual(faults)
+  })
+})
+
+describe('the time of a viscosity', () => {
+  const form = { cup: 'din-4', seconds: '25', materialC: '21', airC: '', rhPct: '', surfaceC: '' }
+  const first = noteMeasured({ climate: null, viscosity: null, viscosityAt: null }, form, false, '2026-11-17T08:00:00.000Z')
+
+  it('is that of its reading, also when the form is looked at again or the climate comes later', () => {
+    expect(first).toEqual({ climate: null, viscosity: { cup: 'din-4', seconds: '25', materialC: '21' }, viscosityAt: '2026-11-17T08:00:00.000Z' })
+    expect(noteMeasured(first, { ...form, airC: '20', rhPct: '50' }, false, '2026-11-17T09:00:00.000Z').viscosityAt).toBe('2026-11-17T08:00:00.000Z')
+    expect(noteMeasured(first, { ...form, seconds: '24' }, false, '2026-11-17T09:00:00.000Z').viscosityAt).toBe('2026-11-17T09:00:00.000Z')
+  })
+
+  it('after more thinner is new only where it was measured anew, also with the same seconds', () => {
+    expect(measuredBefore(first, true, null)).toMatchObject({ cup: 'din-4', seconds: '', materialC: '' })
+    expect(measuredBefore(first, false, null).seconds).toBe('25')
+    expect(noteMeasured(first, { ...form, seconds: '', materialC: '', airC: '20', rhPct: '50' }, true, '2026-11-17T09:00:00.000Z')).toMatchObject({ viscosity: first.viscosity, viscosityAt: '2026-11-17T08:00:00.000Z' })
+    expect(noteMeasured(first, form, true, '2026-11-17T09:00:00.000Z').viscosityAt).toBe('2026-11-17T09:00:00.000Z')
+    expect(noteMeasured(first, { ...form, seconds: '', materialC: '' }, false, '2026-11-17T09:00:00.000Z')).toMatchObject({ viscosity: null, viscosityAt: null })
   })
 })
 
