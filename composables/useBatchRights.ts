@@ -8,11 +8,12 @@ import { useSessionStore } from '~/stores/session'
 export function useBatchRights(batch: Ref<Batch | null | undefined>) {
   const session = useSessionStore()
   const { zone } = useShopTime()
+  const now = useShopNow()
   const mayAmend = computed(() => {
     const { user } = session
     const thing = batch.value
     if (!user || !thing || !may(user.role, 'batches:amend')) return false
-    return amendRefusal(user, { mixedByUserId: thing.mixedByUserId, mixedAt: Date.parse(thing.mixedAt) }, zone.value, Date.now()) === null
+    return amendRefusal(user, { mixedByUserId: thing.mixedByUserId, mixedAt: Date.parse(thing.mixedAt) }, zone.value, now.value) === null
   })
   const mayReview = computed(() => Boolean(session.user && may(session.user.role, 'batches:review')))
   return { mayAmend, mayReview }
