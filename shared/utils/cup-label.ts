@@ -36,6 +36,16 @@ export function warningsOf(materials: readonly Hazardous[]): Pick<CupLabel, 'sig
   }
 }
 
+/**
+ * How the diamonds stand on a label of 62 × 40 mm: one row of up to five, else two rows of smaller ones. None is left out,
+ * there are nine in all. Beside them 24 mm stay for the signal word; the code below the name keeps its size.
+ *
+ * @returns side of a diamond and columns, millimetres
+ */
+export function diamondRows(count: number): { mm: string, columns: number } {
+  return count <= 5 ? { mm: '5.8', columns: count } : { mm: '3.8', columns: Math.ceil(count / 2) }
+}
+
 const distinct = (lots: readonly string[]): string => [...new Set(lots)].join(', ')
 
 /** The label of a pot that is still at the bench. */

@@ -1,7 +1,11 @@
+// @vitest-environment happy-dom
+import { mount } from '@vue/test-utils'
 import { create } from 'qrcode'
 import { describe, expect, it } from 'vitest'
 import { pictogramsOf } from '#shared/reference/pictograms'
-import { labelAddress, labelOfRun, warningsOf } from '#shared/utils/cup-label'
+import type { Pictogram } from '#shared/reference/pictograms'
+import { diamondRows, labelAddress, labelOfRun, warningsOf } from '#shared/utils/cup-label'
+import LabelSheet from '~/components/label/LabelSheet.vue'
 import { drawQr } from '~/utils/qr'
 import { begin, kit, pour } from './pots'
 import { id, snapshot } from './shop'
@@ -20,6 +24,8 @@ describe('the diamonds of a mixture', () => {
     [[], []],
   ])('of %j are %j', (codes, kinds) => expect(pictogramsOf(codes)).toEqual(kinds))
 })
+
+const all: Pictogram[] = ['explosive', 'flame', 'oxidiser', 'gas', 'corrosion', 'skull', 'exclamation', 'health', 'environment']
 
 describe('the label of a pot', () => {
   const run = { ...pour(pour(pour(begin(), '876.5'), '438.2', 60_000), '175.3', 120_000), code: 'B-0421' }
@@ -42,6 +48,18 @@ describe('the label of a pot', () => {
       mixedAt: Date.parse('2026-11-17T08:02:00.000Z'),
       mixedBy: 'Tilda V.',
     })
+  })
+
+  it.each([0, 1, 5, 6, 7, 9])('carries all of %i diamonds, in 62 × 40 mm', (count) => {
+    const shown = { ...labelOfRun(run, kit, snapshot()), pictograms: all.slice(0, count) }
+    expect(shown.pictograms).toHaveLength(count)
+    const sheet = mount(LabelSheet, { props: { label: shown, qr: null, zone: 'UTC', decimals: 1, mm: '1mm' } })
+    expect(sheet.findAll('.label-diamond')).toHaveLength(count)
+    const { mm, columns } = diamondRows(count)
+    const rows = columns === 0 ? 0 : Math.ceil(count / columns)
+    // 58 mm between the insets, 24 of them for words; two rows must leave the code of 15.5 mm its room.
+    expect(columns * Number(mm) + (columns - 1) * 0.9).toBeLessThanOrEqual(34)
+    expect(rows * Number(mm) + (rows - 1) * 0.3).toBeLessThanOrEqual(8)
   })
 
   it('has no use-by where nothing reacts', () => {
