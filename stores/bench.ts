@@ -6,10 +6,9 @@ import type { BenchSnapshot } from '#shared/schemas/bench'
 import type { Draft, DraftHolder, DraftList } from '#shared/schemas/drafts'
 import { draftOf } from '#shared/utils/bench-draft'
 import { reckon, withFittingCup } from '#shared/utils/bench-reckon'
-import { isNews, refusalOf, staysHere, withoutNumber, type BenchAside, type BenchRefusal } from '#shared/utils/bench-refusal'
+import { isNews, refusalOf, staysHere, type BenchAside, type BenchRefusal } from '#shared/utils/bench-refusal'
 import type { BenchRun } from '#shared/utils/bench-run'
 import { blankSetup, setupAfterPot, type BenchHome, type BenchSetup } from '#shared/utils/bench-setup'
-import { toldOfLot, withWord, type TinWord } from '#shared/utils/bench-tin'
 import { isTakenOver, takenOverWords } from '#shared/utils/bench-takeover'
 import { benchTools } from '#shared/utils/bench-tools'
 import { toIso } from '#shared/utils/instant'
@@ -77,8 +76,9 @@ export const useBenchStore = defineStore('bench', () => {
   /** Reads what was left on the tablet, then the shop's present state. */
   async function load(): Promise<void> {
     status.value = snapshot.value === null ? 'loading' : status.value
+    if (session.unreachable && !session.user) await session.load()
     const userId = session.user?.id
-    if (userId === undefined) return
+    if (userId === undefined) return fail('Nobody was signed in at this bench before the network went. Signing in needs it: try again when it is back.')
     tabletId.value ??= await disk.readTabletId()
     await numbers.load()
     await aside.load()
@@ -87,6 +87,11 @@ export const useBenchStore = defineStore('bench', () => {
     await refresh()
     // What was changed just before a crash may not have gone out.
     if (run.value !== null && run.value.stage !== 'logged') await save()
+  }
+
+  function fail(why: string): void {
+    failure.value = why
+    status.value = 'error'
   }
 
   async function restore(userId: string): Promise<void> {
@@ -109,6 +114,7 @@ export const useBenchStore = defineStore('bench', () => {
       await timers.measureClock()
       const at = Date.parse(answer.serverNow)
       take(answer, at, false)
+      session.keepLast()
       await disk.writeSnapshot({ snapshot: answer, at, offsetMs: offsetMs.value })
       if (session.device?.kind === 'bench') await numbers.fill()
     } catch (error) {
@@ -232,24 +238,6 @@ export const useBenchStore = defineStore('bench', () => {
     if (setup.value && snapshot.value) changeSetup(withFittingCup(setupAfterPot(setup.value, snapshot.value, home.value), snapshot.value))
   }
 
-  /** What stood in the way is done: the batch at hand is sent again. */
-  async function sendAgain(): Promise<void> {
-    refusal.value = null
-    if (run.value !== null) await outbox.retry(run.value.id)
-  }
-
-  /** The number that this bench had chosen is somebody else's: the server gives another. */
-  async function renumber(): Promise<void> {
-    refusal.value = null
-    if (run.value !== null) await change(withoutNumber(run.value), 'now')
-  }
-
-  /** Somebody read that a lot in the cup may no longer be poured, and goes on, with a foreman's word or without. */
-  async function goOnWithLot(lotId: string, word: TinWord = { approvals: [], faults: [] }): Promise<void> {
-    refusal.value = null
-    if (run.value !== null) await change(toldOfLot(withWord(run.value, lotId, word), lotId), 'now')
-  }
-
   /** Leaves a batch that the server does not take from this tablet. It is not sent any more; grams of it stay here. */
   async function giveUp(): Promise<void> {
     const { value } = run
@@ -294,6 +282,6 @@ export const useBenchStore = defineStore('bench', () => {
   return {
     status, failure, snapshot, snapshotAt, isOffline, offsetMs, startOffsetMs, isAway, numbers: numbers.held, setup, plan, run, refusal, logged, zone, home, reckoning, tools,
     aside: aside.kept, dropAside: aside.drop, now, today, load, refresh, changeSetup, keepChanged, change, begin, takeOver, checkHeld, seal, discard, leave, giveUp,
-    sendAgain, renumber, goOnWithLot, takeUp,
+    takeUp,
   }
 })
