@@ -65,7 +65,7 @@ describe('walls of one booth', () => {
   it('are an enrolled browser with nobody signed in: the manager makes it one, and it opens by itself', async () => {
     const { page } = await visit({ screen: 'booth' })
     await signIn(page, 'manager', '/shop')
-    await page.getByLabel('Name', { exact: true }).fill('Wall of the browser test')
+    await page.getByLabel('Name (needed)', { exact: true }).fill('Wall of the browser test')
     await page.getByRole('button', { name: 'Make this browser the booth screen' }).click()
     await page.waitForURL((url) => url.pathname.startsWith('/screen/'))
     await page.evaluate(() => fetch('/api/session', { method: 'DELETE' }).then((answer) => answer.status))
