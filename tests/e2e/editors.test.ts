@@ -77,7 +77,7 @@ describe('the editors of a manager', () => {
 
     await page.getByRole('main').getByRole('link', { name: 'New revision' }).click()
     await heading(page, new RegExp(mix))
-    await page.getByLabel('Parts', { exact: true }).nth(1).fill('25')
+    await page.getByLabel('Parts (needed)', { exact: true }).nth(1).fill('25')
     await page.getByText('was 50').waitFor()
     await page.getByRole('region', { name: 'What it comes to' }).getByRole('cell', { name: '800' }).waitFor()
     await press(page, 'Save revision 2')

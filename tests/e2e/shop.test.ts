@@ -22,13 +22,13 @@ describe('a manager sets the shop up', () => {
     const mark = randomUUID().slice(0, 6)
     const { page } = await visitAs('manager', { expectedStatuses: [409] })
     await add(page, 'booth', async () => {
-      await page.getByLabel('Name', { exact: true }).fill(`Booth ${mark}`)
+      await page.getByLabel('Name (needed)', { exact: true }).fill(`Booth ${mark}`)
       await page.getByText('Measured', { exact: true }).click()
       await page.getByLabel('Measured minutes').fill('22,5')
     })
     await arrived(page)
     await add(page, 'gun', async () => {
-      await page.getByLabel('Name', { exact: true }).fill('Gun 1')
+      await page.getByLabel('Name (needed)', { exact: true }).fill('Gun 1')
       await page.getByLabel('Booth', { exact: true }).selectOption({ label: `Booth ${mark}` })
       await page.getByLabel('Flat panels').fill('120')
       await page.getByLabel('Residue a pot').fill('24')
@@ -40,11 +40,11 @@ describe('a manager sets the shop up', () => {
     await page.getByRole('button', { name: 'Add the gun' }).click()
     await page.getByText(/^This name is taken/).waitFor()
     expect(await page.getByLabel('Residue a pot').inputValue()).toBe('24')
-    await page.getByLabel('Name', { exact: true }).fill(`Gun ${mark}`)
+    await page.getByLabel('Name (needed)', { exact: true }).fill(`Gun ${mark}`)
     await page.getByRole('button', { name: 'Add the gun' }).click()
     await arrived(page)
     await add(page, 'scale', async () => {
-      await page.getByLabel('Name', { exact: true }).fill(`Scale ${mark}`)
+      await page.getByLabel('Name (needed)', { exact: true }).fill(`Scale ${mark}`)
       await page.getByLabel('Division d').fill('0,1')
       await page.getByLabel('Capacity').fill('6200')
       await page.getByText('Simulated scale, for trying out').click()
@@ -52,7 +52,7 @@ describe('a manager sets the shop up', () => {
     await arrived(page)
     const email = `sprayer-${mark}@potbell.example`
     await add(page, 'person', async () => {
-      await page.getByLabel('Name', { exact: true }).fill('Signe Aldermark')
+      await page.getByLabel('Name (needed)', { exact: true }).fill('Signe Aldermark')
       await page.getByLabel('E-mail').fill(email)
       await page.getByRole('button', { name: 'Make one up' }).click()
     })
