@@ -7,6 +7,7 @@ import type { UserPrincipal } from '../utils/context'
 import { readDeviceToken } from '../utils/cookies'
 import { sha256 } from '../utils/hash'
 import { refuse } from '../utils/refuse'
+import { tokenOf } from '../utils/sealed-token'
 
 /**
  * Finds out who asks, from the database at every request: a cookie that was sealed before a sign-out is only a
@@ -35,7 +36,8 @@ async function identify(event: H3Event): Promise<void> {
 }
 
 async function findUser(event: H3Event, db: Knex): Promise<UserPrincipal | null> {
-  if (!getCookie(event, useRuntimeConfig().session.name ?? '')) return null
-  const token = (await getUserSession(event)).secure?.token
+  const sealed = getCookie(event, useRuntimeConfig().session.name ?? '')
+  if (!sealed) return null
+  const token = await tokenOf(sealed, async () => (await getUserSession(event)).secure?.token)
   return token ? findSessionUser(sha256(token), db) : null
 }
