@@ -1,6 +1,6 @@
 import type { Timer } from '#shared/schemas/timers'
 import { claimDue, type DueWork } from '../repositories/due-timers'
-import { advancePotState, lockPotFate } from '../repositories/pot-state'
+import { advancePotState, lockPotFate, type PotFate } from '../repositories/pot-state'
 import { getTimer, updateTimer } from '../repositories/timers'
 import { findWindows } from '../repositories/windows'
 import type { Context } from '../utils/context'
@@ -21,10 +21,12 @@ class NotOurs extends Error {}
 export async function settleDue(ctx: Context, work: DueWork): Promise<boolean> {
   try {
     await mutate(ctx, async (m) => {
+      // The pot before its timer, as everybody takes them.
+      const fate = work.action === 'fire' ? await potFate(m, work.id) : null
       if (!(await claimDue(work, m.now, m.trx))) throw new NotOurs()
       const timer = await getTimer(work.id, m.trx)
       if (!timer) throw new NotOurs()
-      await settle[work.action](m, timer)
+      await settle[work.action](m, timer, fate)
       return null
     })
     return true
@@ -34,10 +36,16 @@ export async function settleDue(ctx: Context, work: DueWork): Promise<boolean> {
   }
 }
 
-const settle: Record<DueWork['action'], (m: Mutation, timer: Timer) => Promise<void>> = { fire, announce, unmute }
+/** Holds the pot that a timer is about; null where it is about something else. */
+async function potFate(m: Mutation, timerId: string): Promise<PotFate | null> {
+  const timer = await getTimer(timerId, m.trx)
+  return timer?.subjectType === 'batch' ? await lockPotFate(timer.subjectId, m.trx) : null
+}
 
-async function fire(m: Mutation, timer: Timer): Promise<void> {
-  if (!(await isStillAbout(m, timer))) {
+const settle: Record<DueWork['action'], (m: Mutation, timer: Timer, fate: PotFate | null) => Promise<void>> = { fire, announce, unmute }
+
+async function fire(m: Mutation, timer: Timer, fate: PotFate | null): Promise<void> {
+  if (!(await isStillAbout(m, timer, fate))) {
     await updateTimer(timer.id, { state: 'cancelled' }, m.now, m.trx)
     audit(m, timer, 'timer.cancelled')
     await publishTimer(m, timer.id)
@@ -54,8 +62,8 @@ async function fire(m: Mutation, timer: Timer): Promise<void> {
 }
 
 /** False when what the timer was set for has ended without it having been told. */
-async function isStillAbout(m: Mutation, timer: Timer): Promise<boolean> {
-  if (timer.subjectType === 'batch') return (await lockPotFate(timer.subjectId, m.trx)) !== 'over'
+async function isStillAbout(m: Mutation, timer: Timer, fate: PotFate | null): Promise<boolean> {
+  if (timer.subjectType === 'batch') return fate !== 'over'
   if (timer.subjectType === 'application') return (await findWindows({ applicationId: timer.subjectId }, m.trx)).length > 0
   return true
 }

@@ -33,6 +33,8 @@ describe('a timer that comes due while its batch is being sealed', () => {
     await sealing('batch_drafts').where({ id }).update({ state: 'stopped' })
     const settling = settleDue(live.as('sprayer'), { id: timer?.id ?? '', action: 'fire' })
     await timerWaits()
+    // Who holds the pot takes its timers after it: they must be free.
+    expect(await sealing.select('id').from('timers').where({ id: timer?.id }).forUpdate().noWait()).toHaveLength(1)
     await sealing.commit()
     expect(await settling).toBe(true)
     expect(await findTimerOf('pot-up', 'batch', id, live.db)).toMatchObject({ state: 'cancelled' })
