@@ -129,7 +129,7 @@ export const DraftBody = z.strictObject({
     at: InstantText,
     reason: words(400),
     /** Where it is not named, the chemistry of what is in the cup decides when it is sealed. */
-    disposal: z._default(z.string().check(z.trim(), z.minLength(1), z.maxLength(60)), ''),
+    disposal: z._default(z.string().check(z.trim(), z.maxLength(60)), ''),
   })), null),
 }).check(
   z.refine(({ potNumber, potCount }) => potNumber <= potCount, { path: ['potNumber'], error: 'There are not so many pots.' }),

@@ -12,6 +12,11 @@ describe('the body of a draft', () => {
   it('needs little, and fills in the rest', () => {
     expect(z.parse(DraftBody, body)).toMatchObject({ jobStepId: null, pieceIds: [], components: [], reactiveAt: null, device: null, stopped: null })
   })
+  it('is taken again as it was answered, also where a stopped mix names no disposal', () => {
+    const stored = z.parse(DraftBody, { ...body, stopped: { at: '2026-11-17T07:00:00.000Z', reason: 'Spilled' } })
+    expect(stored.stopped?.disposal).toBe('')
+    expect(z.parse(DraftBody, stored)).toEqual(stored)
+  })
   it('takes ids in any case and stores them in one', () => {
     expect(z.parse(DraftBody, { ...body, planId: id.toUpperCase() }).planId).toBe(id)
   })
