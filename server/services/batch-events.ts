@@ -40,7 +40,7 @@ export function recordBatchEvent(ctx: Context, id: string, body: BatchEventBody)
     const before = await listSprays([id], m.trx)
     await refuseShot(m, pot, { kind: body.kind, gunId, at }, gunSprays(before))
     const leftIn = body.kind === 'first-spray' && gunId !== null ? await findPotsInGun(gunId, { at, except: id }, m.trx) : []
-    await lockBooths([content.containsIsocyanates ? pot.boothId : null, ...leftIn.map(({ boothId }) => boothId)], m.trx)
+    await lockBooths([content.containsIsocyanates || leftIn.length > 0 ? pot.boothId : null, ...leftIn.map(({ boothId }) => boothId)], m.trx)
     const early = body.kind === 'first-spray' ? earlyOf(pot, content, at) : {}
     await insertBatchEvent({ ...actorOf(ctx), batchId: id, kind: body.kind, at: toInstant(at), gunId, boothId: pot.boothId, details: early, createdAt: toInstant(m.now) }, m.trx)
     const settled = await settleSprays(ctx, m, pot, [...before, { batchId: id, kind: body.kind, gunId, gunName: null, at }], body.kind)
