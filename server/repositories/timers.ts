@@ -126,6 +126,22 @@ export async function timedApplicationsUnder(applicationId: string, db: Db): Pro
   return rows.map(({ id }) => id)
 }
 
+/** Other applications to pieces of this one that opened a window of which no timer waits or rings, the oldest first. */
+export async function untimedApplicationsUnder(applicationId: string, db: Db): Promise<string[]> {
+  const rows = await db('application_pieces as mine')
+    .join('application_pieces as theirs', 'theirs.piece_id', 'mine.piece_id')
+    .join('application_current as n', 'n.application_id', 'theirs.application_id')
+    .where('mine.application_id', applicationId)
+    .whereNot('n.application_id', applicationId)
+    .whereNotNull('n.opens_at')
+    .whereNotExists((live) => live.select(db.raw('1')).from('timers as t').whereIn('t.state', ['waiting', 'fired', 'acknowledged'])
+      .whereRaw('t.subject_type = \'application\' AND t.subject_id = n.application_id'))
+    .groupBy(['n.application_id', 'n.first_at'])
+    .orderBy(['n.first_at', 'n.application_id'])
+    .select<{ application_id: string }[]>('n.application_id')
+  return rows.map(({ application_id: id }) => id)
+}
+
 /** What may change of a timer. Instants are epoch milliseconds. */
 export interface TimerChange {
   state?: TimerState

@@ -8,7 +8,7 @@ import type { Mutation } from '../utils/transactions'
 import type { EffectiveBatch } from './batch-effective'
 import { windowAfter } from './coat-windows'
 import { earliestShot, windowLabel } from './coats'
-import { cancelTimers, setWindowTimers } from './timers'
+import { cancelTimers, reviveWindowsUnder, setWindowTimers } from './timers'
 
 /** A coat whose moments, booth or window an amendment of its batch changed. */
 export interface MovedCoat {
@@ -96,5 +96,6 @@ export async function moveWindows(m: Mutation, moved: readonly MovedCoat[]): Pro
     const [counts] = after.window === null ? [] : await findWindows({ applicationId: id }, m.trx)
     if (after.window !== null && counts) await setWindowTimers(m, { applicationId: id, boothId: after.boothId, label, ...instantsToSet(before, after, after.window, m.now) })
     else await cancelTimers(m, 'application', id)
+    if (before.firstAt !== after.firstAt) await reviveWindowsUnder(m, id)
   }
 }

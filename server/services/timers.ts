@@ -1,5 +1,5 @@
 import type { Timer, TimerCreateBody, TimerExtendBody, TimerSilenceBody } from '#shared/schemas/timers'
-import { findTimerOf, getTimer, lockTimer, lockTimersOf, setTimer, timedApplicationsUnder, updateTimer, type TimerChange } from '../repositories/timers'
+import { findTimerOf, getTimer, lockTimer, lockTimersOf, setTimer, timedApplicationsUnder, untimedApplicationsUnder, updateTimer, type TimerChange } from '../repositories/timers'
 import { activeName } from '../repositories/people-names'
 import { findWindows } from '../repositories/windows'
 import type { Context, Principal } from '../utils/context'
@@ -72,6 +72,24 @@ export async function endWindowsUnder(m: Mutation, applicationId: string): Promi
     const [left] = await findWindows({ applicationId: id }, m.trx)
     if (left) await publishWindow(m, id, left.boothId)
     else await cancelTimers(m, 'application', id)
+  }
+}
+
+/**
+ * Sets the timers of windows that count again: a coat that covered them is known to have been sprayed before them. What
+ * is over is not called out, except that a window closed without anybody having heard it.
+ */
+export async function reviveWindowsUnder(m: Mutation, applicationId: string): Promise<void> {
+  const ahead = (instant: string | null) => (instant !== null && Date.parse(instant) > m.now ? Date.parse(instant) : null)
+  for (const id of await untimedApplicationsUnder(applicationId, m.trx)) {
+    const [window] = await findWindows({ applicationId: id }, m.trx)
+    const opening = window && (await findTimerOf('window-opens', 'application', id, m.trx))
+    if (!window || !opening) continue
+    const isHeard = (await findTimerOf('window-closes', 'application', id, m.trx))?.firedAt != null
+    const closesAt = window.closesAt === null || isHeard ? ahead(window.closesAt) : Date.parse(window.closesAt)
+    await setWindowTimers(m, {
+      applicationId: id, boothId: window.boothId, label: opening.label, opensAt: ahead(window.opensAt), closingAt: ahead(window.closingAt), closesAt,
+    })
   }
 }
 

@@ -122,6 +122,22 @@ describe('the window of a coat', () => {
     expect((await getBatch(work.as('sprayer'), id)).applications).toMatchObject([{ closesAt: minutesIn(240) }])
   })
 
+  it('rings again where the coat that covered it was sprayed before it', async () => {
+    const [first, second] = [await sprayed(5, 20), await sprayed(30, 40)]
+    const under = (await getBatch(work.as('sprayer'), first)).applications[0]?.id ?? ''
+    const over = (await getBatch(work.as('sprayer'), second)).applications[0]?.id ?? ''
+    expect((await timersOf(under)).map(({ state }) => state)).toEqual(['cancelled', 'cancelled', 'cancelled'])
+    later(90)
+    await amend(second, 'firstSprayAt', minutesIn(30), minutesIn(2))
+    expect((await timersOf(over)).map(({ state }) => state)).toEqual(['cancelled', 'cancelled', 'cancelled'])
+    expect(await timersOf(under)).toMatchObject([
+      { kind: 'window-opens', state: 'cancelled' },
+      { kind: 'window-closing', due_at: new Date(minutesIn(228.5)), state: 'waiting' },
+      { kind: 'window-closes', due_at: new Date(minutesIn(245)), state: 'waiting' },
+    ])
+    expect(await windowsAt({ jobIds: [work.shop.jobId] }, work.clock.now, work.db)).toMatchObject([{ id: under, closesAt: minutesIn(245) }])
+  })
+
   it('of a coat that is still being sprayed follows the first spray', async () => {
     const id = await pot()
     later(10)
