@@ -1,5 +1,6 @@
 import type { Knex } from 'knex'
 import type { Batch } from '#shared/schemas/batches'
+import type { BoothClash } from '#shared/utils/bench-booth'
 import { isoOf, toInstant } from '../utils/rows'
 
 type Db = Knex | Knex.Transaction
@@ -15,12 +16,15 @@ export interface NewAmendment {
   userId: string
   approvalId: string | null
   at: number
+  /** What must not meet in the booth that it names; null where nothing clashes. */
+  clash: BoothClash | null
 }
 
 export async function insertAmendment(amendment: NewAmendment, trx: Knex.Transaction): Promise<void> {
   await trx('amendments').insert({
     id: amendment.id, batch_id: amendment.batchId, field: amendment.field, from_value: amendment.from, to_value: amendment.to, reason: amendment.reason,
     user_id: amendment.userId, approval_id: amendment.approvalId, at: toInstant(amendment.at),
+    clash: amendment.clash && JSON.stringify(amendment.clash),
   })
 }
 

@@ -36,6 +36,8 @@ interface RecordAmendment {
   field: string
   to: string | null
   at: number
+  /** True where it put the pot into a booth in which its chemistry must not be sprayed. */
+  clashes: boolean
 }
 
 /** What the snapshot keeps for reckoning a batch again. */
@@ -207,8 +209,8 @@ async function readEvents(id: string, db: Db): Promise<RecordEvent[]> {
 
 async function readAmendments(id: string, db: Db): Promise<RecordAmendment[]> {
   const rows = await db('amendments').where({ batch_id: id }).orderBy(['at', 'id'])
-    .select<{ field: string; to_value: string | null; at: Date }[]>('field', 'to_value', 'at')
-  return rows.map((row) => ({ field: row.field, to: row.to_value, at: row.at.getTime() }))
+    .select<{ field: string; to_value: string | null; at: Date; clash: string | null }[]>('field', 'to_value', 'at', 'clash')
+  return rows.map((row) => ({ field: row.field, to: row.to_value, at: row.at.getTime(), clashes: row.clash !== null }))
 }
 
 /** Ids of batches in the order of their ids, for a walk over all of them. */

@@ -1,6 +1,7 @@
 import { D, print, sum } from '#shared/engine/decimal'
 import { pourFieldOf, type AmendmentBody } from '#shared/schemas/amendments'
 import type { Batch } from '#shared/schemas/batches'
+import type { BoothClash } from '#shared/utils/bench-booth'
 import { disposalFor } from '#shared/utils/disposal'
 import { insertAmendment } from '../repositories/batch-amendments'
 import { lockCurrent, rewriteCurrent, type CurrentBatch } from '../repositories/batch-current'
@@ -23,6 +24,7 @@ import { checkedValue, isFreeText, plainValue } from './amendment-values'
 import { effectiveOf, type EffectiveBatch } from './batch-effective'
 import { baseChemistryOf } from './batch-sums'
 import { resettleShots } from './booth-air'
+import { clashAt } from './booth-guard'
 import { moveWindows, rewriteCoats } from './coat-amendments'
 import { potAnswer } from './pot-lock'
 import { publishPot } from './pot-view'
@@ -58,25 +60,33 @@ export function amendBatch(ctx: Context, id: string, body: AmendmentBody): Promi
     await requireAmender(m, ctx.principal, before, body.field)
     const to = await requireChange(m, body, before, id)
     const at = Math.max(m.now, (record.amendments.at(-1)?.at ?? 0) + 1)
-    const amended = { ...record, amendments: [...record.amendments, { field: body.field, to, at }] }
+    const clash = await clashOfBooth(m, body.field, record, { from: before.current.boothId, to })
+    const amended = { ...record, amendments: [...record.amendments, { field: body.field, to, at, clashes: clash !== null }] }
     const change: Change = { field: body.field, record, amended, before, after: effectiveOf(amended, m.now), pot }
     await requireTrue(m, body.field, record, before, change.after)
     const approvalId = await requireApproval(m, change, body.approvals)
     const amendmentId = newId()
     const from = before.values.get(body.field) ?? null
-    await insertAmendment({ id: amendmentId, batchId: id, field: body.field, from, to, reason: body.reason, userId, approvalId, at }, m.trx)
+    await insertAmendment({ id: amendmentId, batchId: id, field: body.field, from, to, reason: body.reason, userId, approvalId, at, clash }, m.trx)
     const moves = await write(m, change, userId)
     const values = isFreeText(body.field) ? {} : { from, to }
     m.audit({
       action: 'batch.amended', subject: `batch:${id}`,
       facts: {
         amendmentId, field: body.field, ...values, approvalId, moves: moves.map(({ lotId, grams }) => ({ lotId, grams })),
-        endsAt: change.after.current.endsAt, state: change.after.current.state,
+        endsAt: change.after.current.endsAt, state: change.after.current.state, review: change.after.openReview,
       },
     })
     await publishPot(m, id)
     return potAnswer(m, id)
   })
+}
+
+/** What must not meet in the booth to which a pot is put right: it was sprayed there, so it is kept and marked. */
+async function clashOfBooth(m: Mutation, field: string, record: BatchOnRecord, { from, to }: { from: string | null; to: string | null }): Promise<BoothClash | null> {
+  if (field !== 'boothId' || record.outcome === 'stopped') return null
+  await lockBooths([from, to], m.trx)
+  return clashAt(m, to, record.snapshot.mix, record.mixedAt)
 }
 
 /** @throws Refusal 409 with what holds now when `from` does not, 400 for a value of another form, 422 for the same value */

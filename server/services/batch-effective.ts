@@ -182,27 +182,29 @@ function spreadOf(record: BatchOnRecord, components: readonly RecordComponent[])
   }
 }
 
-/** What a foreman should look at: what the record says, and what an amended weight brought up. */
+/** What a foreman should look at: what the record says, and what an amended weight or booth brought up. */
 function reviewNow(record: BatchOnRecord, cup: Cup): Review {
-  const found = new Set<ReviewCode>()
-  const amended = record.amendments.some(({ field }) => pourFieldOf(field)?.what === 'grams')
-  if (amended && record.outcome === 'mixed') {
+  const found = new Map<ReviewCode, number>()
+  const weighed = record.amendments.findLast(({ field }) => pourFieldOf(field)?.what === 'grams')
+  if (weighed && record.outcome === 'mixed') {
     const approved = record.snapshot.approvals.some(({ action, subject }) => action === 'keep-as-poured' && subject === `batch:${record.id}`)
-    if (spreadOf(record, cup.components).outOfTolerance && !approved) found.add('out-of-tolerance')
-    if (cup.components.some(({ pouredG }) => new D(pouredG).eq(0))) found.add('not-complete')
+    if (spreadOf(record, cup.components).outOfTolerance && !approved) found.set('out-of-tolerance', weighed.at)
+    if (cup.components.some(({ pouredG }) => new D(pouredG).eq(0))) found.set('not-complete', weighed.at)
   }
+  const moved = record.amendments.findLast(({ field }) => field === 'boothId')
+  if (moved?.clashes) found.set('booth-clash', moved.at)
   return { review: reviewCodes.filter((code) => found.has(code) || record.review.includes(code)), found }
 }
 
 interface Review {
   review: ReviewCode[]
-  /** Those that the amended weights bring up. */
-  found: ReadonlySet<ReviewCode>
+  /** Those that an amended weight or booth brings up, each with the moment of the amendment, epoch milliseconds. */
+  found: ReadonlyMap<ReviewCode, number>
 }
 
 /**
- * Codes that no foreman settled. An event that names none settled all there were. A weight that was amended after that
- * opens what it brings up anew.
+ * Codes that no foreman settled. An event that names none settled all there were. A weight or booth that was amended
+ * after that opens what it brings up anew.
  */
 function openOf(record: BatchOnRecord, { review, found }: Review): ReviewCode[] {
   const settledAt = new Map<string, number>()
@@ -210,9 +212,8 @@ function openOf(record: BatchOnRecord, { review, found }: Review): ReviewCode[] 
     if (kind !== 'review-settled') continue
     for (const code of Array.isArray(details.codes) ? details.codes.map(String) : record.review) settledAt.set(code, at)
   }
-  const weighedAt = Math.max(...record.amendments.filter(({ field }) => pourFieldOf(field)?.what === 'grams').map(({ at }) => at), Number.NEGATIVE_INFINITY)
   return review.filter((code) => {
     const at = settledAt.get(code)
-    return at === undefined || (found.has(code) && weighedAt > at)
+    return at === undefined || (found.get(code) ?? at) > at
   })
 }
