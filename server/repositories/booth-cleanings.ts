@@ -1,5 +1,6 @@
 import type { Knex } from 'knex'
 import type { ChemistryRule } from '#shared/engine/chemistry'
+import { D } from '#shared/engine/decimal'
 import type { DraftBody } from '#shared/schemas/drafts'
 import { toInstant } from '../utils/rows'
 
@@ -80,16 +81,21 @@ interface DraftRow {
   updated_at: Date
 }
 
-/** A pot that is being mixed leaves the screens a day after it was last touched, unless something is in its cup. */
-const dayMs = 86_400_000
+/** An empty cup that nobody touched for so long keeps no booth, and asks for it anew when somebody goes on with it. */
+export const emptyCupMs = 86_400_000
 
 /** What is being mixed for a booth now (epoch milliseconds) in other cups than `draftId`. */
 export async function mixesBegunFor(boothId: string, draftId: string, now: number, db: Db): Promise<BoothMix[]> {
   const rows = await db('batch_drafts').where({ booth_id: boothId, state: 'open' }).whereNot('id', draftId)
     .select<DraftRow[]>('mix_revision_id', 'body', 'updated_at')
-  const isPoured = ({ body }: DraftRow) => (JSON.parse(body) as Pick<DraftBody, 'components'>).components.some(({ pours }) => pours.length > 0)
-  return rows.filter(row => row.updated_at.getTime() > now - dayMs || isPoured(row))
-    .map(row => ({ mixRevisionId: row.mix_revision_id, at: row.updated_at.getTime() }))
+  return rows.filter(row => isStillMixed(row, now)).map(row => ({ mixRevisionId: row.mix_revision_id, at: row.updated_at.getTime() }))
+}
+
+/** What was stopped is waste and comes to no booth; a tin that was only named is not in the cup. */
+function isStillMixed({ body, updated_at: touchedAt }: DraftRow, now: number): boolean {
+  const { components, stopped } = JSON.parse(body) as Pick<DraftBody, 'components' | 'stopped'>
+  if (stopped) return false
+  return touchedAt.getTime() > now - emptyCupMs || components.some(({ pours }) => pours.some(({ grams }) => new D(grams).gt(0)))
 }
 
 /** A revision's name and the chemistries of all its components. */

@@ -2,6 +2,7 @@ import { D } from '#shared/engine/decimal'
 import type { Knex } from 'knex'
 import type { Draft, DraftBody, DraftList, DraftListQuery, DraftNote, PotLife } from '#shared/schemas/drafts'
 import { shopDate } from '#shared/utils/zone'
+import { emptyCupMs } from '../repositories/booth-cleanings'
 import { findDraft, insertDraft, listOpenDrafts, lockDraft, updateDraft, type DraftExtras, type StoredDraft } from '../repositories/drafts'
 import { findMixRevision, type MixRevision } from '../repositories/mix-revisions'
 import { readShop } from '../repositories/settings'
@@ -97,9 +98,9 @@ function saveOnce(ctx: Context, id: string, body: DraftBody): Promise<Draft> {
     planOf(references.revision, body.plan, references.scale)
     // Reckoned even before anything reacts, so that a temperature that cannot be is said at once.
     potTimesOf(references.revision, body, m.now)
-    if (isChoiceOfBooth(body, stored)) await refuseClash(m, id, body.boothId, references.revision)
     const moment = momentOf(body, references.revision, stored, m.now)
     const approved = await checkApprovals(m, id, body, stored, references)
+    if (isChoiceOfBooth(body, stored, m.now)) await refuseClash(m, id, body.boothId, references.revision)
     const extras: DraftExtras = { notes: notesOf(body, stored, moment.note), approved }
     const draft = { id, deviceId: deviceOf(ctx, body, stored), reactiveAt: moment.at, body, extras }
     const code = await codeFor(m, ctx, id, body, stored)
@@ -111,10 +112,14 @@ function saveOnce(ctx: Context, id: string, body: DraftBody): Promise<Draft> {
   })
 }
 
-/** Nothing is poured yet, and the booth or the mix is new: what is in a cup already is a fact and is not refused. */
-function isChoiceOfBooth({ boothId, mixRevisionId, components }: DraftBody, stored: StoredDraft | null): boolean {
+/**
+ * Nothing is poured yet, and the booth or the mix is new, or the booth was not kept for it any more: what is in a cup
+ * already is a fact and is not refused, nor is stopping it.
+ */
+function isChoiceOfBooth({ boothId, mixRevisionId, components, stopped }: DraftBody, stored: StoredDraft | null, now: number): boolean {
   const isEmpty = components.every(({ pours }) => pours.every(({ grams }) => new D(grams).eq(0)))
-  return isEmpty && (stored === null || stored.body.boothId !== boothId || stored.body.mixRevisionId !== mixRevisionId)
+  if (!isEmpty || stopped !== null) return false
+  return stored === null || stored.body.boothId !== boothId || stored.body.mixRevisionId !== mixRevisionId || stored.updatedAt <= now - emptyCupMs
 }
 
 /** The device that writes; one that goes on without being enrolled takes the earlier one's name off. */

@@ -29,7 +29,7 @@ export const chemistryWords = (chemistry: string): string => (chemistry === 'uv'
 
 /** Why a mix is not started for a booth for which another one is being mixed, in plain words. */
 export function begunWords({ chemistry, past, advice }: BoothClash, boothName: string): string {
-  return `${past.mixName} (${chemistryWords(past.chemistry)}) is being mixed for ${boothName}; this mix is ${chemistryWords(chemistry)}. ${advice}`
+  return `${past.mixName} (${chemistryWords(past.chemistry)}) is being mixed for ${boothName}; this mix is ${chemistryWords(chemistry)}. Take another booth, or wait until that pot is stopped or sprayed and emptied. ${advice}`
 }
 
 /** Why a mix is not started for a booth, in plain words. */

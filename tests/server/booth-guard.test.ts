@@ -1,12 +1,17 @@
 import { randomUUID } from 'node:crypto'
 import { afterAll, beforeAll, beforeEach, describe, expect, it } from 'vitest'
+import * as z from 'zod/mini'
+import { AmendmentBody } from '#shared/schemas/amendments'
 import type { DraftInput } from '#shared/schemas/drafts'
+import { amendBatch } from '../../server/services/amendments'
 import { sealBatch } from '../../server/services/batches'
 import { closeBatch } from '../../server/services/batch-close'
 import { recordBatchEvent } from '../../server/services/batch-events'
+import { rebuildBatches } from '../../server/services/batch-rebuild'
 import { readBench } from '../../server/services/bench'
 import { boothChemistry, cleanBooth } from '../../server/services/booth-guard'
 import { saveDraft } from '../../server/services/drafts'
+import { settleReview } from '../../server/services/reviews'
 import { seedReference } from '../../seeds/reference'
 import { draftBody, minutesIn, morning, poured } from '../factories/drafts'
 import { makeApproval, makeLot, makeMaterial, makeMix, makeShop, type Shop } from '../factories/shop'
@@ -111,6 +116,42 @@ describe('the booth guard', () => {
     await saveDraft(sprayer(), poured, nitroBody({ boothId: shop.otherBoothId, components: nitroIn(0) }))
     work.clock.now += 25 * 3_600_000
     await expect(saveDraft(sprayer(), randomUUID(), draftBody(shop, { boothId: shop.otherBoothId, components: [] }))).rejects.toMatchObject({ code: 'booth-clash' })
+  })
+
+  it('keeps no booth for ever for a tin that was only named, nor for a cup that was stopped', async () => {
+    const named = [{ index: 0, pours: [{ lotId: nitro.lotId, grams: '0', at: minutesIn(0), source: 'typed' as const, round: 0 }] }]
+    await saveDraft(sprayer(), randomUUID(), nitroBody({ components: named }))
+    const stopped = { at: minutesIn(0), reason: 'Spilled' }
+    await saveDraft(sprayer(), randomUUID(), nitroBody({ boothId: shop.otherBoothId, components: nitroIn(0), stopped }))
+    expect((await saveDraft(sprayer(), randomUUID(), draftBody(shop, { boothId: shop.otherBoothId, components: [] }))).state).toBe('open')
+    await expect(saveDraft(sprayer(), randomUUID(), draftBody(shop, { components: [] }))).rejects.toMatchObject({ code: 'booth-clash' })
+    work.clock.now = morning + 25 * 3_600_000
+    expect((await saveDraft(sprayer(), randomUUID(), draftBody(shop, { components: [] }))).state).toBe('open')
+  })
+
+  it('asks anew for an empty cup that somebody goes on with after a day', async () => {
+    const id = randomUUID()
+    await saveDraft(sprayer(), id, nitroBody())
+    work.clock.now = morning + 25 * 3_600_000
+    await saveDraft(sprayer(), randomUUID(), draftBody(shop, { components: [] }))
+    await expect(saveDraft(sprayer(), id, nitroBody({ seq: 2 }))).rejects.toMatchObject({ code: 'booth-clash' })
+    const stopped = { at: minutesIn(25 * 60), reason: 'Forgotten' }
+    expect((await saveDraft(sprayer(), id, nitroBody({ seq: 2, stopped }))).stopped).toMatchObject({ reason: 'Forgotten' })
+  })
+
+  it('marks a pot that an amendment puts into a booth where it clashes, until a foreman settles it', async () => {
+    await sprayPolyurethane(shop.otherBoothId)
+    const id = randomUUID()
+    await saveDraft(sprayer(), id, nitroBody({ components: nitroIn(-5) }))
+    expect((await sealBatch(sprayer(), { draftId: id })).review).toEqual([])
+    const amend = (from: string, to: string) => amendBatch(work.as('foreman'), id, z.parse(AmendmentBody, { field: 'boothId', from, to, reason: 'Noted for the wrong booth' }))
+    expect(await amend(shop.boothId, shop.otherBoothId)).toMatchObject({ boothId: shop.otherBoothId, review: ['booth-clash'], openReview: ['booth-clash'] })
+    expect((await rebuildBatches(work.asSystem())).changed).toEqual([])
+    work.clock.now += 60_000
+    expect(await settleReview(work.as('foreman'), id, { codes: ['booth-clash'], reason: 'Booth and duct were washed' })).toMatchObject({ openReview: [] })
+    work.clock.now += 60_000
+    expect(await amend(shop.otherBoothId, shop.boothId)).toMatchObject({ review: [], openReview: [] })
+    expect(await amend(shop.boothId, shop.otherBoothId)).toMatchObject({ openReview: ['booth-clash'] })
   })
 
   it('lets one of two clashing mixes begin when both do so at once', async () => {

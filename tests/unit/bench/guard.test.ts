@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest'
 import type { BenchLot, BenchSnapshot, BenchStep } from '#shared/schemas/bench'
 import { chemistryRules } from '#shared/reference/chemistry-rules'
-import { boothClash } from '#shared/utils/bench-booth'
+import { begunWords, boothClash } from '#shared/utils/bench-booth'
 import { approvalsNeeded, listedLots, lotRefusal, offeredLots } from '#shared/utils/bench-lots'
 import { freeCodes, freeRange, takeCode, withBlock } from '#shared/utils/bench-numbers'
 import { clashOfSetup, reckon } from '#shared/utils/bench-reckon'
@@ -22,6 +22,11 @@ describe('a booth that was last used for something else', () => {
     expect(boothClash(['acrylic', 'polyurethane'], past, chemistryRules)?.verdict).toBe('blocked')
     expect(boothClash(['acrylic'], past, chemistryRules)?.verdict).toBe('caution')
     expect(boothClash(['waterborne'], past, chemistryRules)).toBeNull()
+  })
+
+  it('says what helps where the other mix is only being mixed: cleaning does not', () => {
+    const clash = boothClash(['polyurethane'], past, chemistryRules)
+    expect(clash && begunWords(clash, 'Booth 1')).toMatch(/^Topcoat \(nitrocellulose\) is being mixed for Booth 1; this mix is polyurethane\. Take another booth, or wait .*catch fire/)
   })
 
   it('holds the start back and says why, while the figures stand', () => {
