@@ -21,14 +21,14 @@ import { openWorkshop, type Workshop } from './support/context'
 
 let work: Workshop
 beforeAll(async () => {
-  work = await openWorkshop()
+  work = await openWorkshop('amend_sprays')
 }, 120_000)
 beforeEach(async () => {
   work.clock.now = morning
   Object.assign(work.shop, await makeShop(work.admin))
   for (const boothId of [work.shop.boothId, work.shop.otherBoothId]) await setExtraction(work.as('foreman'), boothId, { state: 'running', at: minutesIn(-60) })
 })
-afterAll(() => work.close())
+afterAll(() => work.drop())
 
 const later = (minutes: number) => {
   work.clock.now = morning + minutes * 60_000

@@ -19,12 +19,12 @@ import { openWorkshop, stock, type Workshop } from './support/context'
 
 let work: Workshop
 beforeAll(async () => {
-  work = await openWorkshop()
+  work = await openWorkshop('amendments')
 }, 120_000)
 beforeEach(() => {
   work.clock.now = morning
 })
-afterAll(() => work.close())
+afterAll(() => work.drop())
 
 const loose: Partial<DraftInput> = { jobStepId: null, pieceIds: [], purpose: 'sample boards' }
 

@@ -21,7 +21,7 @@ let work: Workshop
 let shop: Shop
 let nitro: { mixRevisionId: string; lotId: string }
 beforeAll(async () => {
-  work = await openWorkshop()
+  work = await openWorkshop('booth_guard')
   await seedReference(work.admin)
 }, 120_000)
 beforeEach(async () => {
@@ -32,7 +32,7 @@ beforeEach(async () => {
   const mix = await makeMix(work.admin, `${shop.mark}-N`, [[materialId, 'base', '100']], { pot_life_min: null, pot_life_reference_c: null })
   nitro = { mixRevisionId: mix.mixRevisionId, lotId: await makeLot(work.admin, materialId, '5000') }
 })
-afterAll(() => work.close())
+afterAll(() => work.drop())
 
 const sprayer = () => work.as('sprayer')
 const ticked = { booth: true, duct: true, filters: true, approvalId: null } as const

@@ -15,7 +15,7 @@ import { openWorkshop, type Workshop } from './support/context'
 let work: Workshop
 let secondGun: string
 beforeAll(async () => {
-  work = await openWorkshop()
+  work = await openWorkshop('pot_sprays')
   secondGun = randomUUID()
   const [gun] = await work.admin('guns').where({ id: work.shop.gunId }).select<Record<string, unknown>[]>()
   await work.admin('guns').insert({ ...gun, id: secondGun, name: `Second gun ${work.shop.mark}` })
@@ -23,7 +23,7 @@ beforeAll(async () => {
 beforeEach(() => {
   work.clock.now = morning
 })
-afterAll(() => work.close())
+afterAll(() => work.drop())
 
 async function pot(more: Partial<DraftInput> = {}): Promise<string> {
   const id = randomUUID()

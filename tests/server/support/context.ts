@@ -20,9 +20,12 @@ export interface Workshop extends Schema {
   asSystem(): Context
 }
 
-/** All service tests share one schema beside the server's; each file has its own shop in it. */
-export async function openWorkshop(): Promise<Workshop> {
-  const schema = await openSchema('services')
+/**
+ * Service tests share one schema beside the server's, each file with its own shop in it. A file that looks at every batch
+ * there is, as making the present state anew does, names a schema of its own.
+ */
+export async function openWorkshop(name = 'services'): Promise<Workshop> {
+  const schema = await openSchema(name)
   const shop = await makeShop(schema.admin)
   const clock = { now: morning }
   const woken: number[] = []
