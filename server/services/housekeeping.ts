@@ -29,11 +29,11 @@ export async function tidyUp(db: Knex, now: number): Promise<number> {
     + await drain(db, (trx) => deleteLimitsBefore(now - limitDays * dayMs, page, trx))
 }
 
-/** Under READ COMMITTED a delete locks the rows that it takes and no gap that somebody wants to write into. */
+/** Under READ COMMITTED, the level of every connection, a delete locks the rows that it takes and no gap that somebody wants to write into. */
 async function drain(db: Knex, step: (trx: Knex.Transaction) => Promise<number>): Promise<number> {
   let gone = 0
   for (let turn = 0; turn < mostPages; turn++) {
-    const count = await db.transaction(step, { isolationLevel: 'read committed' })
+    const count = await db.transaction(step)
     gone += count
     if (count < page) break
   }

@@ -31,8 +31,8 @@ const retriable = new Set([1213, 1205, 1020])
 const attempts = 6
 
 /**
- * Runs `work` in one READ COMMITTED transaction, with its audit entry and events numbered in commit order
- * by the ledger's single row, which is locked last and held for a few statements only.
+ * Runs `work` in one transaction, READ COMMITTED as every connection is, with its audit entry and events numbered in
+ * commit order by the ledger's single row, which is locked last and held for a few statements only.
  * A request with an idempotency key gets the stored answer when the key was used before.
  *
  * @param work must use `mutation.trx` for every query and must be safe to run again after a rollback
@@ -51,29 +51,26 @@ export async function mutate<T>(ctx: Context, work: (mutation: Mutation) => Prom
 
 async function once<T>(ctx: Context, work: (mutation: Mutation) => Promise<T>): Promise<T> {
   let seq = 0
-  const answer = await ctx.db.transaction(
-    async (trx) => {
-      const now = await ctx.clock.now(trx)
-      if (ctx.idempotency) {
-        const stored = await replayOrClaim(trx, ctx, ctx.idempotency, now)
-        if (stored) return stored.answer as T
-      }
-      const entries: AuditEntry[] = []
-      const events: NewEvent[] = []
-      const result = await work({
-        trx,
-        now,
-        audit: (entry) => void entries.push(entry),
-        publish: (event) => void events.push(event),
-      })
-      const entry = entries[0]
-      if (!entry || entries.length > 1) throw new Error(`a mutation writes one audit entry, not ${entries.length}`)
-      if (ctx.idempotency) await completeIdempotency(trx, ctx, ctx.idempotency, result)
-      seq = await appendLedger(trx, ctx, now, entry, events)
-      return result
-    },
-    { isolationLevel: 'read committed' },
-  )
+  const answer = await ctx.db.transaction(async (trx) => {
+    const now = await ctx.clock.now(trx)
+    if (ctx.idempotency) {
+      const stored = await replayOrClaim(trx, ctx, ctx.idempotency, now)
+      if (stored) return stored.answer as T
+    }
+    const entries: AuditEntry[] = []
+    const events: NewEvent[] = []
+    const result = await work({
+      trx,
+      now,
+      audit: (entry) => void entries.push(entry),
+      publish: (event) => void events.push(event),
+    })
+    const entry = entries[0]
+    if (!entry || entries.length > 1) throw new Error(`a mutation writes one audit entry, not ${entries.length}`)
+    if (ctx.idempotency) await completeIdempotency(trx, ctx, ctx.idempotency, result)
+    seq = await appendLedger(trx, ctx, now, entry, events)
+    return result
+  })
   if (seq > 0) ctx.wake(seq)
   return answer
 }
