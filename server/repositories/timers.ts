@@ -64,21 +64,24 @@ export interface NewTimer {
 }
 
 /**
- * Sets the one timer of its kind and subject. One that stands for the same instant and was not called off keeps
- * what happened to it; one for another instant waits anew.
+ * Sets the one timer of each kind and subject, in the order given. One that stands for the same instant and was not
+ * called off keeps what happened to it; one for another instant waits anew.
  */
-export async function setTimer(timer: NewTimer, now: number, db: Db): Promise<void> {
+export async function setTimers(timers: readonly NewTimer[], now: number, db: Db): Promise<void> {
+  if (timers.length === 0) return
   const at = toInstant(now)
   // MariaDB assigns from left to right: due_at moves last, so that the others still see the old instant.
   const kept = (column: string, otherwise: string) =>
     `${column} = IF(due_at = VALUES(due_at) AND state NOT IN ('cancelled', 'done'), ${column}, ${otherwise})`
   await db.raw(
     `INSERT INTO timers (id, kind, subject_type, subject_id, booth_id, label, due_at, state, created_by_user_id, version, created_at, updated_at)
-     VALUES (?, ?, ?, ?, ?, ?, ?, 'waiting', ?, 1, ?, ?)
+     VALUES ${timers.map(() => '(?, ?, ?, ?, ?, ?, ?, \'waiting\', ?, 1, ?, ?)').join(', ')}
      ON DUPLICATE KEY UPDATE ${kept('fired_at', 'NULL')}, ${kept('announced_at', 'NULL')}, ${kept('silenced_until', 'NULL')},
        ${kept('silenced_by', 'NULL')}, ${kept('silenced_reason', 'NULL')}, ${kept('acknowledged_at', 'NULL')}, ${kept('acknowledged_by', 'NULL')}, ${kept('state', '\'waiting\'')},
        booth_id = VALUES(booth_id), label = VALUES(label), due_at = VALUES(due_at), version = version + 1, updated_at = VALUES(updated_at)`,
-    [newId(), timer.kind, timer.subjectType, timer.subjectId, timer.boothId, timer.label, toInstant(timer.dueAt), timer.createdByUserId ?? null, at, at],
+    timers.flatMap(timer => [
+      newId(), timer.kind, timer.subjectType, timer.subjectId, timer.boothId, timer.label, toInstant(timer.dueAt), timer.createdByUserId ?? null, at, at,
+    ]),
   )
 }
 

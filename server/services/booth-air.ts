@@ -3,7 +3,7 @@ import type { BoothExtractionBody } from '#shared/schemas/shop'
 import { lockBooths } from '../repositories/booth-locks'
 import { findClearanceFacts, insertExtractionChange, lockExtraction, noteIsocyanateShot } from '../repositories/clearance'
 import { findLastIsocyanateShot, putIsocyanateShot } from '../repositories/isocyanate-shots'
-import { setTimer } from '../repositories/timers'
+import { setTimers } from '../repositories/timers'
 import { userIdOf, type Context } from '../utils/context'
 import { notFound, ruleBroken } from '../utils/errors'
 import { mutate, type Mutation } from '../utils/transactions'
@@ -24,7 +24,7 @@ export async function settleClearance(m: Mutation, boothId: string): Promise<voi
   const clearance = judgeClearance(facts, m.now)
   if (clearance?.state === 'counting' && clearance.clearAt !== null) {
     const label = `${facts.boothName}: clear of isocyanates`
-    await setTimer({ kind: 'clearance', subjectType: 'booth', subjectId: boothId, boothId, label, dueAt: Date.parse(clearance.clearAt) }, m.now, m.trx)
+    await setTimers([{ kind: 'clearance', subjectType: 'booth', subjectId: boothId, boothId, label, dueAt: Date.parse(clearance.clearAt) }], m.now, m.trx)
   } else {
     await cancelTimers(m, 'booth', boothId)
   }

@@ -1,5 +1,5 @@
 import type { Timer, TimerCreateBody, TimerExtendBody, TimerSilenceBody } from '#shared/schemas/timers'
-import { findTimerOf, getTimer, lockTimer, lockTimersOf, setTimer, timedApplicationsUnder, untimedApplicationsUnder, updateTimer, type TimerChange } from '../repositories/timers'
+import { findTimerOf, getTimer, lockTimer, lockTimersOf, setTimers, timedApplicationsUnder, untimedApplicationsUnder, updateTimer, type TimerChange } from '../repositories/timers'
 import { activeName } from '../repositories/people-names'
 import { findWindows } from '../repositories/windows'
 import type { Context, Principal } from '../utils/context'
@@ -39,8 +39,7 @@ export interface PotTimers {
  */
 export async function setPotTimers(m: Mutation, pot: PotTimers): Promise<void> {
   const subject = { subjectType: 'batch', subjectId: pot.batchId, boothId: pot.boothId, label: pot.label } as const
-  await setTimer({ ...subject, kind: 'pot-late', dueAt: pot.lateAt }, m.now, m.trx)
-  await setTimer({ ...subject, kind: 'pot-up', dueAt: pot.endsAt }, m.now, m.trx)
+  await setTimers([{ ...subject, kind: 'pot-late', dueAt: pot.lateAt }, { ...subject, kind: 'pot-up', dueAt: pot.endsAt }], m.now, m.trx)
 }
 
 /** Instants of the window that an application started, epoch milliseconds. Null where there is none, or nothing to set. */
@@ -56,9 +55,8 @@ export interface WindowTimers {
 /** Sets or moves the timers of a window and tells the screens. The application's row must be there already. */
 export async function setWindowTimers(m: Mutation, window: WindowTimers): Promise<void> {
   const subject = { subjectType: 'application', subjectId: window.applicationId, boothId: window.boothId, label: window.label } as const
-  if (window.opensAt !== null) await setTimer({ ...subject, kind: 'window-opens', dueAt: window.opensAt }, m.now, m.trx)
-  if (window.closingAt !== null) await setTimer({ ...subject, kind: 'window-closing', dueAt: window.closingAt }, m.now, m.trx)
-  if (window.closesAt !== null) await setTimer({ ...subject, kind: 'window-closes', dueAt: window.closesAt }, m.now, m.trx)
+  const instants = [['window-opens', window.opensAt], ['window-closing', window.closingAt], ['window-closes', window.closesAt]] as const
+  await setTimers(instants.flatMap(([kind, dueAt]) => (dueAt === null ? [] : [{ ...subject, kind, dueAt }])), m.now, m.trx)
   await publishWindow(m, window.applicationId, window.boothId)
   await endWindowsUnder(m, window.applicationId)
 }
@@ -114,8 +112,8 @@ export function createTimer(ctx: Context, body: TimerCreateBody): Promise<Timer>
     }
     const subjectId = newId()
     const dueAt = m.now + body.minutes * minuteMs
-    await setTimer(
-      { kind: 'free', subjectType: 'free', subjectId, boothId: body.boothId, label: body.name, dueAt, createdByUserId: userIdOf(ctx.principal) },
+    await setTimers(
+      [{ kind: 'free', subjectType: 'free', subjectId, boothId: body.boothId, label: body.name, dueAt, createdByUserId: userIdOf(ctx.principal) }],
       m.now,
       m.trx,
     )
