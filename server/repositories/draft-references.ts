@@ -1,6 +1,7 @@
 import type { Knex } from 'knex'
 import type { OimlClass } from '#shared/engine/scale'
 import { decimalOf, decimalOrNull } from '../utils/rows'
+import { zoneOf } from './settings'
 
 type Db = Knex | Knex.Transaction
 
@@ -23,20 +24,56 @@ interface ScaleRow {
   verification_interval_g: string | null
 }
 
-export async function findScale(id: string, db: Db): Promise<ScaleRecord | null> {
-  const row = await db('scales').where({ id }).first<ScaleRow | undefined>(
-    'id', 'division_g', 'capacity_g', 'mpe_g', 'accuracy_class', 'verification_interval_g',
-  )
-  return row
-    ? {
-        id: row.id,
-        divisionG: decimalOf(row.division_g),
-        capacityG: decimalOf(row.capacity_g),
-        mpeG: decimalOrNull(row.mpe_g),
-        accuracyClass: row.accuracy_class,
-        verificationIntervalG: decimalOrNull(row.verification_interval_g),
-      }
-    : null
+function toScale(row: ScaleRow): ScaleRecord {
+  return {
+    id: row.id,
+    divisionG: decimalOf(row.division_g),
+    capacityG: decimalOf(row.capacity_g),
+    mpeG: decimalOrNull(row.mpe_g),
+    accuracyClass: row.accuracy_class,
+    verificationIntervalG: decimalOrNull(row.verification_interval_g),
+  }
+}
+
+/** Single rows that a draft names, and the shop's time zone. */
+export interface NamedPlaces {
+  scale: ScaleRecord | null
+  hasBooth: boolean
+  hasGun: boolean
+  hasUser: boolean
+  /** IANA time zone. */
+  zone: string
+}
+
+interface PlacesRow extends Omit<ScaleRow, 'id'> {
+  id: string | null
+  booth_id: string | null
+  gun_id: string | null
+  user_id: string | null
+  shop: string | null
+}
+
+/** Looks single rows up by their ids, in one statement; what is archived is there too, since what was done with it stays true. */
+export async function findPlaces(
+  { scaleId, boothId, gunId, userId }: { scaleId: string | null, boothId: string | null, gunId: string | null, userId: string }, db: Db,
+): Promise<NamedPlaces> {
+  const row = await db.from(db.raw('(SELECT 1 AS one) AS n'))
+    .leftJoin('scales as s', 's.id', db.raw('?', [scaleId]))
+    .leftJoin('booths as b', 'b.id', db.raw('?', [boothId]))
+    .leftJoin('guns as g', 'g.id', db.raw('?', [gunId]))
+    .leftJoin('users as u', 'u.id', db.raw('?', [userId]))
+    .leftJoin('settings as z', 'z.name', db.raw('?', ['shop']))
+    .first<PlacesRow>(
+      's.id', 's.division_g', 's.capacity_g', 's.mpe_g', 's.accuracy_class', 's.verification_interval_g',
+      'b.id as booth_id', 'g.id as gun_id', 'u.id as user_id', 'z.value as shop',
+    )
+  return {
+    scale: row.id === null ? null : toScale({ ...row, id: row.id }),
+    hasBooth: row.booth_id !== null,
+    hasGun: row.gun_id !== null,
+    hasUser: row.user_id !== null,
+    zone: zoneOf(row.shop),
+  }
 }
 
 /** True when the row is there, in use or archived: what was done with it stays true. */

@@ -1,6 +1,6 @@
 import type { Knex } from 'knex'
 import { newId } from '../utils/ids'
-import { markShort, openLot, stockOf } from './lot-stock'
+import { markShort, openLots, stockOf } from './lot-stock'
 
 /** Grams that go back into a lot, or, below nothing, leave it after all. */
 export interface Compensation {
@@ -19,7 +19,8 @@ export async function compensateLots(
   await trx('lot_movements').insert(moves.map(({ lotId, grams }) => ({
     id: newId(), lot_id: lotId, kind: 'compensation', grams, batch_id: batchId, user_id: userId, at: now, created_at: now,
   })))
-  for (const { lotId, grams } of moves) if (grams.startsWith('-')) await openLot(lotId, pouredAt(lotId), now, trx)
+  const taken = moves.filter(({ grams }) => grams.startsWith('-'))
+  await openLots(taken.map(({ lotId }) => ({ lotId, at: pouredAt(lotId) })), now, trx)
   const stock = await stockOf(moves.map(({ lotId }) => lotId), trx)
   await markShort(stock, now, trx)
   return stock

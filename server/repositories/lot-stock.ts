@@ -24,12 +24,17 @@ interface LotRow {
   state: StockLot['state']
 }
 
-export async function findStockLots(ids: readonly string[], db: Db): Promise<Map<string, StockLot>> {
+/**
+ * Lots by their ids.
+ *
+ * @param options.hold locks them, but not their materials, until the transaction ends; in the same order as `lockLots`
+ */
+export async function findStockLots(ids: readonly string[], db: Db, { hold = false } = {}): Promise<Map<string, StockLot>> {
   if (ids.length === 0) return new Map()
-  const rows = await db('lots as l')
-    .join('materials as m', 'm.id', 'l.material_id')
-    .whereIn('l.id', [...ids])
-    .select<LotRow[]>('l.id', 'l.material_id', 'm.role as material_role', 'l.lot_number', 'l.expires_on', 'l.state')
+  const query = db('lots as l').whereIn('l.id', [...ids]).orderBy('l.id').select<LotRow[]>(
+    'l.id', 'l.material_id', db('materials as m').whereRaw('m.id = l.material_id').select('m.role').as('material_role'), 'l.lot_number', 'l.expires_on', 'l.state',
+  )
+  const rows = await (hold ? query.forUpdate() : query)
   return new Map(rows.map((row) => [row.id, {
     id: row.id,
     materialId: row.material_id,
@@ -52,7 +57,7 @@ export interface Drawn {
   at: Date
 }
 
-/** Books what a batch took, opens tins that were sealed and marks those whose stock cannot be right for counting. */
+/** Books what a batch took and marks lots whose stock cannot be right for counting. */
 export async function drawFromLots(
   drawn: readonly Drawn[], batchId: string, userId: string, now: Date, trx: Knex.Transaction,
 ): Promise<{ id: string; stockG: string }[]> {
@@ -60,7 +65,6 @@ export async function drawFromLots(
   await trx('lot_movements').insert(drawn.map(({ lotId, grams, at }) => ({
     id: newId(), lot_id: lotId, kind: 'poured', grams: `-${grams}`, batch_id: batchId, user_id: userId, at, created_at: now,
   })))
-  for (const { lotId, at } of drawn) await openLot(lotId, at, now, trx)
   const stock = await stockOf(drawn.map(({ lotId }) => lotId), trx)
   await markShort(stock, now, trx)
   return stock
@@ -74,10 +78,12 @@ export async function markShort(stock: readonly { id: string; stockG: string }[]
     .update({ count_needed: true, updated_at: now, version: trx.raw('version + 1') })
 }
 
-/** A tin that was sealed is in use from its first pour on. */
-export async function openLot(id: string, at: Date, now: Date, trx: Knex.Transaction): Promise<void> {
-  await trx('lots').where({ id, state: 'sealed' })
-    .update({ state: 'in-use', opened_at: trx.raw('COALESCE(opened_at, ?)', [at]), updated_at: now, version: trx.raw('version + 1') })
+/** A tin that was sealed is in use from its first pour on; one in any other state is left as it is. */
+export async function openLots(pours: readonly Pick<Drawn, 'lotId' | 'at'>[], now: Date, trx: Knex.Transaction): Promise<void> {
+  if (pours.length === 0) return
+  const pouredAt = trx.raw(`COALESCE(opened_at, CASE id ${pours.map(() => 'WHEN ? THEN ?').join(' ')} END)`, pours.flatMap(({ lotId, at }) => [lotId, at]))
+  await trx('lots').whereIn('id', pours.map(({ lotId }) => lotId)).where({ state: 'sealed' })
+    .update({ state: 'in-use', opened_at: pouredAt, updated_at: now, version: trx.raw('version + 1') })
 }
 
 /** Present stock by the movements, in grams; a lot without any is left out; below nothing when more was poured than was booked in. */

@@ -68,19 +68,17 @@ interface ComponentRow {
 }
 
 export async function findMixRevision(id: string, db: Db): Promise<MixRevision | null> {
-  const row = await db('mix_revisions as r').join('mixes as m', 'm.id', 'r.mix_id').where('r.id', id).first<RevisionRow | undefined>(
-    'r.id', 'r.mix_id', 'm.code as mix_code', 'm.name as mix_name', 'r.number', 'r.basis', 'r.pot_life_min', 'r.pot_life_reference_c',
-    'r.pot_life_table', 'r.halves_per_c', 'r.late_from_pct', 'r.induction_min',
-  )
-  if (!row) return null
-  const components = await db('mix_components as c')
-    .join('materials as a', 'a.id', 'c.material_id')
-    .where('c.mix_revision_id', id)
-    .orderBy('c.position')
-    .select<ComponentRow[]>(
+  const rows = await db('mix_revisions as r').join('mixes as m', 'm.id', 'r.mix_id')
+    .join('mix_components as c', 'c.mix_revision_id', 'r.id').join('materials as a', 'a.id', 'c.material_id')
+    .where('r.id', id).orderBy('c.position')
+    .select<(RevisionRow & ComponentRow)[]>(
+      'r.id', 'r.mix_id', 'm.code as mix_code', 'm.name as mix_name', 'r.number', 'r.basis', 'r.pot_life_min', 'r.pot_life_reference_c',
+      'r.pot_life_table', 'r.halves_per_c', 'r.late_from_pct', 'r.induction_min',
       'c.material_id', 'a.code as material_code', 'a.name as material_name', 'a.chemistry', 'a.contains_isocyanates', 'c.role', 'c.parts',
       'c.parts_max', 'c.tolerance_pct', 'c.reactive', 'a.density_g_per_ml',
     )
+  const [row] = rows
+  if (!row) return null
   return {
     id: row.id,
     mixId: row.mix_id,
@@ -94,7 +92,7 @@ export async function findMixRevision(id: string, db: Db): Promise<MixRevision |
     halvesPerC: decimalOrNull(row.halves_per_c),
     lateFromPct: decimalOf(row.late_from_pct),
     inductionMin: decimalOf(row.induction_min),
-    components: components.map(toComponent),
+    components: rows.map(toComponent),
   }
 }
 

@@ -22,6 +22,9 @@ export async function readShop(db: Knex | Knex.Transaction): Promise<ShopSetting
   return { name: shop.name ?? fallback.name, zone: shop.zone ?? fallback.zone, currency: shop.currency ?? fallback.currency, demo: values.demo === true }
 }
 
+/** The shop's IANA time zone in the value of its settings; UTC before they were ever set. */
+export const zoneOf = (value: string | null): string => ((value === null ? {} : JSON.parse(value)) as Partial<ShopSettings>).zone ?? fallback.zone
+
 /** The shop's settings with their version, held until the transaction ends where `trx` is one; version 0 before they were ever set. */
 export async function readSettings(db: Knex | Knex.Transaction, { hold = false } = {}): Promise<Settings> {
   const query = db('settings').where({ name: 'shop' })

@@ -7,9 +7,8 @@ import { insertUses } from '../repositories/batch-uses'
 import { insertBatch, insertWaste, type PourRecord } from '../repositories/batches'
 import { startJobStep } from '../repositories/draft-references'
 import { endDraft, lockDraft, type StoredDraft } from '../repositories/drafts'
-import { drawFromLots, lockLots } from '../repositories/lot-stock'
+import { drawFromLots, findStockLots, openLots } from '../repositories/lot-stock'
 import type { MixRevision } from '../repositories/mix-revisions'
-import { readShop } from '../repositories/settings'
 import type { Context } from '../utils/context'
 import { notFound, Refusal, ruleBroken } from '../utils/errors'
 import { toInstant } from '../utils/rows'
@@ -47,19 +46,18 @@ export function sealBatch(ctx: Context, { draftId, holder = null }: BatchCreateI
     const pours = poursOf(sealing)
     if (pours.length === 0 && !draft.body.stopped) throw ruleBroken('nothing-poured', 'Nothing was poured into this cup yet.')
     await writeBatch(m, sealing, pours)
-    await publishPot(m, draftId)
-    return potAnswer(m, draftId)
+    await publishPot(m, draftId, { fresh: true })
+    return potAnswer(m, draftId, { fresh: true })
   })
 }
 
 async function readSealing(m: Mutation, draft: StoredDraft): Promise<Sealing> {
-  await lockLots(lotIdsOf(draft.body), m.trx)
-  const references = await readReferences(draft.body, m.trx)
+  const lots = await findStockLots(lotIdsOf(draft.body), m.trx, { hold: true })
+  const references = await readReferences(draft.body, m.trx, lots)
   refuseImpossible(draft.body, references)
   const { revision, scale } = references
   const mixedAt = mixedAtOf({ draft, now: m.now }, poursOf({ draft, now: m.now }))
   const reactiveAt = draft.reactiveAt ?? (potLives(revision) ? reactiveByPours(revision, draft.body, m.now) : null)
-  const { zone } = await readShop(m.trx)
   return {
     draft: { ...draft, body: { ...draft.body, stopped: disposedOf(draft, revision, reactiveAt) } },
     references,
@@ -68,7 +66,7 @@ async function readSealing(m: Mutation, draft: StoredDraft): Promise<Sealing> {
     reactiveAt,
     clash: draft.body.stopped ? null : await clashAt(m, draft.body.boothId, revision, mixedAt),
     now: m.now,
-    zone,
+    zone: references.zone,
   }
 }
 
@@ -108,6 +106,7 @@ async function writeBatch(m: Mutation, sealing: Sealing, pours: readonly PourRec
   await insertUses({
     batchId: draft.id, mixedAt, usedIds: [...pours.map(({ lotId }) => lotId), ...references.revision.components.map(({ materialId }) => materialId)],
   }, m.trx)
+  await openLots(drawn.filter(({ lotId }) => references.lots.get(lotId)?.state === 'sealed'), toInstant(m.now), m.trx)
   const stock = await drawFromLots(drawn, draft.id, body.mixedByUserId, toInstant(m.now), m.trx)
   await (body.stopped ? endStopped(m, sealing) : startPot(m, sealing))
   await endDraft(draft.id, body.stopped ? 'stopped' : 'sealed', m.now, m.trx)

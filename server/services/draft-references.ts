@@ -1,6 +1,6 @@
 import type { Knex } from 'knex'
 import type { DraftBody } from '#shared/schemas/drafts'
-import { countPiecesOf, findJobStep, findScale, isThere, type JobStep, type ScaleRecord } from '../repositories/draft-references'
+import { countPiecesOf, findJobStep, findPlaces, type JobStep, type ScaleRecord } from '../repositories/draft-references'
 import { findStockLots, type StockLot } from '../repositories/lot-stock'
 import { findMixRevision, type MixRevision } from '../repositories/mix-revisions'
 import { invalid, type FieldFault } from '../utils/errors'
@@ -12,23 +12,29 @@ export interface DraftReferences {
   scale: ScaleRecord | null
   /** By id; a lot that is named but unknown is missing. */
   lots: Map<string, StockLot>
+  /** The shop's IANA time zone. */
+  zone: string
 }
 
-/** @throws Refusal 400 naming every reference that leads nowhere */
-export async function readReferences(body: DraftBody, db: Knex | Knex.Transaction): Promise<DraftReferences> {
+/**
+ * @param held the draft's lots, where they were read already
+ * @throws Refusal 400 naming every reference that leads nowhere
+ */
+export async function readReferences(body: DraftBody, db: Knex | Knex.Transaction, held?: DraftReferences['lots']): Promise<DraftReferences> {
   const faults: FieldFault[] = []
   const missing = (path: string, message: string) => void faults.push({ path, message })
   const revision = await findMixRevision(body.mixRevisionId, db)
   if (!revision) missing('mixRevisionId', 'There is no such mix.')
-  const scale = body.scaleId === null ? null : await findScale(body.scaleId, db)
-  if (body.scaleId !== null && !scale) missing('scaleId', 'There is no such scale.')
-  if (body.boothId !== null && !(await isThere('booths', body.boothId, db))) missing('boothId', 'There is no such booth.')
-  if (body.gunId !== null && !(await isThere('guns', body.gunId, db))) missing('gunId', 'There is no such gun.')
-  if (!(await isThere('users', body.mixedByUserId, db))) missing('mixedByUserId', 'There is no such person.')
+  const { scaleId, boothId, gunId, mixedByUserId: userId } = body
+  const { scale, hasBooth, hasGun, hasUser, zone } = await findPlaces({ scaleId, boothId, gunId, userId }, db)
+  if (scaleId !== null && !scale) missing('scaleId', 'There is no such scale.')
+  if (boothId !== null && !hasBooth) missing('boothId', 'There is no such booth.')
+  if (gunId !== null && !hasGun) missing('gunId', 'There is no such gun.')
+  if (!hasUser) missing('mixedByUserId', 'There is no such person.')
   const jobStep = await readJobStep(body, revision, missing, db)
   if (!revision || faults.length > 0) throw invalid(faults)
-  const lots = await findStockLots(lotIdsOf(body), db)
-  return { revision, jobStep, scale, lots }
+  const lots = held ?? await findStockLots(lotIdsOf(body), db)
+  return { revision, jobStep, scale, lots, zone }
 }
 
 /** Every lot named in a draft, once. */

@@ -5,7 +5,6 @@ import { shopDate } from '#shared/utils/zone'
 import { emptyCupMs } from '../repositories/booth-cleanings'
 import { findDraft, insertDraft, listOpenDrafts, lockDraft, updateDraft, type DraftExtras, type StoredDraft } from '../repositories/drafts'
 import { findMixRevision, type MixRevision } from '../repositories/mix-revisions'
-import { readShop } from '../repositories/settings'
 import { lockOpenApprovals, useApprovals } from '../repositories/used-approvals'
 import type { Context } from '../utils/context'
 import { notFound, Refusal, ruleBroken } from '../utils/errors'
@@ -169,7 +168,7 @@ const lotActions: ReadonlySet<string> = new Set(['use-expired-lot', 'use-blocked
  * happened and is stored; sealing marks it for a foreman.
  */
 async function checkApprovals(
-  m: Mutation, id: string, body: DraftBody, stored: StoredDraft | null, { lots }: DraftReferences,
+  m: Mutation, id: string, body: DraftBody, stored: StoredDraft | null, { lots, zone }: DraftReferences,
 ): Promise<DraftExtras['approved']> {
   const approved = [...(stored?.extras.approved ?? [])]
   const offered = [...body.approvals, ...body.corrections.flatMap(({ approvalId }) => approvalId ?? [])]
@@ -182,7 +181,6 @@ async function checkApprovals(
   }
   // A word for a tin is taken when it is given, not when the first gram of it arrives: it lasts for minutes only.
   for (const one of open.filter(({ id: openId, action }) => body.approvals.includes(openId) && lotActions.has(action))) use(one.action, one.subject)
-  const { zone } = await readShop(m.trx)
   for (const { path, lotId, at } of newPoursOf(body, stored?.body ?? null)) {
     const lot = lots.get(lotId)
     if (!lot) throw new Error('a lot was lost after it was checked')
