@@ -2,7 +2,7 @@ import type { Knex } from 'knex'
 import type { ChemistryRule } from '#shared/engine/chemistry'
 import { D } from '#shared/engine/decimal'
 import type { DraftBody } from '#shared/schemas/drafts'
-import { toInstant } from '../utils/rows'
+import { msOrNull, toInstant } from '../utils/rows'
 
 type Db = Knex | Knex.Transaction
 
@@ -26,11 +26,12 @@ export async function lastCleaning(boothId: string, until: number, db: Db): Prom
   return row ? { at: row.cleaned_at.getTime(), userName: row.name } : null
 }
 
-/** When the booth was next recorded clean after an instant; null where it was not. */
-export async function nextCleaningAt(boothId: string, after: number, db: Db): Promise<number | null> {
-  const row = await db('booth_cleanings').where({ booth_id: boothId }).where('cleaned_at', '>', toInstant(after)).orderBy('cleaned_at')
-    .first<{ cleaned_at: Date } | undefined>('cleaned_at')
-  return row ? row.cleaned_at.getTime() : null
+/** When a booth was last recorded clean at or before an instant, and next after it (epoch milliseconds); null where it was not. */
+export async function cleaningsAround(boothId: string, at: number, db: Db): Promise<{ last: number | null, next: number | null }> {
+  const edge = (most: 'MAX' | 'MIN', side: '<=' | '>') =>
+    db('booth_cleanings').where({ booth_id: boothId }).where('cleaned_at', side, toInstant(at)).select(db.raw(`${most}(cleaned_at)`))
+  const row = await db.first<{ last_at: Date | null, next_at: Date | null }>(edge('MAX', '<=').as('last_at'), edge('MIN', '>').as('next_at'))
+  return { last: msOrNull(row.last_at), next: msOrNull(row.next_at) }
 }
 
 export async function insertCleaning(cleaning: { id: string, boothId: string, userId: string, at: number }, db: Db): Promise<void> {

@@ -3,7 +3,7 @@ import type { ChemistryRule } from '#shared/engine/chemistry'
 import type { BoothChemistry, BoothCleanBody, BoothPast } from '#shared/schemas/booth-cleanings'
 import { begunWords, boothClash, clashWords, type BoothClash } from '#shared/utils/bench-booth'
 import {
-  chemistriesOf, findBoothName, insertCleaning, lastCleaning, listBoothRules, mixesBegunFor, mixesInBooth, nextCleaningAt, type BoothMix,
+  chemistriesOf, cleaningsAround, findBoothName, insertCleaning, lastCleaning, listBoothRules, mixesBegunFor, mixesInBooth, type BoothMix,
 } from '../repositories/booth-cleanings'
 import { lockBooths, shareBooth } from '../repositories/booth-locks'
 import type { MixRevision } from '../repositories/mix-revisions'
@@ -79,17 +79,19 @@ function clashing(message: string) {
   return ruleBroken('booth-clash', message, [{ path: 'boothId', message }])
 }
 
-/** The blocked clash of a batch that is in the cup already, with what was made for its booth between the same two cleanings. */
+/**
+ * The blocked clash of a batch that is in the cup already, with what was made for its booth between the same two cleanings.
+ * A mix that no rule keeps apart from anything looks at no booth: its own row shares the booth once it is written.
+ */
 export async function clashAt(m: Mutation, boothId: string | null, revision: MixRevision, mixedAt: number): Promise<BoothClash | null> {
   if (boothId === null) return null
   const { trx: db } = m
-  const rules = await listBoothRules(db)
+  const own = chemistriesOfMix(revision)
+  const rules = (await listBoothRules(db)).filter(({ first, second, verdict }) => verdict === 'blocked' && (own.includes(first) || own.includes(second)))
+  if (rules.length === 0) return null
   await holdBooth(boothId, revision, rules, m)
-  const cleaning = await lastCleaning(boothId, mixedAt, db)
-  const until = await nextCleaningAt(boothId, mixedAt, db)
-  const past = await pastOf(await mixesInBooth(boothId, cleaning?.at ?? null, until, db), db)
-  const clash = boothClash(chemistriesOfMix(revision), past, rules)
-  return clash?.verdict === 'blocked' ? clash : null
+  const { last, next } = await cleaningsAround(boothId, mixedAt, db)
+  return boothClash(own, await pastOf(await mixesInBooth(boothId, last, next, db), db), rules)
 }
 
 /**
