@@ -40,8 +40,13 @@ interface PageRow extends NamedRow {
   viscosity_seconds: string | null
 }
 
-/** Everything about one batch, in a fixed number of reads. */
-export async function findBatch(id: string, db: Db): Promise<Batch | null> {
+/**
+ * Everything about one batch, in a fixed number of reads.
+ *
+ * @param options.fresh the batch was sealed in this transaction: nothing can have happened to it yet, so that its events,
+ * amendments and coats are not looked for
+ */
+export async function findBatch(id: string, db: Db, { fresh = false } = {}): Promise<Batch | null> {
   const row = (await selectNamed(db('batches as b').join('batch_current as c', 'c.batch_id', 'b.id'))
     .leftJoin('scales as sc', 'sc.id', 'b.scale_id')
     .leftJoin('devices as d', 'd.id', 'b.device_id')
@@ -56,7 +61,7 @@ export async function findBatch(id: string, db: Db): Promise<Batch | null> {
   const facts = row.effective === null ? null : (JSON.parse(row.effective) as EffectiveFacts)
   const { components, chemistry, containsIsocyanates } = await readComponents(id, facts, db)
   const snapshot = JSON.parse(row.snapshot) as BatchSnapshot
-  const events = await readEvents(id, db)
+  const events = fresh ? [] : await readEvents(id, db)
   const page = toPage(row, facts)
   return {
     ...toNamed(row),
@@ -70,10 +75,11 @@ export async function findBatch(id: string, db: Db): Promise<Batch | null> {
     stopped: snapshot.stopped,
     working: facts?.working ?? snapshot.working,
     engineVersion: snapshot.engineVersion,
-    pieces: await readPieces(id, db),
+    // Pieces are always those of a step of a job.
+    pieces: row.job_step_id === null ? [] : await readPieces(id, db),
     events,
-    amendments: await readAmendments(id, db),
-    applications: await readApplications(id, db),
+    amendments: fresh ? [] : await readAmendments(id, db),
+    applications: fresh ? [] : await readApplications(id, db),
   }
 }
 

@@ -63,6 +63,8 @@ export interface PotFilter {
   boothId?: string | null
   /** Only what still matters to a booth at this instant, epoch milliseconds. */
   liveAt?: number
+  /** The one batch was sealed in this transaction: no gun has done anything with it yet. */
+  fresh?: boolean
 }
 
 /** A pot without pot life, and a draft without hardener, leave the screens a day after they were begun. */
@@ -112,7 +114,7 @@ async function sealedPots(filter: PotFilter, db: Db): Promise<LivePot[]> {
     )
   }
   const rows = (await query) as SealedRow[]
-  const shots = await listSprays(rows.map(({ id }) => id), db)
+  const shots = filter.fresh ? [] : await listSprays(rows.map(({ id }) => id), db)
   return rows.map((row) => toSealedPot(row, shots.filter((shot) => shot.batchId === row.id)))
 }
 
@@ -235,6 +237,7 @@ function draftState(row: DraftRow): LivePot['state'] {
 /** Pots being mixed and pots sealed; a sealed one stands for its draft. The soonest to end comes first. */
 export async function findPots(filter: PotFilter, db: Db): Promise<LivePot[]> {
   const sealed = await sealedPots(filter, db)
+  if (filter.batchId !== undefined && sealed.length > 0) return sealed
   const known = new Set(sealed.map(({ id }) => id))
   const drafts = (await draftPots(filter, db)).filter(({ id }) => !known.has(id))
   const end = (pot: LivePot) => (pot.endsAt === null ? Number.POSITIVE_INFINITY : Date.parse(pot.endsAt))

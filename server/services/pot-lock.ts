@@ -27,9 +27,9 @@ export async function lockPot(ctx: Context, m: Mutation, id: string): Promise<Cu
   return pot
 }
 
-/** The batch as this transaction leaves it. */
-export async function potAnswer(m: Mutation, id: string): Promise<Batch> {
-  const batch = await findBatch(id, m.trx)
+/** The batch as this transaction leaves it. @param options.fresh it was sealed in this transaction */
+export async function potAnswer(m: Mutation, id: string, options: { fresh?: boolean } = {}): Promise<Batch> {
+  const batch = await findBatch(id, m.trx, options)
   if (!batch) throw new Error('a batch was lost in its own transaction')
   return batch
 }

@@ -6,6 +6,7 @@ import type { DraftInput } from '#shared/schemas/drafts'
 import { verifyChain } from '../../server/utils/audit'
 import { saveDraft } from '../../server/services/drafts'
 import { getBatch, sealBatch } from '../../server/services/batches'
+import { potView } from '../../server/services/pot-view'
 import { draftBody, minutesIn, morning, poured } from '../factories/drafts'
 import { makeApproval, makeLot, makeShop, type Shop } from '../factories/shop'
 import { idempotency, openWorkshop, stock, type Workshop } from './support/context'
@@ -57,6 +58,30 @@ describe('sealing a batch', () => {
     expect(await rows('job_steps', { id: shop.jobStepId })).toMatchObject([{ state: 'started', version: 2 }])
     expect(await rows('lots', { id: shop.lots.base })).toMatchObject([{ state: 'in-use', opened_at: new Date(minutesIn(-10)), count_needed: 0 }])
     expect(await rows('batch_drafts', { id })).toMatchObject([{ state: 'sealed' }])
+  })
+
+  it('opens each sealed tin at its own first pour, and leaves one in use as it is', async () => {
+    const shop = await makeShop(work.admin)
+    const before = new Date(minutesIn(-600))
+    await work.admin('lots').where({ id: shop.lots.hardener }).update({ state: 'in-use', opened_at: before })
+    const [base, ...others] = poured(shop, inTolerance) ?? []
+    const second = await makeLot(work.admin, shop.materials.base, '1000')
+    base?.pours.push({ lotId: second, grams: '1', at: minutesIn(-9), source: 'scale', round: 0 })
+    await sealBatch(work.asSystem(), { draftId: await draft({ components: base ? [base, ...others] : [] }, shop) })
+    expect(await rows('lots', { id: shop.lots.base })).toMatchObject([{ state: 'in-use', opened_at: new Date(minutesIn(-10)), version: 2 }])
+    expect(await rows('lots', { id: second })).toMatchObject([{ state: 'in-use', opened_at: new Date(minutesIn(-9)), version: 2 }])
+    expect(await rows('lots', { id: shop.lots.hardener })).toMatchObject([{ state: 'in-use', opened_at: before, version: 1 }])
+  })
+
+  it('answers and tells what a later look finds, with and without a job, and stopped', async () => {
+    const loose = { jobStepId: null, pieceIds: [], purpose: 'sample' }
+    const stopped = { reason: 'knocked over', at: minutesIn(-1) }
+    for (const more of [{}, loose, { stopped }]) {
+      const batch = await sealed(more)
+      expect(await getBatch(work.as('sprayer'), batch.id)).toEqual(batch)
+      const event = await work.admin('events').where({ subject: `batch:${batch.id}`, type: 'pot' }).orderBy('seq', 'desc').first<{ payload: string }>()
+      expect(JSON.parse(event.payload)).toEqual(await potView(work.db, batch.id))
+    }
   })
 
   it('takes the grams out of the lots in the same transaction', async () => {
