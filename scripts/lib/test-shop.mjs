@@ -17,7 +17,9 @@ const PREFIX = 'test-'
 const GRACE_MS = 1600
 
 /** Suites that need a shop, each with a schema of its own. */
-const SCHEMAS = { 'server': 'potbell_server', 'e2e': 'potbell_e2e', 'bench': 'potbell_bench', 'bench-large': 'potbell_bench_large' }
+const SCHEMAS = {
+  'server': 'potbell_server', 'e2e': 'potbell_e2e', 'e2e-office': 'potbell_e2e_office', 'e2e-floor': 'potbell_e2e_floor', 'bench': 'potbell_bench', 'bench-large': 'potbell_bench_large',
+}
 
 /** Removes data folders of test runs that were killed, with whatever they left running. */
 async function sweep(base) {

@@ -1,9 +1,9 @@
 import { afterAll, describe, expect, it } from 'vitest'
-import { createKnex } from '../../server/database/connection'
-import { codeOf, labelAndLog, next, pourToTargets, putOnWhatIsAsked, reactingMix, setUpLooseMix, targetOf, weigh } from './support/bench'
-import { axeFaults, baseUrl, overflowsSideways } from './support/browser'
-import { lowTargets } from './support/touch'
-import { useVisitors } from './support/visitors'
+import { createKnex } from '../../../server/database/connection'
+import { codeOf, labelAndLog, next, pourToTargets, putOnWhatIsAsked, reactingMix, setUpLooseMix, targetOf, weigh } from '../support/bench'
+import { axeFaults, baseUrl, overflowsSideways } from '../support/browser'
+import { lowTargets } from '../support/touch'
+import { useVisitors } from '../support/visitors'
 
 const admin = createKnex(process.env.DATABASE_ADMIN_URL ?? '', { poolMax: 2 })
 const { visitAs } = useVisitors()

@@ -1,7 +1,7 @@
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
-import { createKnex } from '../../server/database/connection'
-import { alive, axeFaults, baseUrl, overflowsSideways, screens, signIn } from './support/browser'
-import { useVisitors } from './support/visitors'
+import { createKnex } from '../../../server/database/connection'
+import { alive, axeFaults, baseUrl, overflowsSideways, screens, signIn } from '../support/browser'
+import { useVisitors } from '../support/visitors'
 
 const admin = createKnex(process.env.DATABASE_ADMIN_URL ?? '', { poolMax: 1 })
 const { visit, visitAs } = useVisitors()

@@ -1,13 +1,13 @@
 import type { Page } from 'playwright-core'
 import { afterAll, describe, expect, it } from 'vitest'
 import { demoPassword } from '#shared/utils/demo'
-import { createKnex } from '../../server/database/connection'
-import { labelAndLog, next, pourToTargets, putOnWhatIsAsked, reactingMix, setUpLooseMix, targetOf, weigh } from './support/bench'
-import { alive, axeFaults, baseUrl } from './support/browser'
-import { advanceClock } from './support/clock'
-import { keyboardOf, pointer, type Hand } from './support/hand'
-import { emptyAllBut } from './support/pots'
-import { useVisitors } from './support/visitors'
+import { createKnex } from '../../../server/database/connection'
+import { labelAndLog, next, pourToTargets, putOnWhatIsAsked, reactingMix, setUpLooseMix, targetOf, weigh } from '../support/bench'
+import { alive, axeFaults, baseUrl } from '../support/browser'
+import { advanceClock } from '../support/clock'
+import { keyboardOf, pointer, type Hand } from '../support/hand'
+import { emptyAllBut } from '../support/pots'
+import { useVisitors } from '../support/visitors'
 
 /**
  * The main job from one end to the other, as its people do it: the sprayer mixes at the bench, has too much hardener in

@@ -1,9 +1,9 @@
 import { randomUUID } from 'node:crypto'
 import type { Page } from 'playwright-core'
 import { describe, expect, it } from 'vitest'
-import { next, targetOf, weigh } from './support/bench'
-import { alive, axeFaults, baseUrl, overflowsSideways } from './support/browser'
-import { useVisitors } from './support/visitors'
+import { next, targetOf, weigh } from '../support/bench'
+import { alive, axeFaults, baseUrl, overflowsSideways } from '../support/browser'
+import { useVisitors } from '../support/visitors'
 
 /** Materials, lots and mixes as a manager enters them, and the bench that hears of it. */
 const { visitAs } = useVisitors()

@@ -1,11 +1,11 @@
 import type { Page } from 'playwright-core'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
-import { createKnex } from '../../server/database/connection'
-import { labelAndLog, pourToTargets, reactingMix, setUpLooseMix } from './support/bench'
-import { axeFaults, baseUrl, signIn } from './support/browser'
-import { openLine } from './support/line'
-import { emptyAllBut } from './support/pots'
-import { useVisitors } from './support/visitors'
+import { createKnex } from '../../../server/database/connection'
+import { labelAndLog, pourToTargets, reactingMix, setUpLooseMix } from '../support/bench'
+import { axeFaults, baseUrl, signIn } from '../support/browser'
+import { openLine } from '../support/line'
+import { emptyAllBut } from '../support/pots'
+import { useVisitors } from '../support/visitors'
 
 const admin = createKnex(process.env.DATABASE_ADMIN_URL ?? '', { poolMax: 1 })
 const { visit, visitAs } = useVisitors()

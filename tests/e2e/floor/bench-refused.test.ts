@@ -1,12 +1,12 @@
 import { randomUUID } from 'node:crypto'
 import { afterAll, describe, expect, it } from 'vitest'
 import { demoPassword } from '#shared/utils/demo'
-import { createKnex } from '../../server/database/connection'
-import { signedIn } from '../server/support/http'
-import { recordNitro } from './support/batch'
-import { labelAndLog, next, pourToTargets, reactingMix, setUpLooseMix, targetOf, untilReadyForOffline, weigh } from './support/bench'
-import { axeFaults, baseUrl, overflowsSideways } from './support/browser'
-import { useVisitors } from './support/visitors'
+import { createKnex } from '../../../server/database/connection'
+import { signedIn } from '../../server/support/http'
+import { recordNitro } from '../support/batch'
+import { labelAndLog, next, pourToTargets, reactingMix, setUpLooseMix, targetOf, untilReadyForOffline, weigh } from '../support/bench'
+import { axeFaults, baseUrl, overflowsSideways } from '../support/browser'
+import { useVisitors } from '../support/visitors'
 
 const admin = createKnex(process.env.DATABASE_ADMIN_URL ?? '', { poolMax: 2 })
 const { visitAs } = useVisitors()

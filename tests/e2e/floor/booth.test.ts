@@ -1,14 +1,14 @@
 import { randomUUID } from 'node:crypto'
 import type { Locator, Page } from 'playwright-core'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
-import { createKnex } from '../../server/database/connection'
-import { listenForBell, ringsAgain, ringsOf, strikesAgain, strokesOf } from './support/bell'
-import { axeFaults, baseUrl } from './support/browser'
-import { advanceClock } from './support/clock'
-import { makeOwnBooth, type OwnBooth, type OwnPot } from './support/own-booth'
-import { emptyAllBut } from './support/pots'
-import { targetsOf, tooSmall } from './support/targets'
-import { useVisitors } from './support/visitors'
+import { createKnex } from '../../../server/database/connection'
+import { listenForBell, ringsAgain, ringsOf, strikesAgain, strokesOf } from '../support/bell'
+import { axeFaults, baseUrl } from '../support/browser'
+import { advanceClock } from '../support/clock'
+import { makeOwnBooth, type OwnBooth, type OwnPot } from '../support/own-booth'
+import { emptyAllBut } from '../support/pots'
+import { targetsOf, tooSmall } from '../support/targets'
+import { useVisitors } from '../support/visitors'
 
 const admin = createKnex(process.env.DATABASE_ADMIN_URL ?? '', { poolMax: 2 })
 const { visitAs } = useVisitors()

@@ -1,8 +1,8 @@
 import { randomUUID } from 'node:crypto'
 import type { Page } from 'playwright-core'
 import { describe, expect, it } from 'vitest'
-import { alive, axeFaults, baseUrl } from './support/browser'
-import { useVisitors } from './support/visitors'
+import { alive, axeFaults, baseUrl } from '../support/browser'
+import { useVisitors } from '../support/visitors'
 
 const { visit, visitAs } = useVisitors()
 

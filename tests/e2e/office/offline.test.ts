@@ -1,9 +1,9 @@
 import { afterAll, describe, expect, it } from 'vitest'
-import { createKnex } from '../../server/database/connection'
-import { pourToTargets, reactingMix, setUpLooseMix, untilReadyForOffline } from './support/bench'
-import { screens } from './support/browser'
-import { openLine } from './support/line'
-import { useVisitors } from './support/visitors'
+import { createKnex } from '../../../server/database/connection'
+import { pourToTargets, reactingMix, setUpLooseMix, untilReadyForOffline } from '../support/bench'
+import { screens } from '../support/browser'
+import { openLine } from '../support/line'
+import { useVisitors } from '../support/visitors'
 
 const admin = createKnex(process.env.DATABASE_ADMIN_URL ?? '', { poolMax: 2 })
 const { visitAs } = useVisitors()

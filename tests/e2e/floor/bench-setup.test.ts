@@ -1,11 +1,11 @@
 import { randomUUID } from 'node:crypto'
 import { afterAll, describe, expect, it } from 'vitest'
 import { demoPassword } from '#shared/utils/demo'
-import { createKnex } from '../../server/database/connection'
-import { codeOf, labelAndLog, next, pourToTargets, putOnWhatIsAsked, reactingMix, setUpLooseMix, targetOf, untilReadyForOffline, weigh } from './support/bench'
-import { axeFaults, baseUrl, overflowsSideways } from './support/browser'
-import { signedIn } from '../server/support/http'
-import { useVisitors } from './support/visitors'
+import { createKnex } from '../../../server/database/connection'
+import { codeOf, labelAndLog, next, pourToTargets, putOnWhatIsAsked, reactingMix, setUpLooseMix, targetOf, untilReadyForOffline, weigh } from '../support/bench'
+import { axeFaults, baseUrl, overflowsSideways } from '../support/browser'
+import { signedIn } from '../../server/support/http'
+import { useVisitors } from '../support/visitors'
 
 const admin = createKnex(process.env.DATABASE_ADMIN_URL ?? '', { poolMax: 2 })
 const { visitAs } = useVisitors()

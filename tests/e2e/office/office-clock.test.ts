@@ -1,8 +1,8 @@
 import { afterAll, describe, expect, it } from 'vitest'
-import { createKnex } from '../../server/database/connection'
-import { recordNitro } from './support/batch'
-import { baseUrl } from './support/browser'
-import { useVisitors } from './support/visitors'
+import { createKnex } from '../../../server/database/connection'
+import { recordNitro } from '../support/batch'
+import { baseUrl } from '../support/browser'
+import { useVisitors } from '../support/visitors'
 
 const admin = createKnex(process.env.DATABASE_ADMIN_URL ?? '', { poolMax: 2 })
 const { visitAs } = useVisitors()

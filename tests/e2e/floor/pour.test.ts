@@ -1,10 +1,10 @@
 import { afterAll, describe, expect, it } from 'vitest'
 import { drawQr } from '~/utils/qr'
-import { createKnex } from '../../server/database/connection'
-import { codeOf, labelAndLog, next, pourToTargets, putOnWhatIsAsked, reactingMix, setUpLooseMix, targetOf } from './support/bench'
-import { axeFaults, baseUrl, overflowsSideways } from './support/browser'
-import { hand, hands, pourOnScale, runIn, setUpOnPracticeScale, shown } from './support/practice-scale'
-import { useVisitors } from './support/visitors'
+import { createKnex } from '../../../server/database/connection'
+import { codeOf, labelAndLog, next, pourToTargets, putOnWhatIsAsked, reactingMix, setUpLooseMix, targetOf } from '../support/bench'
+import { axeFaults, baseUrl, overflowsSideways } from '../support/browser'
+import { hand, hands, pourOnScale, runIn, setUpOnPracticeScale, shown } from '../support/practice-scale'
+import { useVisitors } from '../support/visitors'
 
 const admin = createKnex(process.env.DATABASE_ADMIN_URL ?? '', { poolMax: 2 })
 const { visitAs } = useVisitors()
