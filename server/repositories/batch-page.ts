@@ -159,10 +159,15 @@ interface PourRow {
   round: number
 }
 
-async function readPours(id: string, facts: EffectiveFacts | null, db: Db): Promise<(BatchComponent['pours'][number] & { index: number })[]> {
-  const rows = await db('batch_pours as p').join('lots as l', 'l.id', 'p.lot_id').where('p.batch_id', id).orderBy(['p.component_index', 'p.position'])
-    .select<PourRow[]>('p.component_index', 'p.position', 'p.lot_id', 'l.lot_number', 'p.grams', 'p.at', 'p.source', 'p.round')
-  const recorded = rows.map((row) => ({
+/** A component with one of its pours; null where nothing was poured. */
+type PouredRow = ComponentRow & { [K in Exclude<keyof PourRow, 'component_index'>]: PourRow[K] | null }
+
+const isPour = (row: PouredRow): row is ComponentRow & PourRow => row.position !== null
+
+type Pour = BatchComponent['pours'][number] & { index: number }
+
+async function poursOf(rows: readonly PouredRow[], facts: EffectiveFacts | null, db: Db): Promise<Pour[]> {
+  const recorded = rows.filter(isPour).map((row) => ({
     index: row.component_index, position: row.position, lotId: row.lot_id, lotNumber: row.lot_number, grams: decimalOf(row.grams), at: isoOf(row.at),
     source: row.source, round: row.round,
   }))
@@ -176,31 +181,38 @@ async function readPours(id: string, facts: EffectiveFacts | null, db: Db): Prom
 }
 
 async function readComponents(id: string, facts: EffectiveFacts | null, db: Db): Promise<Pick<Batch, 'components' | 'chemistry' | 'containsIsocyanates'>> {
-  const rows = await db('batch_components as x').join('materials as a', 'a.id', 'x.material_id').where('x.batch_id', id).orderBy('x.component_index')
-    .select<ComponentRow[]>(
+  const poured = await db('batch_components as x').join('materials as a', 'a.id', 'x.material_id')
+    .leftJoin('batch_pours as p', (on) => void on.on('p.batch_id', 'x.batch_id').andOn('p.component_index', 'x.component_index'))
+    .leftJoin('lots as l', 'l.id', 'p.lot_id')
+    .where('x.batch_id', id).orderBy(['x.component_index', 'p.position'])
+    .select<PouredRow[]>(
       'x.component_index', 'x.role', 'x.material_id', 'a.code as material_code', 'a.name as material_name', 'a.chemistry', 'a.contains_isocyanates',
       'x.parts', 'x.planned_g', 'x.target_g', 'x.poured_g', 'x.deviation_pct', 'x.verdict',
+      'p.position', 'p.lot_id', 'l.lot_number', 'p.grams', 'p.at', 'p.source', 'p.round',
     )
-  const pours = await readPours(id, facts, db)
-  const components = rows.map((row): BatchComponent => {
-    const now = facts?.components.find(({ index }) => index === row.component_index)
-    return {
-      index: row.component_index,
-      role: row.role,
-      materialId: row.material_id,
-      materialCode: row.material_code,
-      materialName: row.material_name,
-      parts: decimalOf(row.parts),
-      plannedG: decimalOf(row.planned_g),
-      targetG: now?.targetG ?? decimalOf(row.target_g),
-      pouredG: now?.pouredG ?? decimalOf(row.poured_g),
-      deviationPct: now ? now.deviationPct : decimalOrNull(row.deviation_pct),
-      verdict: now ? now.verdict : row.verdict,
-      pours: pours.filter(({ index }) => index === row.component_index).map(({ index: _index, ...pour }) => pour),
-    }
-  })
+  const pours = await poursOf(poured, facts, db)
+  const rows = poured.filter((row, place) => poured[place - 1]?.component_index !== row.component_index)
+  const components = rows.map((row) => toComponent(row, facts, pours))
   const base = rows.find(({ role }) => role === 'base') ?? rows[0]
   return { components, chemistry: base?.chemistry ?? null, containsIsocyanates: rows.some((row) => row.contains_isocyanates === 1) }
+}
+
+function toComponent(row: ComponentRow, facts: EffectiveFacts | null, pours: readonly Pour[]): BatchComponent {
+  const now = facts?.components.find(({ index }) => index === row.component_index)
+  return {
+    index: row.component_index,
+    role: row.role,
+    materialId: row.material_id,
+    materialCode: row.material_code,
+    materialName: row.material_name,
+    parts: decimalOf(row.parts),
+    plannedG: decimalOf(row.planned_g),
+    targetG: now?.targetG ?? decimalOf(row.target_g),
+    pouredG: now?.pouredG ?? decimalOf(row.poured_g),
+    deviationPct: now ? now.deviationPct : decimalOrNull(row.deviation_pct),
+    verdict: now ? now.verdict : row.verdict,
+    pours: pours.filter(({ index }) => index === row.component_index).map(({ index: _index, ...pour }) => pour),
+  }
 }
 
 interface PieceRow {
