@@ -115,10 +115,18 @@ export async function chemistriesOf(revisionIds: readonly string[], db: Db): Pro
   return rows.map(row => ({ mixRevisionId: row.mix_revision_id, mixName: row.name, chemistry: row.chemistry }))
 }
 
-/** Which chemistries may not follow each other in a booth. */
-export async function listBoothRules(db: Db): Promise<(ChemistryRule & { scope: 'booth' })[]> {
-  const rows = await db('chemistry_rules').where({ scope: 'booth' }).orderBy(['first_chemistry', 'second_chemistry'])
-    .select<{ first_chemistry: string, second_chemistry: string, verdict: ChemistryRule['verdict'], advice: string }[]>('*')
+/**
+ * Which chemistries may not follow each other in a booth.
+ *
+ * @param blocking only rules that block one of these chemistries; without it, all
+ */
+export async function listBoothRules(db: Db, blocking?: readonly string[]): Promise<(ChemistryRule & { scope: 'booth' })[]> {
+  const query = db('chemistry_rules').where({ scope: 'booth' }).orderBy(['first_chemistry', 'second_chemistry'])
+    .select<{ first_chemistry: string, second_chemistry: string, verdict: ChemistryRule['verdict'], advice: string }[]>(
+      'first_chemistry', 'second_chemistry', 'verdict', 'advice',
+    )
+  if (blocking) void query.where({ verdict: 'blocked' }).where((part) => part.whereIn('first_chemistry', [...blocking]).orWhereIn('second_chemistry', [...blocking]))
+  const rows = await query
   return rows.map(row => ({ scope: 'booth', first: row.first_chemistry, second: row.second_chemistry, verdict: row.verdict, advice: row.advice }))
 }
 

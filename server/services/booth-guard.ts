@@ -87,7 +87,7 @@ export async function clashAt(m: Mutation, boothId: string | null, revision: Mix
   if (boothId === null) return null
   const { trx: db } = m
   const own = chemistriesOfMix(revision)
-  const rules = (await listBoothRules(db)).filter(({ first, second, verdict }) => verdict === 'blocked' && (own.includes(first) || own.includes(second)))
+  const rules = await listBoothRules(db, own)
   if (rules.length === 0) return null
   await holdBooth(boothId, revision, rules, m)
   const { last, next } = await cleaningsAround(boothId, mixedAt, db)
