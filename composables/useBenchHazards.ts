@@ -1,7 +1,7 @@
-import { useSessionStorage } from '@vueuse/core'
 import { computed, watch, type ComputedRef } from 'vue'
 import { hazardOf, hazardsOf, type BenchHazard } from '#shared/utils/bench-hazards'
 import type { BenchPart } from '#shared/utils/bench-tools'
+import { useKept } from '~/composables/useKept'
 import { useSessionStore } from '~/stores/session'
 
 /** Confirmed hazards of one person: kind and chemistry → epoch ms by the server's clock. */
@@ -18,7 +18,7 @@ interface BenchHazardUse {
 /** Once a person, a session and a chemistry somebody confirms what is put on. Signing out forgets it. */
 export function useBenchHazards(parts: () => readonly BenchPart[]): BenchHazardUse {
   const session = useSessionStore()
-  const confirmed = useSessionStorage<Record<string, Confirmed>>('potbell-bench-hazards', {})
+  const confirmed = useKept<Record<string, Confirmed>>(sessionStorage, 'potbell-bench-hazards', {})
   const person = computed(() => session.user?.id ?? null)
   const keyOf = ({ kind, part }: BenchHazard): string => `${kind}:${part.material.chemistry}`
 

@@ -1,6 +1,7 @@
 import { onScopeDispose, ref, shallowRef, type Ref } from 'vue'
 import { keypadSource, type KeypadSource, type ScaleReading, type ScaleSource, type ScaleSourceKind, type ScaleSourceState, type SourceClock } from '#shared/utils/bench-scale'
 import { SimulatedScale, type SimulatedSight, type SimulatedStart } from '#shared/utils/bench-scale-simulated'
+import { useBenchScaleState } from '~/composables/useBenchScaleState'
 
 interface BenchScaleUse {
   keypad: KeypadSource
@@ -24,9 +25,6 @@ const clock: SourceClock = {
     return () => clearTimeout(timer)
   },
 }
-
-/** State of the scale at this bench, for the bar; null while nothing is weighed. */
-export const useBenchScaleState = (): Ref<ScaleSourceState | null> => useState<ScaleSourceState | null>('bench-scale', () => null)
 
 /**
  * The source of weights at this bench, connected while the caller lives.

@@ -1,6 +1,7 @@
-import { useEventListener, useLocalStorage, type RemovableRef } from '@vueuse/core'
+import { useEventListener } from '@vueuse/core'
 import { onScopeDispose, watch } from 'vue'
 import { heardOf, soundOf, type BenchSound } from '#shared/utils/bench-sound'
+import { useBenchSoundOn } from '~/composables/useBenchSoundOn'
 import { strike } from '~/utils/bell-sound'
 
 const tickHertz = 880
@@ -8,9 +9,6 @@ const tickLoudness = 0.25
 const lowHertz = 220
 const lowLoudness = 0.5
 const lowGapMs = 350
-
-/** Whether this bench sounds: on until somebody turns it off here. */
-export const useBenchSoundOn = (): RemovableRef<boolean> => useLocalStorage('potbell-bench-sound', true)
 
 /**
  * Lets be heard how the weighing stands: hands and eyes are at the tin. Browsers allow sound from the first touch on.

@@ -1,7 +1,5 @@
 import { firstLots } from '#shared/utils/bench-lots'
-import { startRun } from '#shared/utils/bench-run'
 import { toolChoice } from '#shared/utils/bench-setup'
-import { benchTools } from '#shared/utils/bench-tools'
 import { newUuid } from '#shared/utils/uuid'
 import type { BenchPlanKept } from '~/composables/useBenchDisk'
 import { useBenchStore } from '~/stores/bench'
@@ -14,6 +12,7 @@ export function useBenchStart() {
 
   async function startPot(plan: BenchPlanKept, number: number): Promise<void> {
     const pot = plan.pots.find(one => one.number === number)
+    const { benchTools, startRun } = await bench.fetchEngine()
     const { snapshot } = bench
     const tools = snapshot === null ? null : benchTools(toolChoice(plan.setup), snapshot)
     if (snapshot === null || tools === null || pot === undefined || session.user === null) return

@@ -1,6 +1,6 @@
 import { useDocumentVisibility } from '@vueuse/core'
 import { onMounted, onScopeDispose, readonly, ref, watch, type Ref } from 'vue'
-import { useTimersStore } from '~/stores/timers'
+import { useClockStore } from '~/stores/clock'
 
 /**
  * The server's present in epoch milliseconds, renewed at the beginning of each of its seconds, so that all counts of
@@ -9,7 +9,7 @@ import { useTimersStore } from '~/stores/timers'
  * @param everyMs how often it is renewed, a divisor of a second or whole seconds
  */
 export function useNow(everyMs = 1_000): Readonly<Ref<number>> {
-  const store = useTimersStore()
+  const store = useClockStore()
   const visibility = useDocumentVisibility()
   const now = ref(store.serverNow())
   let timer: ReturnType<typeof setTimeout> | undefined

@@ -1,6 +1,6 @@
 import { useDocumentVisibility, useIntervalFn } from '@vueuse/core'
 import { computed, onMounted, watch, type ComputedRef } from 'vue'
-import { useTimersStore } from '~/stores/timers'
+import { useClockStore } from '~/stores/clock'
 import { ApiFailure } from '~/utils/api'
 
 const renewEveryMs = 5 * 60_000
@@ -19,7 +19,7 @@ interface ServerClock {
  * again, and every five minutes.
  */
 export function useServerClock(): ServerClock {
-  const store = useTimersStore()
+  const store = useClockStore()
   const visibility = useDocumentVisibility()
 
   async function renew(): Promise<void> {

@@ -1,7 +1,7 @@
 import { useIntervalFn } from '@vueuse/core'
 import { readonly, watch, type Ref } from 'vue'
 import { useServerClock } from '~/composables/useServerClock'
-import { useTimersStore } from '~/stores/timers'
+import { useClockStore } from '~/stores/clock'
 
 const renewEveryMs = 30_000
 
@@ -11,7 +11,7 @@ const renewEveryMs = 30_000
  * clock says.
  */
 export function useShopNow(): Readonly<Ref<number>> {
-  const store = useTimersStore()
+  const store = useClockStore()
   const now = useState('drawn-at', () => Date.now())
   useServerClock()
 

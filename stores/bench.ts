@@ -4,21 +4,20 @@ import { computed, ref, shallowRef } from 'vue'
 import type { Batch } from '#shared/schemas/batches'
 import type { BenchSnapshot } from '#shared/schemas/bench'
 import type { Draft, DraftHolder, DraftList } from '#shared/schemas/drafts'
-import { draftOf } from '#shared/utils/bench-draft'
-import { reckon, withFittingCup } from '#shared/utils/bench-reckon'
-import { isNews, refusalOf, staysHere, type BenchAside, type BenchRefusal } from '#shared/utils/bench-refusal'
+import { unreckoned } from '#shared/utils/bench-faults'
+import { isNews, refusalOf, type BenchAside, type BenchRefusal } from '#shared/utils/bench-refusal'
 import type { BenchRun } from '#shared/utils/bench-run'
 import { blankSetup, setupAfterPot, type BenchHome, type BenchSetup } from '#shared/utils/bench-setup'
 import { isTakenOver, takenOverWords } from '#shared/utils/bench-takeover'
-import { benchTools } from '#shared/utils/bench-tools'
 import { toIso } from '#shared/utils/instant'
 import { shopDate } from '#shared/utils/zone'
 import { useBenchAside } from '~/composables/useBenchAside'
 import { useBenchDisk, type BenchPlanKept } from '~/composables/useBenchDisk'
+import { useBenchEngine } from '~/composables/useBenchEngine'
 import { useBenchNumbers } from '~/composables/useBenchNumbers'
+import { useClockStore } from '~/stores/clock'
 import { useOutboxStore } from '~/stores/outbox'
 import { useSessionStore } from '~/stores/session'
-import { useTimersStore } from '~/stores/timers'
 import { afterPaint } from '~/utils/after-paint'
 import { callApi, toFailure } from '~/utils/api'
 
@@ -29,10 +28,11 @@ const SAVE_AFTER_MS = 1_500
 export const useBenchStore = defineStore('bench', () => {
   const session = useSessionStore()
   const outbox = useOutboxStore()
-  const timers = useTimersStore()
+  const clock = useClockStore()
   const disk = useBenchDisk()
   const numbers = useBenchNumbers(disk)
   const aside = useBenchAside(disk)
+  const { engine, isMissing: isEngineMissing, fetchEngine, hasEngine } = useBenchEngine()
 
   const status = ref<'loading' | 'ready' | 'error'>('loading')
   const failure = ref<string | null>(null)
@@ -44,7 +44,7 @@ export const useBenchStore = defineStore('bench', () => {
   /** The clock's offset of the last time online, for a tablet that starts without network. */
   const keptOffsetMs = ref<number | null>(null)
   /** The server's clock less this tablet's, ms; null while it was never measured. */
-  const offsetMs = computed(() => timers.offsetMs ?? keptOffsetMs.value)
+  const offsetMs = computed(() => clock.offsetMs ?? keptOffsetMs.value)
   const setup = ref<BenchSetup | null>(null)
   const plan = shallowRef<BenchPlanKept | null>(null)
   const run = shallowRef<BenchRun | null>(null)
@@ -65,12 +65,12 @@ export const useBenchStore = defineStore('bench', () => {
   /** Nothing reaches the server from here now. */
   const isAway = computed(() => isOffline.value || outbox.unreachable || !isOnline.value)
   const home = computed<BenchHome>(() => ({ boothId: session.device?.boothId ?? null, scaleId: session.device?.scaleId ?? null, userId: session.user?.id ?? null }))
-  const reckoning = computed(() => (setup.value && snapshot.value ? reckon(setup.value, snapshot.value) : null))
-  const tools = computed(() => (run.value && snapshot.value ? benchTools({ ...run.value.tools, revisionId: run.value.mixRevisionId }, snapshot.value) : null))
+  const reckoning = computed(() => (setup.value && snapshot.value ? (engine.value?.reckon ?? unreckoned)(setup.value, snapshot.value) : null))
+  const tools = computed(() => (run.value && snapshot.value && engine.value ? engine.value.benchTools({ ...run.value.tools, revisionId: run.value.mixRevisionId }, snapshot.value) : null))
 
   /** Added to what the one clock of all screens says while that was not measured yet. */
-  const startOffsetMs = computed(() => (timers.offsetMs === null ? keptOffsetMs.value ?? 0 : 0))
-  const now = (): number => timers.serverNow() + startOffsetMs.value
+  const startOffsetMs = computed(() => (clock.offsetMs === null ? keptOffsetMs.value ?? 0 : 0))
+  const now = (): number => clock.serverNow() + startOffsetMs.value
   const today = (): string => shopDate(now(), zone.value)
 
   /** Reads what was left on the tablet, then the shop's present state. */
@@ -84,6 +84,8 @@ export const useBenchStore = defineStore('bench', () => {
     await aside.load()
     await outbox.load()
     if (run.value === null) await restore(userId)
+    // What was left here has figures; an empty form has none.
+    if ((run.value !== null || setup.value?.mixId) && !await hasEngine()) return fail('What the bench reckons with is not on this tablet yet: it needs the network once. Try again when it is back.')
     await refresh()
     // What was changed just before a crash may not have gone out.
     if (run.value !== null && run.value.stage !== 'logged') await save()
@@ -111,7 +113,7 @@ export const useBenchStore = defineStore('bench', () => {
   async function refresh(): Promise<void> {
     try {
       const answer = await callApi<BenchSnapshot>('/api/bench/snapshot')
-      await timers.measureClock()
+      await clock.measureClock()
       const at = Date.parse(answer.serverNow)
       take(answer, at, false)
       session.keepLast()
@@ -139,6 +141,7 @@ export const useBenchStore = defineStore('bench', () => {
     if (!offline) failure.value = null
     setup.value ??= blankSetup(next, home.value)
     status.value = 'ready'
+    if (isEngineMissing.value && !offline) void reckonLater()
   }
 
   async function keep(): Promise<void> {
@@ -149,10 +152,16 @@ export const useBenchStore = defineStore('bench', () => {
 
   /** A key's new figures are on the screen before they go to the disk; keys that come close together are written once. */
   function changeSetup(next: BenchSetup): void {
-    setup.value = next
+    setup.value = engine.value && snapshot.value ? engine.value.withFittingCup(next, snapshot.value) : next
+    if (engine.value === null) void reckonLater()
     if (keepsSoon) return
     keepsSoon = true
     afterPaint(() => void keepChanged())
+  }
+
+  /** The first change of an empty form fetches what reckons; figures and the fitting cup follow. */
+  async function reckonLater(): Promise<void> {
+    if (await hasEngine() && setup.value) changeSetup(setup.value)
   }
 
   /** Writes what a change of the form has not written yet: nothing waits when the page goes. */
@@ -174,6 +183,7 @@ export const useBenchStore = defineStore('bench', () => {
     clearTimeout(saveTimer)
     const { value } = run
     if (value === null || refusal.value?.code === 'taken-over') return
+    const { draftOf } = await fetchEngine()
     const body = draftOf(value, toIso(Date.now()), offsetMs.value === null ? null : Math.round(offsetMs.value), holder.value)
     await outbox.put({ subject: value.id, kind: 'draft', method: 'PUT', path: `/api/batch-drafts/${value.id}`, body: { ...body } })
   }
@@ -188,7 +198,7 @@ export const useBenchStore = defineStore('bench', () => {
   /** Goes on here with a batch that another tablet has begun; that one is refused from then on. */
   async function takeOver(id: string): Promise<void> {
     // It needs the network anyhow, and only then what reads another tablet's state.
-    const [draft, { runOfDraft }] = await Promise.all([callApi<Draft>(`/api/batch-drafts/${id}`), import('#shared/utils/bench-takeover-run')])
+    const [draft, { runOfDraft }] = await Promise.all([callApi<Draft>(`/api/batch-drafts/${id}`), import('#shared/utils/bench-takeover-run'), fetchEngine()])
     const next = snapshot.value && session.user ? runOfDraft(draft, snapshot.value, session.user.id) : null
     if (draft.state !== 'open') throw new Error(`${draft.code} is in the log already.`)
     if (next === null) throw new Error('Its mix, cup or scale is not in this bench\'s list: go on with it where it was begun.')
@@ -235,12 +245,12 @@ export const useBenchStore = defineStore('bench', () => {
     logged.value = null
     await keep()
     await refresh()
-    if (setup.value && snapshot.value) changeSetup(withFittingCup(setupAfterPot(setup.value, snapshot.value, home.value), snapshot.value))
+    if (setup.value && snapshot.value) changeSetup(setupAfterPot(setup.value, snapshot.value, home.value))
   }
 
   /** Leaves a batch that the server does not take from this tablet. It is not sent any more; grams of it stay here. */
   async function giveUp(): Promise<void> {
-    const { value } = run
+    const [{ value }, { staysHere }] = [run, await fetchEngine()]
     if (value !== null && staysHere(value, refusal.value, outbox.entries.some(({ subject }) => subject === value.id))) {
       const { code, message } = refusal.value ?? { code: 'left', message: '' }
       await aside.put({ id: value.id, run: value, turn: turn.value, at: now(), refusal: { code, message } })
@@ -254,6 +264,7 @@ export const useBenchStore = defineStore('bench', () => {
 
   /** Takes a batch up again that was laid aside here: it is sent once more. */
   async function takeUp(kept: BenchAside): Promise<void> {
+    await fetchEngine()
     plan.value = null
     turn.value = kept.turn
     logged.value = null
@@ -282,6 +293,6 @@ export const useBenchStore = defineStore('bench', () => {
   return {
     status, failure, snapshot, snapshotAt, isOffline, offsetMs, startOffsetMs, isAway, numbers: numbers.held, setup, plan, run, refusal, logged, zone, home, reckoning, tools,
     aside: aside.kept, dropAside: aside.drop, now, today, load, refresh, changeSetup, keepChanged, change, begin, takeOver, checkHeld, seal, discard, leave, giveUp,
-    takeUp,
+    takeUp, isEngineMissing, fetchEngine,
   }
 })

@@ -5,6 +5,8 @@
  * @returns when all are there; rejects where one cannot be fetched, a next call tries again
  */
 export const fetchBenchParts = (): Promise<unknown> => Promise.all([
+  import('#shared/utils/bench-engine'),
+  import('~/components/bench/BenchBarSheet.vue'),
   import('~/components/bench/BenchStir.vue'),
   import('~/components/bench/BenchPour.vue'),
   import('~/components/bench/BenchPourHalt.vue'),

@@ -10,8 +10,11 @@ import { openPage, withChromium } from './chromium.mjs'
 import { signIn } from './http.mjs'
 import { serveProduct } from './place.mjs'
 
-/** After this long without a request a page has what it needs; what idles in later starts later. */
+/** After this long without a request a page has what it needs. */
 const QUIET_MS = 1000
+
+/** What is fetched once the page has nothing to do is not its first load; on a slow machine it would begin before all else has come. */
+const neverIdle = () => { window.requestIdleCallback = () => 0 }
 
 /** The same Nuxt with the same modules and one page with nothing on it. */
 const EMPTY = {
@@ -58,6 +61,7 @@ function brotli(file) {
  */
 async function firstLoad(browser, { url, path, cookie = '', output, until }) {
   const { context, page } = await openPage(browser, url, cookie, { width: 1280, height: 800 })
+  await page.addInitScript(neverIdle)
   const scripts = new Set()
   let lastAt = Date.now()
   page.on('request', (request) => {

@@ -1,5 +1,5 @@
 import type { Knex } from 'knex'
-import type { ChemistryRule } from '#shared/engine/chemistry'
+import type { ChemistryRule } from '#shared/engine/chemistry-clash'
 import { D } from '#shared/engine/decimal'
 import type { DraftBody } from '#shared/schemas/drafts'
 import { msOrNull, toInstant } from '../utils/rows'

@@ -1,5 +1,5 @@
 import type { Knex } from 'knex'
-import type { ChemistryRule } from '#shared/engine/chemistry'
+import type { ChemistryRule } from '#shared/engine/chemistry-clash'
 import type { BoothChemistry, BoothCleanBody, BoothPast } from '#shared/schemas/booth-cleanings'
 import { begunWords, boothClash, clashWords, type BoothClash } from '#shared/utils/bench-booth'
 import {

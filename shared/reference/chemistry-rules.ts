@@ -1,4 +1,4 @@
-import type { ChemistryRule } from '../engine/chemistry'
+import type { ChemistryRule } from '../engine/chemistry-clash'
 
 const CLEAN_FIRST = 'Dry overspray of the two can heat up and catch fire. Clean booth, duct and filters, and record it, before spraying.'
 const WAIT_OR_ISOLATE = 'The later coat can lift or stain the one below. Ask the data sheets, or test on a sample.'

@@ -1,6 +1,8 @@
-import { clashOf } from '../engine/chemistry'
-import type { ChemistryRule } from '../engine/chemistry'
+import { clashOf } from '../engine/chemistry-clash'
+import type { ChemistryRule } from '../engine/chemistry-clash'
+import type { BenchSnapshot } from '../schemas/bench'
 import type { BoothPast } from '../schemas/booth-cleanings'
+import type { BenchSetup } from './bench-setup'
 
 /** Two chemistries that may not meet in a booth: the one that is to be sprayed and the one that lies there. */
 export interface BoothClash {
@@ -35,4 +37,15 @@ export function begunWords({ chemistry, past, advice }: BoothClash, boothName: s
 /** Why a mix is not started for a booth, in plain words. */
 export function clashWords({ chemistry, past, advice }: BoothClash, boothName: string): string {
   return `${boothName} was last used for ${chemistryWords(past.chemistry)} (${past.mixName}); this mix is ${chemistryWords(chemistry)}. ${advice}`
+}
+
+/** What the chosen mix and booth do to each other, in words; null where nothing clashes. */
+export function clashOfSetup(setup: Pick<BenchSetup, 'mixId' | 'boothId'>, snapshot: BenchSnapshot): (BoothClash & { words: string }) | null {
+  const mix = snapshot.mixes.find(({ id }) => id === setup.mixId)
+  const booth = snapshot.booths.find(({ id }) => id === setup.boothId)
+  if (mix === undefined || booth === undefined) return null
+  const ids = new Set(mix.components.map(({ materialId }) => materialId))
+  const chemistries = snapshot.materials.filter(({ id }) => ids.has(id)).map(({ chemistry }) => chemistry)
+  const clash = boothClash(chemistries, booth.past, snapshot.chemistryRules)
+  return clash === null ? null : { ...clash, words: clashWords(clash, booth.name) }
 }

@@ -1,5 +1,5 @@
-import { D } from '../engine/decimal'
 import type { BenchLot, BenchSnapshot } from '../schemas/bench'
+import { isMoreThanNone } from './decimal-text'
 
 /** Why a lot is not poured; null where it may be. */
 type LotRefusal = 'wrong-material' | 'blocked' | 'out-of-date' | 'peroxide-out-of-date' | 'empty' | 'unknown'
@@ -17,7 +17,7 @@ export function offeredLots(snapshot: BenchSnapshot, materialId: string, today: 
 
 /** Every lot of a material with something in it: those on offer, then those that are refused, each first-expiring-first. */
 export function listedLots(snapshot: BenchSnapshot, materialId: string, today: string): BenchLot[] {
-  const refused = snapshot.lots.filter(lot => lot.materialId === materialId && lotRefusal(lot, materialId, today) !== null && new D(lot.stockG).gt(0))
+  const refused = snapshot.lots.filter(lot => lot.materialId === materialId && lotRefusal(lot, materialId, today) !== null && isMoreThanNone(lot.stockG))
   return [...offeredLots(snapshot, materialId, today), ...refused.sort(firstExpiringFirst)]
 }
 
@@ -35,7 +35,7 @@ export function lotRefusal(lot: BenchLot | undefined, materialId: string, today:
   if (isOutOfDate && role === 'peroxide') return 'peroxide-out-of-date'
   if (lot.state === 'blocked') return 'blocked'
   if (isOutOfDate) return 'out-of-date'
-  return new D(lot.stockG).lte(0) ? 'empty' : null
+  return isMoreThanNone(lot.stockG) ? null : 'empty'
 }
 
 /** What a foreman has to allow before this lot is poured, in order; empty where nothing has to be or nobody can. */

@@ -4,22 +4,14 @@ import { D, print, readNonNegative, readPositive, sum } from '../engine/decimal'
 import { EngineError } from '../engine/error'
 import { calculatePots } from '../engine/pots'
 import type { PlannedPot, PotBound, PotsCaution } from '../engine/pots'
-import type { BenchSnapshot, BenchStep } from '../schemas/bench'
+import type { BenchSnapshot } from '../schemas/bench'
 import type { DraftPlan } from '../schemas/drafts'
-import { boothClash, clashWords } from './bench-booth'
-import type { BoothClash } from './bench-booth'
+import { unreckoned } from './bench-faults'
+import type { BenchFault } from './bench-faults'
 import { efficiencyOf, toolChoice } from './bench-setup'
 import type { BenchSetup } from './bench-setup'
 import { benchPotLife, benchTools } from './bench-tools'
 import type { BenchTools } from './bench-tools'
-
-/** What stands beside a field. `field` is one of the form's own. */
-export interface BenchFault {
-  field: keyof BenchSetup | 'form'
-  message: string
-  /** Not given yet, given and impossible, or against the fire rule of the booth. */
-  kind: 'missing' | 'refused' | 'clash'
-}
 
 /** One pot of the plan, with its own figures and their working. */
 export interface BenchPot {
@@ -45,6 +37,8 @@ export interface BenchReckoning {
   cautions: PotsCaution[]
   /** Sum of the pots' targets, grams. */
   totalG: string | null
+  /** What the reserve adds to what is sprayed, grams; null without one. */
+  reserveG: string | null
 }
 
 /** Paths of the arithmetic → fields of the form. */
@@ -70,17 +64,10 @@ export function faultOf(error: EngineError): BenchFault {
   return { field, message: error.message, kind: 'refused' }
 }
 
-/** What may not be sprayed in the chosen booth; nobody approves it, the booth is cleaned. */
-function clashing(setup: BenchSetup, snapshot: BenchSnapshot): BenchFault[] {
-  const clash = clashOfSetup(setup, snapshot)
-  return clash?.verdict === 'blocked' ? [{ field: 'boothId', message: clash.words, kind: 'clash' }] : []
-}
-
 /** Targets, working and pots for the form as it stands. Never throws for what was typed: faults stand beside their fields. */
 export function reckon(setup: BenchSetup, snapshot: BenchSnapshot): BenchReckoning {
-  const nothing: BenchReckoning = {
-    faults: [...missing(setup), ...unreadable(setup), ...clashing(setup, snapshot)], tools: null, whole: null, pots: [], boundBy: 'one-pot', cautions: [], totalG: null,
-  }
+  const before = unreckoned(setup, snapshot)
+  const nothing: BenchReckoning = { ...before, faults: [...before.faults, ...unreadable(setup)] }
   try {
     const tools = benchTools(toolChoice(setup), snapshot)
     if (tools === null || nothing.faults.some(({ field, kind }) => kind === 'refused' || BLOCKING.has(field))) return { ...nothing, tools }
@@ -92,37 +79,8 @@ export function reckon(setup: BenchSetup, snapshot: BenchSnapshot): BenchReckoni
   }
 }
 
-/** What the chosen mix and booth do to each other, in words; null where nothing clashes. */
-export function clashOfSetup(setup: Pick<BenchSetup, 'mixId' | 'boothId'>, snapshot: BenchSnapshot): (BoothClash & { words: string }) | null {
-  const mix = snapshot.mixes.find(({ id }) => id === setup.mixId)
-  const booth = snapshot.booths.find(({ id }) => id === setup.boothId)
-  if (mix === undefined || booth === undefined) return null
-  const ids = new Set(mix.components.map(({ materialId }) => materialId))
-  const chemistries = snapshot.materials.filter(({ id }) => ids.has(id)).map(({ chemistry }) => chemistry)
-  const clash = boothClash(chemistries, booth.past, snapshot.chemistryRules)
-  return clash === null ? null : { ...clash, words: clashWords(clash, booth.name) }
-}
-
 /** Without these nothing can be reckoned; a missing purpose or gun still lets the figures stand. */
 const BLOCKING: ReadonlySet<BenchFault['field']> = new Set(['mixId', 'areaM2', 'totalG', 'tinG', 'filmWeightGsm', 'filmWeightIs', 'cupId', 'scaleId'])
-
-function missing(setup: BenchSetup): BenchFault[] {
-  const faults: BenchFault[] = []
-  const need = (given: boolean, field: keyof BenchSetup, message: string): void => {
-    if (!given) faults.push({ field, message, kind: 'missing' })
-  }
-  need(!setup.loose || setup.purpose.trim() !== '', 'purpose', 'Say what the mix is for.')
-  need(setup.mixId !== '', 'mixId', 'Choose the material.')
-  need(setup.way !== 'area' || setup.areaM2 !== '', 'areaM2', 'Give the panel area.')
-  need(setup.way !== 'total' || setup.totalG !== '', 'totalG', 'Give the grams to mix.')
-  need(setup.way !== 'tin' || setup.tinG !== '', 'tinG', 'Weigh what is left in the tin.')
-  need(setup.way !== 'area' || setup.filmWeightGsm !== '', 'filmWeightGsm', 'Give the wet coat weight.')
-  need(setup.filmWeightGsm === '' || setup.filmWeightIs !== null, 'filmWeightIs', 'Say where the coat weight is meant.')
-  need(setup.gunId !== '', 'gunId', 'Choose the gun.')
-  need(setup.cupId !== '', 'cupId', 'Choose a cup.')
-  need(setup.scaleId !== '', 'scaleId', 'Choose a scale.')
-  return faults
-}
 
 /** Numbers in use that cannot be read, each beside its own field, whatever else is still missing. */
 function unreadable(setup: BenchSetup): BenchFault[] {
@@ -161,6 +119,7 @@ function plans(setup: BenchSetup, snapshot: BenchSnapshot, tools: BenchTools): P
     boundBy: answer?.boundBy ?? 'one-pot',
     cautions: answer?.cautions ?? [],
     totalG: print(sum(pots.map(({ batch }) => new D(batch.targetTotalG)))),
+    reserveG: setup.reservePct === '' ? null : print(new D(whole.sprayedG).times(setup.reservePct).div(100)),
   }
 }
 
@@ -245,10 +204,4 @@ export function withFittingCup(setup: BenchSetup, snapshot: BenchSnapshot): Benc
   const holds = (fillLineMl: string): boolean => whole !== null && tools !== null && tools.densityGPerMl !== null
     && new D(fillLineMl).times(tools.densityGPerMl).gte(new D(whole.targetTotalG).times(CUP_ROOM))
   return { ...setup, cupId: (cups.find(({ fillLineMl }) => holds(fillLineMl)) ?? last).id }
-}
-
-/** Today's list with what can be coated now in front; within a kind its order never changes. */
-export function byReadiness(steps: readonly BenchStep[]): BenchStep[] {
-  const rank: Record<BenchStep['ready'], number> = { ready: 0, mixing: 1, wait: 2, sand: 3, held: 4, done: 5 }
-  return [...steps].sort((a, b) => rank[a.ready] - rank[b.ready])
 }

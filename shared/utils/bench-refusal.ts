@@ -1,5 +1,5 @@
 import type { OutboxEntry } from './bench-outbox'
-import { inCupG, type BenchRun } from './bench-run'
+import type { BenchRun } from './bench-run'
 
 /** What the server says when this tablet cannot go on with a batch by itself. */
 export interface BenchRefusal {
@@ -37,14 +37,6 @@ export interface BenchAside {
   /** Epoch milliseconds by the server's clock. */
   at: number
   refusal: Pick<BenchRefusal, 'code' | 'message'>
-}
-
-/**
- * Whether a batch that is left has to stay on this tablet: grams that were poured never go with it. What another tablet
- * has taken over stands there, but for what this one could not send any more.
- */
-export function staysHere(run: BenchRun, refusal: Pick<BenchRefusal, 'code'> | null, isUnsent: boolean): boolean {
-  return inCupG(run) !== '0' && (refusal?.code !== 'taken-over' || isUnsent)
 }
 
 /** The server gives the number: the one that this bench had chosen belongs to somebody else. */

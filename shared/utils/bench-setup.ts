@@ -1,7 +1,7 @@
-import { D, print, sum } from '../engine/decimal'
 import type { BenchMix, BenchPace, BenchSnapshot, BenchStep } from '../schemas/bench'
 import { offeredLots } from './bench-lots'
 import type { GunShape, ToolChoice } from './bench-tools'
+import { addUp, roundedText } from './decimal-text'
 
 /** The three ways to say how much. */
 export type BenchWay = 'area' | 'total' | 'tin'
@@ -86,7 +86,7 @@ function toMix(step: BenchStep): Pick<BenchSetup, 'pieceIds' | 'coats' | 'areaM2
 
 /** Exact sum of the chosen pieces, m². */
 export function areaOfPieces(step: BenchStep, pieceIds: readonly string[]): string {
-  return print(sum(step.pieces.filter(({ id }) => pieceIds.includes(id)).map(({ areaM2 }) => new D(areaM2))))
+  return addUp(step.pieces.filter(({ id }) => pieceIds.includes(id)).map(({ areaM2 }) => areaM2))
 }
 
 /** A row of today's list: material, pieces, coat weight, booth and gun as the schedule has them. */
@@ -147,7 +147,7 @@ export function paceWords({ paceM2PerH, gunId }: BenchSetup, snapshot: BenchSnap
 
 /** The area as a form shows it: chosen pieces add up exactly and are rounded for the eye only, a typed area stands as typed. */
 export function shownArea({ areaM2, pieceIds }: BenchSetup): string {
-  return pieceIds.length === 0 || areaM2 === '' ? areaM2 : print(new D(areaM2).toDecimalPlaces(2))
+  return pieceIds.length === 0 || areaM2 === '' ? areaM2 : roundedText(areaM2, 2)
 }
 
 /** What is in the tins on offer of one component by the stock list; the first to expire is the one that is poured from. */

@@ -1,6 +1,6 @@
 import type { BenchSnapshot, BenchStep } from '../schemas/bench'
 import { offeredLots } from './bench-lots'
-import { clashOfSetup } from './bench-reckon'
+import { clashOfSetup } from './bench-booth'
 
 /** Why a coat of today's list is not to be mixed right now, beyond what its windows say; in words. */
 export interface BenchHindrance {
@@ -30,4 +30,10 @@ export function hindranceOf(step: BenchStep, snapshot: BenchSnapshot, homeBoothI
   if (short === undefined) return null
   const code = snapshot.materials.find(({ id }) => id === short.materialId)?.code ?? 'a component'
   return { kind: 'no-stock', word: 'No stock', reason: `No lot of ${code} may be poured: out of date, blocked or used up.`, isFinal: false }
+}
+
+/** Today's list with what can be coated now in front; within a kind its order never changes. */
+export function byReadiness(steps: readonly BenchStep[]): BenchStep[] {
+  const rank: Record<BenchStep['ready'], number> = { ready: 0, mixing: 1, wait: 2, sand: 3, held: 4, done: 5 }
+  return [...steps].sort((a, b) => rank[a.ready] - rank[b.ready])
 }

@@ -56,3 +56,34 @@ export function decimalsNeeded({ units, scale }: Units): number {
   }
   return needed
 }
+
+/** As it is written without zeros at the end. */
+function textOf(read: Units): string {
+  const { whole, fraction } = digitsOf(withScale(read, decimalsNeeded(read)))
+  return `${read.units < 0n ? '-' : ''}${whole}${fraction && `.${fraction}`}`
+}
+
+/**
+ * The exact sum of plain decimals, without zeros at the end; `0` of none.
+ * @throws RangeError for anything else
+ */
+export function addUp(values: readonly string[]): string {
+  const read = values.map(unitsOf)
+  const scale = Math.max(0, ...read.map(one => one.scale))
+  return textOf({ units: read.reduce((total, one) => total + withScale(one, scale).units, 0n), scale })
+}
+
+/**
+ * A plain decimal with at most so many decimals, rounded half away from zero, without zeros at the end.
+ * @throws RangeError for anything else
+ */
+export function roundedText(value: string, decimals: number): string {
+  const read = unitsOf(value)
+  return textOf(read.scale > decimals ? withScale(read, decimals) : read)
+}
+
+/**
+ * Whether there is any of it.
+ * @throws RangeError for anything but a plain decimal
+ */
+export const isMoreThanNone = (value: string): boolean => unitsOf(value).units > 0n

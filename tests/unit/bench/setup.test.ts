@@ -1,7 +1,8 @@
 import { describe, expect, it } from 'vitest'
 import type { BenchStep } from '#shared/schemas/bench'
+import { unreckoned } from '#shared/utils/bench-faults'
 import { reckon } from '#shared/utils/bench-reckon'
-import { areaOfPieces, setupAfterPot, setupForStep } from '#shared/utils/bench-setup'
+import { areaOfPieces, blankSetup, setupAfterPot, setupForStep } from '#shared/utils/bench-setup'
 import { id, setup, snapshot } from './shop'
 
 const home = { boothId: id(51), scaleId: id(41) }
@@ -51,5 +52,18 @@ describe('the form after a pot', () => {
   it('is empty once the coat has left the list, and stands for a mix without a job', () => {
     expect(setupAfterPot(filled, snapshot(), home)).toMatchObject({ stepId: null, mixId: '', areaM2: '', pieceIds: [], scaleId: id(41) })
     expect(setupAfterPot(setup(), snapshot(), home)).toEqual(setup())
+  })
+})
+
+describe('the form without figures', () => {
+  it('says of an empty form all that the arithmetic would', () => {
+    const empty = blankSetup(snapshot(), home)
+    expect(reckon(empty, snapshot())).toEqual(unreckoned(empty, snapshot()))
+    expect(unreckoned(empty, snapshot()).faults.map(({ field }) => field)).toContain('mixId')
+  })
+
+  it('has the same faults as with them, where all numbers can be read', () => {
+    expect(unreckoned(setup({ areaM2: '' }), snapshot()).faults).toEqual(reckon(setup({ areaM2: '' }), snapshot()).faults)
+    expect(unreckoned(setup(), snapshot()).pots).toEqual([])
   })
 })

@@ -1,7 +1,7 @@
 import Decimal from 'decimal.js'
 import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
-import { decimalsNeeded, digitsOf, unitsOf, withScale } from '#shared/utils/decimal-text'
+import { addUp, decimalsNeeded, digitsOf, isMoreThanNone, roundedText, unitsOf, withScale } from '#shared/utils/decimal-text'
 import { minutesToMs, msToMinutes } from '#shared/utils/instant'
 
 const plain = fc.tuple(fc.constantFrom('', '-'), fc.bigInt({ min: 0n, max: 10n ** 30n }), fc.nat({ max: 14 })).map(([sign, digits, scale]) => {
@@ -22,6 +22,26 @@ describe('decimals by their digits', () => {
   it('need as many decimals as are not zeros at the end', () => {
     fc.assert(fc.property(plain, (value) => {
       expect(decimalsNeeded(unitsOf(value))).toBe(new Exact(value).decimalPlaces())
+    }))
+  })
+
+  it('add up as the reckoning library does', () => {
+    fc.assert(fc.property(fc.array(plain, { maxLength: 8 }), (values) => {
+      const total = values.reduce((sum, value) => sum.plus(value), new Exact(0))
+      expect(addUp(values)).toBe(total.isZero() ? '0' : total.toFixed())
+    }))
+  })
+
+  it('are cut to what the eye needs, half away from zero, without zeros at the end', () => {
+    fc.assert(fc.property(plain, fc.nat({ max: 16 }), (value, decimals) => {
+      const rounded = new Exact(value).toDecimalPlaces(decimals)
+      expect(roundedText(value, decimals)).toBe(rounded.isZero() ? '0' : rounded.toFixed())
+    }))
+  })
+
+  it('are more than none above zero only', () => {
+    fc.assert(fc.property(plain, (value) => {
+      expect(isMoreThanNone(value)).toBe(new Exact(value).gt(0))
     }))
   })
 
