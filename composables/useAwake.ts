@@ -1,5 +1,5 @@
-import { useIntervalFn, useWakeLock } from '@vueuse/core'
-import { computed, onMounted, ref, type ComputedRef } from 'vue'
+import { useDocumentVisibility, useIntervalFn } from '@vueuse/core'
+import { computed, onMounted, onScopeDispose, ref, shallowRef, watch, type ComputedRef } from 'vue'
 
 /** A lock that the machine took away is asked for again after this long. */
 const renewEveryMs = 30_000
@@ -13,13 +13,23 @@ interface Awake {
 
 /** Keeps the screen from going dark for as long as the page lives, and takes the lock anew whenever it was lost. */
 export function useAwake(): Awake {
-  const { isSupported, isActive, request: ask } = useWakeLock()
+  const isSupported = ref(false)
+  const lock = shallowRef<WakeLockSentinel | null>(null)
   const refused = ref(false)
+  const visibility = useDocumentVisibility()
+  let isGone = false
+
+  async function take(): Promise<void> {
+    const taken = await navigator.wakeLock.request('screen')
+    if (isGone) return taken.release()
+    taken.addEventListener('release', () => { if (lock.value === taken) lock.value = null })
+    lock.value = taken
+  }
 
   async function request(): Promise<void> {
-    if (!isSupported.value || document.visibilityState !== 'visible') return
+    if (!isSupported.value || lock.value !== null || document.visibilityState !== 'visible') return
     try {
-      await ask('screen')
+      await take()
       refused.value = false
     } catch {
       // The machine saves power or the page may not: the wall says so, and it is asked again.
@@ -27,12 +37,20 @@ export function useAwake(): Awake {
     }
   }
 
-  onMounted(request)
-  useIntervalFn(() => (isActive.value ? undefined : request()), renewEveryMs)
+  onMounted(() => {
+    isSupported.value = 'wakeLock' in navigator
+    return request()
+  })
+  watch(visibility, (seen) => { if (seen === 'visible') return request() })
+  useIntervalFn(request, renewEveryMs)
+  onScopeDispose(() => {
+    isGone = true
+    void lock.value?.release()
+  })
 
   const state = computed(() => {
     if (!isSupported.value) return 'unable'
-    return isActive.value && !refused.value ? 'on' : 'off'
+    return lock.value !== null ? 'on' : 'off'
   })
   return { state, request }
 }

@@ -22,6 +22,7 @@ export const fetchBenchParts = (): Promise<unknown> => Promise.all([
   import('~/components/bench/BenchPickPieces.vue'),
   import('~/components/bench/BenchStepDone.vue'),
   import('~/components/bench/BenchTodayAside.vue'),
+  import('~/components/bench/BenchTodayDraftSheet.vue'),
   import('~/components/base/BaseDialogSheet.vue'),
   import('~/components/base/BaseWorkingSheet.vue'),
 ])
