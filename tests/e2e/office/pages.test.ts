@@ -21,20 +21,26 @@ beforeAll(async () => {
   }
 })
 
-const pages = [...things.map((table) => `/${table}`), ...things.map((table) => `/${table}/:id`), '/shop', '/shop/settings', '/shop/me']
-const forms = Object.entries(editors).flatMap(([path, table]) => [[`/shop/${path}/new`, ''], [`/shop/${path}/:id`, table]] as const)
-const looked = [...pages.map((path) => [path, path.split('/')[1] ?? ''] as const), ...forms]
+/** Addresses that belong together, with the table of what has a page of its own. */
+const looked: (readonly [name: string, paths: readonly string[], table: string])[] = [
+  ...things.map((table) => [table, [`/${table}`, `/${table}/:id`], table] as const),
+  ['shop', ['/shop', '/shop/settings', '/shop/me'], ''],
+  ...Object.entries(editors).map(([path, table]) => [`shop/${path}`, [`/shop/${path}/new`, `/shop/${path}/:id`], table] as const),
+]
 
 describe('office pages', () => {
-  it.each(looked)('%s has a heading, fits desk and phone, and axe finds nothing', async (path, table) => {
+  it.each(looked)('%s: each has a heading, fits desk and phone, and axe finds nothing', async (_name, paths, table) => {
     const { page } = await visitAs('manager')
-    await page.goto(baseUrl + path.replace(':id', ids.get(table) ?? ''))
-    await page.getByRole('heading', { level: 1 }).waitFor()
-    expect(await overflowsSideways(page)).toBe(false)
-    expect(await axeFaults(page)).toEqual([])
-    await page.setViewportSize(screens.phone)
-    expect(await overflowsSideways(page)).toBe(false)
-    expect(await axeFaults(page, { colours: false })).toEqual([])
+    for (const path of paths) {
+      await page.setViewportSize(screens.office)
+      await page.goto(baseUrl + path.replace(':id', ids.get(table) ?? ''))
+      await page.getByRole('heading', { level: 1 }).waitFor()
+      expect(await overflowsSideways(page), path).toBe(false)
+      expect(await axeFaults(page), path).toEqual([])
+      await page.setViewportSize(screens.phone)
+      expect(await overflowsSideways(page), path).toBe(false)
+      expect(await axeFaults(page, { colours: false }), path).toEqual([])
+    }
   })
 })
 

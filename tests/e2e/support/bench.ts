@@ -49,9 +49,12 @@ export async function codeOf(page: Page): Promise<string> {
   return code.exec(await page.getByRole('main').innerText())?.[0] ?? ''
 }
 
-/** Confirms what has to be worn, one tap a thing, where a sheet asks. */
+/** Confirms what has to be worn, one tap a thing, where a sheet asks. The pour is locked until then, and the sheet may take a moment. */
 export async function putOnWhatIsAsked(page: Page, hand: Hand = pointer): Promise<void> {
   const asked = page.getByRole('dialog').getByRole('button', { pressed: false })
+  const typed = page.getByLabel(/^Grams of .* on the scale/).and(page.locator(':enabled'))
+  const simulated = page.getByRole('group', { name: 'Simulated scale' }).getByRole('button', { name: /^Pour/, disabled: false })
+  await asked.or(typed).or(simulated).first().waitFor()
   while (await asked.count() > 0) await hand.press(asked.first())
 }
 
@@ -65,22 +68,25 @@ export async function weigh(page: Page, grams: string, hand: Hand = pointer): Pr
 /** The target of the component at hand. */
 export const targetOf = async (page: Page): Promise<string> => gramsIn(await page.getByRole('region', { name: 'Pour', exact: true }).getByRole('button', { name: /show the sum: Target of/ }).innerText())
 
-/** Goes on to what comes next; the button wakes when the weight is in tolerance. */
-export const next = (page: Page, hand: Hand = pointer): Promise<void> => hand.press(page.getByRole('button', { name: /^Next component/ }))
+const standing = (page: Page) => page.getByRole('region', { name: 'Stir and stand' })
+
+/** Goes on to what comes next, and waits until it is there; the button wakes when the weight is in tolerance. */
+export async function next(page: Page, hand: Hand = pointer): Promise<void> {
+  const heading = page.getByRole('region', { name: 'Pour', exact: true }).getByRole('heading', { level: 1 })
+  const poured = await heading.innerText()
+  await hand.press(page.getByRole('button', { name: /^Next component/ }))
+  await standing(page).or(heading.filter({ hasNotText: poured })).or(page.getByRole('dialog')).first().waitFor()
+}
 
 /** Pours every component to its target, as it follows the base. Returns what was typed. */
 export async function pourToTargets(page: Page, hand: Hand = pointer): Promise<string[]> {
   const typed: string[] = []
-  const standing = page.getByRole('region', { name: 'Stir and stand' })
-  const heading = page.getByRole('region', { name: 'Pour', exact: true }).getByRole('heading', { level: 1 })
-  while (!await standing.isVisible()) {
+  while (!await standing(page).isVisible()) {
     await putOnWhatIsAsked(page, hand)
-    const poured = await heading.innerText()
     const grams = await targetOf(page)
     await weigh(page, grams, hand)
     typed.push(grams)
     await next(page, hand)
-    await Promise.race([standing.waitFor(), heading.filter({ hasNotText: poured }).waitFor(), page.getByRole('dialog').waitFor()])
   }
   return typed
 }
