@@ -15,7 +15,6 @@ interface Awake {
 export function useAwake(): Awake {
   const isSupported = ref(false)
   const lock = shallowRef<WakeLockSentinel | null>(null)
-  const refused = ref(false)
   const visibility = useDocumentVisibility()
   let isGone = false
 
@@ -30,10 +29,8 @@ export function useAwake(): Awake {
     if (!isSupported.value || lock.value !== null || document.visibilityState !== 'visible') return
     try {
       await take()
-      refused.value = false
     } catch {
-      // The machine saves power or the page may not: the wall says so, and it is asked again.
-      refused.value = true
+      // The machine saves power or the page may not: without a lock the wall says so, and it is asked again.
     }
   }
 
