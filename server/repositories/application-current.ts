@@ -1,5 +1,5 @@
 import type { Knex } from 'knex'
-import { msOrNull, toInstant } from '../utils/rows'
+import { msOrNull, toInstant, toInstantOrNull } from '../utils/rows'
 
 /** When and where a coat was sprayed, and the window that it opened. Instants are epoch milliseconds. */
 export interface EffectiveCoat {
@@ -20,11 +20,9 @@ export interface CoatOnRecord {
   lastAssumed: boolean
 }
 
-const instantOrNull = (ms: number | null | undefined) => (ms === null || ms === undefined ? null : toInstant(ms))
-
 const columnsOf = ({ firstAt, lastAt, boothId, window }: EffectiveCoat, now: number) => ({
-  first_at: toInstant(firstAt), last_at: toInstant(lastAt), booth_id: boothId, opens_at: instantOrNull(window?.opensAt),
-  closing_at: instantOrNull(window?.closingAt), closes_at: instantOrNull(window?.closesAt), updated_at: toInstant(now),
+  first_at: toInstant(firstAt), last_at: toInstant(lastAt), booth_id: boothId, opens_at: toInstantOrNull(window?.opensAt),
+  closing_at: toInstantOrNull(window?.closingAt), closes_at: toInstantOrNull(window?.closesAt), updated_at: toInstant(now),
 })
 
 export async function insertCurrentCoat(id: string, coat: EffectiveCoat, now: number, trx: Knex.Transaction): Promise<void> {

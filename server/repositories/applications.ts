@@ -1,5 +1,5 @@
 import type { Knex } from 'knex'
-import { toInstant } from '../utils/rows'
+import { toInstant, toInstantOrNull } from '../utils/rows'
 import { insertCurrentCoat } from './application-current'
 
 /** A coat on pieces, from batches. Instants are epoch milliseconds. */
@@ -22,15 +22,13 @@ export interface NewApplication {
   batchIds: readonly string[]
 }
 
-const instantOrNull = (ms: number | null | undefined) => (ms === null || ms === undefined ? null : toInstant(ms))
-
 export async function insertCoat(application: NewApplication, now: number, trx: Knex.Transaction): Promise<void> {
   const { id, window } = application
   await trx('applications').insert({
     id, job_id: application.jobId, job_step_id: application.jobStepId, kind: 'coat', coat_number: application.coatNumber, face: application.face,
     first_at: toInstant(application.firstAt), last_at: toInstant(application.lastAt), last_assumed: application.lastAssumed, booth_id: application.boothId,
-    gun_id: application.gunId, user_id: application.userId, opens_at: instantOrNull(window?.opensAt), closing_at: instantOrNull(window?.closingAt),
-    closes_at: instantOrNull(window?.closesAt), details: JSON.stringify(application.details), created_at: toInstant(now),
+    gun_id: application.gunId, user_id: application.userId, opens_at: toInstantOrNull(window?.opensAt), closing_at: toInstantOrNull(window?.closingAt),
+    closes_at: toInstantOrNull(window?.closesAt), details: JSON.stringify(application.details), created_at: toInstant(now),
   })
   await insertCurrentCoat(id, application, now, trx)
   if (application.pieceIds.length > 0) {

@@ -1,6 +1,6 @@
 import type { Knex } from 'knex'
 import type { BatchState } from '#shared/schemas/batch-states'
-import { msOrNull, toInstant } from '../utils/rows'
+import { msOrNull, toInstant, toInstantOrNull } from '../utils/rows'
 
 /** What a batch is when it is sealed. Instants are epoch milliseconds. */
 export interface NewCurrent {
@@ -24,13 +24,11 @@ export interface NewCurrent {
   reviewOpen: boolean
 }
 
-const instantOrNull = (ms: number | null) => (ms === null ? null : toInstant(ms))
-
 export async function insertCurrent(current: NewCurrent, now: number, trx: Knex.Transaction): Promise<void> {
   await trx('batch_current').insert({
     batch_id: current.batchId, state: current.state, mixed_at: toInstant(current.mixedAt), booth_id: current.boothId,
-    reactive_at: instantOrNull(current.reactiveAt), late_at: instantOrNull(current.lateAt), ends_at: instantOrNull(current.endsAt),
-    closed_at: instantOrNull(current.closedAt), job_id: current.jobId, mixed_by_user_id: current.mixedByUserId, gun_id: current.gunId,
+    reactive_at: toInstantOrNull(current.reactiveAt), late_at: toInstantOrNull(current.lateAt), ends_at: toInstantOrNull(current.endsAt),
+    closed_at: toInstantOrNull(current.closedAt), job_id: current.jobId, mixed_by_user_id: current.mixedByUserId, gun_id: current.gunId,
     purpose: current.purpose, poured_total_g: current.pouredTotalG, worst_deviation_pct: current.worstDeviationPct, worst_role: current.worstRole, out_of_tolerance: current.outOfTolerance,
     corrected: current.corrected, review_open: current.reviewOpen, created_at: toInstant(now), updated_at: toInstant(now),
   })
@@ -130,7 +128,7 @@ export async function updateCurrent(id: string, change: CurrentChange, now: numb
   const columns: Record<string, unknown> = { version: trx.raw('version + 1'), updated_at: toInstant(now) }
   if (change.state !== undefined) columns.state = change.state
   if (change.firstSprayAt !== undefined) columns.first_spray_at = toInstant(change.firstSprayAt)
-  if (change.lastSprayAt !== undefined) columns.last_spray_at = instantOrNull(change.lastSprayAt)
+  if (change.lastSprayAt !== undefined) columns.last_spray_at = toInstantOrNull(change.lastSprayAt)
   if (change.closedAt !== undefined) columns.closed_at = toInstant(change.closedAt)
   if (change.leftoverG !== undefined) columns.leftover_g = change.leftoverG
   if (change.leftoverWeighed !== undefined) columns.leftover_weighed = change.leftoverWeighed
@@ -169,9 +167,9 @@ export async function isCurrent(current: EffectiveCurrent, db: Knex | Knex.Trans
 
 function columnsOf(current: EffectiveCurrent): Record<string, unknown> {
   return {
-    state: current.state, booth_id: current.boothId, reactive_at: instantOrNull(current.reactiveAt), late_at: instantOrNull(current.lateAt),
-    ends_at: instantOrNull(current.endsAt), first_spray_at: instantOrNull(current.firstSprayAt), last_spray_at: instantOrNull(current.lastSprayAt),
-    closed_at: instantOrNull(current.closedAt), leftover_g: current.leftoverG, leftover_weighed: current.leftoverWeighed, disposal: current.disposal,
+    state: current.state, booth_id: current.boothId, reactive_at: toInstantOrNull(current.reactiveAt), late_at: toInstantOrNull(current.lateAt),
+    ends_at: toInstantOrNull(current.endsAt), first_spray_at: toInstantOrNull(current.firstSprayAt), last_spray_at: toInstantOrNull(current.lastSprayAt),
+    closed_at: toInstantOrNull(current.closedAt), leftover_g: current.leftoverG, leftover_weighed: current.leftoverWeighed, disposal: current.disposal,
     used: current.used, job_id: current.jobId, mixed_by_user_id: current.mixedByUserId, gun_id: current.gunId, purpose: current.purpose,
     poured_total_g: current.pouredTotalG, worst_deviation_pct: current.worstDeviationPct, worst_role: current.worstRole,
     out_of_tolerance: current.outOfTolerance, corrected: current.corrected, review_open: current.reviewOpen, amended: current.amended,

@@ -1,7 +1,7 @@
 import type { Knex } from 'knex'
 import type { Timer, TimerKind, TimerState } from '#shared/schemas/timers'
 import { newId } from '../utils/ids'
-import { isoOf, isoOrNull, toInstant } from '../utils/rows'
+import { isoOf, isoOrNull, toInstant, toInstantOrNull } from '../utils/rows'
 
 type Db = Knex | Knex.Transaction
 
@@ -158,18 +158,16 @@ export interface TimerChange {
   acknowledgedBy?: string | null
 }
 
-const instantOrNull = (ms: number | null) => (ms === null ? null : toInstant(ms))
-
 export async function updateTimer(id: string, change: TimerChange, now: number, db: Db): Promise<void> {
   const columns: Record<string, unknown> = { version: db.raw('version + 1'), updated_at: toInstant(now) }
   if (change.state !== undefined) columns.state = change.state
   if (change.dueAt !== undefined) columns.due_at = toInstant(change.dueAt)
-  if (change.firedAt !== undefined) columns.fired_at = instantOrNull(change.firedAt)
-  if (change.announcedAt !== undefined) columns.announced_at = instantOrNull(change.announcedAt)
-  if (change.silencedUntil !== undefined) columns.silenced_until = instantOrNull(change.silencedUntil)
+  if (change.firedAt !== undefined) columns.fired_at = toInstantOrNull(change.firedAt)
+  if (change.announcedAt !== undefined) columns.announced_at = toInstantOrNull(change.announcedAt)
+  if (change.silencedUntil !== undefined) columns.silenced_until = toInstantOrNull(change.silencedUntil)
   if (change.silencedBy !== undefined) columns.silenced_by = change.silencedBy
   if (change.silencedReason !== undefined) columns.silenced_reason = change.silencedReason
-  if (change.acknowledgedAt !== undefined) columns.acknowledged_at = instantOrNull(change.acknowledgedAt)
+  if (change.acknowledgedAt !== undefined) columns.acknowledged_at = toInstantOrNull(change.acknowledgedAt)
   if (change.acknowledgedBy !== undefined) columns.acknowledged_by = change.acknowledgedBy
   await db('timers').where({ id }).update(columns)
 }

@@ -32,15 +32,17 @@ interface Shots {
  */
 export async function rewriteCoats(m: Mutation, record: BatchOnRecord, { current }: EffectiveBatch): Promise<MovedCoat[]> {
   const coats = await listCoatsOf(record.id, m.trx)
-  if (coats.length === 0) return []
+  const [first] = coats
+  if (!first) return []
+  // A batch is for one step of a job, so all its coats are too.
+  const step = await findJobStep(first.jobStepId, m.trx)
+  if (!step) throw new Error('the step of a coat was lost')
   const shots: Shots = {
     notedAt: record.events.flatMap(({ kind, at }) => (kind === 'last-spray' ? [at] : [])),
     latestAt: current.closedAt === null ? null : latestShot(await findOpenGuns([record.id], m.trx), current.closedAt),
   }
   const moved: MovedCoat[] = []
   for (const [place, coat] of coats.entries()) {
-    const step = await findJobStep(coat.jobStepId, m.trx)
-    if (!step) throw new Error('the step of a coat was lost')
     const after = record.amendments.length === 0 ? coat.recorded : effectiveCoat(coat, step, { current, shots, isLast: place === coats.length - 1 })
     if (isSame(coat.now, after)) continue
     await rewriteCoat(coat.id, after, m.now, m.trx)

@@ -1,6 +1,9 @@
 /** Epoch milliseconds as MariaDB's DATETIME(3) takes it through mysql2 with `timezone: 'Z'`. */
 export const toInstant = (ms: number): Date => new Date(ms)
 
+/** The same for a column that may be empty. */
+export const toInstantOrNull = (ms: number | null | undefined): Date | null => (ms === null || ms === undefined ? null : toInstant(ms))
+
 /** ISO 8601 UTC with milliseconds of a DATETIME(3) column. */
 export const isoOf = (value: Date): string => value.toISOString()
 
