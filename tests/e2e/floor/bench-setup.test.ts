@@ -2,9 +2,9 @@ import { randomUUID } from 'node:crypto'
 import { afterAll, describe, expect, it } from 'vitest'
 import { demoPassword } from '#shared/utils/demo'
 import { createKnex } from '../../../server/database/connection'
+import { recordNitro } from '../support/batch'
 import { codeOf, labelAndLog, next, pourToTargets, putOnWhatIsAsked, reactingMix, setUpLooseMix, targetOf, untilReadyForOffline, weigh } from '../support/bench'
 import { axeFaults, baseUrl, overflowsSideways } from '../support/browser'
-import { signedIn } from '../../server/support/http'
 import { useVisitors } from '../support/visitors'
 
 const admin = createKnex(process.env.DATABASE_ADMIN_URL ?? '', { poolMax: 2 })
@@ -93,7 +93,7 @@ describe('a booth that was last used for something that clashes', () => {
     const boothId = randomUUID()
     const at = new Date()
     await admin('booths').insert({ id: boothId, name, clearance_min: '30', created_at: at, updated_at: at })
-    await sprayNitroIn(boothId)
+    await recordNitro(admin, boothId, new Date(Date.now() - 10 * 60_000))
     const { page } = await visitAs('sprayer', { screen: 'bench' })
     await page.goto(`${baseUrl}/bench`)
     await page.getByRole('button', { name: 'Loose mix, no job' }).click()
@@ -120,31 +120,6 @@ describe('a booth that was last used for something that clashes', () => {
     await admin('booths').where({ id: boothId }).update({ active: false })
   })
 })
-
-/** A nitrocellulose pot in the record of a booth, made through the API as a bench would have written it ten minutes ago. */
-async function sprayNitroIn(boothId: string): Promise<void> {
-  const sprayer = await signedIn('sprayer')
-  const { body: me } = await sprayer.get<{ user: { id: string } }>('/api/session')
-  const nitro = await admin('mixes as m').join('mix_components as c', 'c.mix_revision_id', 'm.current_revision_id').join('materials as t', 't.id', 'c.material_id')
-    .where({ 't.chemistry': 'nitrocellulose', 'c.role': 'base' }).orderBy('m.code').first<{ mix_revision_id: string }>('c.mix_revision_id')
-  const rows = await admin('mix_components').where(nitro).orderBy('position').select<{ mix_revision_id: string, material_id: string, parts: string }[]>('mix_revision_id', 'material_id', 'parts')
-  const at = new Date(Date.now() - 10 * 60_000).toISOString()
-  const components = await Promise.all(rows.map(async ({ material_id, parts }, index) => {
-    const lot = await admin('lots').where({ material_id }).whereIn('state', ['sealed', 'in-use']).orderBy('expires_on', 'desc').first<{ id: string }>('id')
-    return { index, pours: [{ lotId: lot.id, grams: String(Number(parts)), at, source: 'typed', round: 0 }] }
-  }))
-  const id = randomUUID()
-  const total = rows.reduce((sum, { parts }) => sum + Number(parts), 0)
-  const saved = await sprayer.put(`/api/batch-drafts/${id}`, {
-    seq: 1, planId: randomUUID(), potNumber: 1, potCount: 1, mixRevisionId: rows[0]?.mix_revision_id, jobStepId: null, purpose: 'Clash test', pieceIds: [], boothId, gunId: null,
-    scaleId: null, mixedByUserId: me.user.id, plan: { totalG: String(total), scaleDivisionG: '0.1' }, components,
-  })
-  expect(saved.status, JSON.stringify(saved.body)).toBe(200)
-  const sealed = await sprayer.post('/api/batches', { draftId: id })
-  expect(sealed.status).toBe(201)
-  const closed = await sprayer.post(`/api/batches/${id}/close`, { leftoverG: '0' })
-  expect(closed.status).toBe(200)
-}
 
 describe('a bench without network', () => {
   it('gives a batch a number of its own block at once, and it arrives under that number', async () => {

@@ -1,6 +1,7 @@
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
 import { createKnex } from '../../../server/database/connection'
 import { alive, axeFaults, baseUrl, overflowsSideways, screens } from '../support/browser'
+import { logWithOlderRows } from '../support/list'
 import { useVisitors } from '../support/visitors'
 
 const admin = createKnex(process.env.DATABASE_ADMIN_URL ?? '', { poolMax: 1 })
@@ -98,12 +99,7 @@ describe('the log of batches', () => {
 
   it('keeps its rows and its place on the way back from a batch', async () => {
     const { page } = await visitAs('foreman')
-    await page.goto(`${baseUrl}/batches`)
-    await alive(page)
-    const rows = page.locator('tr[data-row]')
-    const first = await rows.count()
-    await page.getByRole('button', { name: 'Show older batches' }).click()
-    await rows.nth(first).waitFor()
+    const { rows, first } = await logWithOlderRows(page)
     await rows.nth(first + 5).click()
     await page.getByRole('dialog').getByRole('link', { name: 'Open the batch' }).click()
     await page.waitForURL((url) => /^\/batches\/[0-9a-f-]{36}$/.test(url.pathname))

@@ -1,6 +1,7 @@
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
 import { createKnex } from '../../../server/database/connection'
 import { alive, axeFaults, baseUrl, overflowsSideways, screens, signIn } from '../support/browser'
+import { logWithOlderRows } from '../support/list'
 import { useVisitors } from '../support/visitors'
 
 const admin = createKnex(process.env.DATABASE_ADMIN_URL ?? '', { poolMax: 1 })
@@ -97,12 +98,7 @@ describe('a list', () => {
 
   it('goes by keyboard: arrows move, Enter opens beside the list, and older rows come below', async () => {
     const { page } = await visitAs('foreman')
-    await page.goto(`${baseUrl}/batches`)
-    await alive(page)
-    const rows = page.locator('tr[data-row]')
-    const first = await rows.count()
-    await page.getByRole('button', { name: 'Show older batches' }).click()
-    await rows.nth(first).waitFor()
+    const { rows } = await logWithOlderRows(page)
     await rows.first().focus()
     await page.keyboard.press('ArrowDown')
     await page.keyboard.press('Enter')
