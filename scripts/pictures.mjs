@@ -34,6 +34,7 @@ async function choosePolyurethane(page) {
     const mix = await page.getByLabel('Material', { exact: true }).evaluate(select => select.selectedOptions[0]?.label ?? '')
     if (/polyurethane/i.test(mix)) return
   }
+  throw new Stop('No coat of a polyurethane is ready today: start the demo anew, or take the pictures at another hour.')
 }
 
 async function shootBench(browser, url) {
